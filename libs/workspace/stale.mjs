@@ -1,0 +1,36 @@
+// Says whether a built target is older than what it was built from.
+import { createHash } from 'node:crypto';
+import { existsSync, mkdirSync, readFileSync, readdirSync, writeFileSync } from 'node:fs';
+import { dirname, join, relative } from 'node:path';
+import { root } from './run.mjs';
+
+function* filesUnder(path) {
+  for (const entry of readdirSync(path, { withFileTypes: true })) {
+    const child = join(path, entry.name);
+    if (entry.isDirectory()) {
+      if (entry.name !== 'node_modules') yield* filesUnder(child);
+    } else if (!/\.(spec|test)\.ts$/.test(entry.name)) yield child;
+  }
+}
+
+/** SHA-256 over names and contents of everything below the given files and folders, tests left out. */
+export function digest(paths) {
+  const hash = createHash('sha256').update(process.versions.node);
+  for (const path of paths) {
+    const full = join(root, path);
+    const files = /\.[a-z]+$/.test(path) ? [full] : [...filesUnder(full)].sort();
+    for (const file of files) hash.update(relative(root, file)).update(readFileSync(file));
+  }
+  return hash.digest('hex');
+}
+
+const stampOf = (target) => join(root, 'dist', `.${target}-built-from`);
+
+export function isFresh(target, wanted) {
+  return existsSync(stampOf(target)) && readFileSync(stampOf(target), 'utf8') === wanted;
+}
+
+export function markBuilt(target, wanted) {
+  mkdirSync(dirname(stampOf(target)), { recursive: true });
+  writeFileSync(stampOf(target), wanted);
+}
