@@ -1,1 +1,2 @@
-export {};
+export type * from './run-ledger';
+export type * from './run-queue';
