@@ -1,1 +1,3 @@
 export * from './sqlite';
+export * from './desk/index';
+export * from './run-file';

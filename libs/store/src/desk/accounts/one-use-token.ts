@@ -1,0 +1,33 @@
+import { DataTypes, Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+
+export type TokenPurpose = 'reset' | 'invitation' | 'first-admin';
+
+/** A token sent in a link: kept as SHA-256, good once and until it expires. */
+export class OneUseToken extends Model<InferAttributes<OneUseToken>, InferCreationAttributes<OneUseToken>> {
+  declare hash: string;
+  declare purpose: TokenPurpose;
+  /** Null for the link that makes the first admin, who is nobody yet. */
+  declare personId: string | null;
+  declare createdAt: Date;
+  declare expiresAt: Date;
+  /** When it was used, or withdrawn. */
+  declare usedAt: Date | null;
+  /** Who sent the invitation; null for the system. */
+  declare issuedBy: string | null;
+
+  static define(sequelize: Sequelize): void {
+    const date = { type: DataTypes.DATE, allowNull: false };
+    this.init(
+      {
+        hash: { type: DataTypes.TEXT, primaryKey: true },
+        purpose: { type: DataTypes.TEXT, allowNull: false },
+        personId: { type: DataTypes.UUID, allowNull: true },
+        createdAt: date,
+        expiresAt: date,
+        usedAt: { type: DataTypes.DATE, allowNull: true },
+        issuedBy: { type: DataTypes.TEXT, allowNull: true },
+      },
+      { sequelize, tableName: 'one_use_tokens', underscored: true, timestamps: false },
+    );
+  }
+}

@@ -1,0 +1,21 @@
+import { DataTypes, Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+
+/** A refresh token by its SHA-256. Once rotated it stays known, so that using it again gives the theft away. */
+export class RefreshToken extends Model<InferAttributes<RefreshToken>, InferCreationAttributes<RefreshToken>> {
+  declare hash: string;
+  declare sessionId: string;
+  declare issuedAt: Date;
+  declare rotatedAt: Date | null;
+
+  static define(sequelize: Sequelize): void {
+    this.init(
+      {
+        hash: { type: DataTypes.TEXT, primaryKey: true },
+        sessionId: { type: DataTypes.UUID, allowNull: false },
+        issuedAt: { type: DataTypes.DATE, allowNull: false },
+        rotatedAt: { type: DataTypes.DATE, allowNull: true },
+      },
+      { sequelize, tableName: 'refresh_tokens', underscored: true, timestamps: false },
+    );
+  }
+}
