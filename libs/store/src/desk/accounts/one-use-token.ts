@@ -1,4 +1,5 @@
-import { DataTypes, Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { instant, text, uuid } from '../columns';
 
 export type TokenPurpose = 'reset' | 'invitation' | 'first-admin';
 
@@ -16,16 +17,15 @@ export class OneUseToken extends Model<InferAttributes<OneUseToken>, InferCreati
   declare issuedBy: string | null;
 
   static define(sequelize: Sequelize): void {
-    const date = { type: DataTypes.DATE, allowNull: false };
     this.init(
       {
-        hash: { type: DataTypes.TEXT, primaryKey: true },
-        purpose: { type: DataTypes.TEXT, allowNull: false },
-        personId: { type: DataTypes.UUID, allowNull: true },
-        createdAt: date,
-        expiresAt: date,
-        usedAt: { type: DataTypes.DATE, allowNull: true },
-        issuedBy: { type: DataTypes.TEXT, allowNull: true },
+        hash: { ...text(), primaryKey: true },
+        purpose: text(),
+        personId: uuid('maybe'),
+        createdAt: instant(),
+        expiresAt: instant(),
+        usedAt: instant('maybe'),
+        issuedBy: text('maybe'),
       },
       { sequelize, tableName: 'one_use_tokens', underscored: true, timestamps: false },
     );

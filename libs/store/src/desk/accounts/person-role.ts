@@ -1,5 +1,6 @@
 import { type Role } from '@halfdeep/contracts';
-import { DataTypes, Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { text, uuid } from '../columns';
 
 /** One role that one person holds. */
 export class PersonRole extends Model<InferAttributes<PersonRole>, InferCreationAttributes<PersonRole>> {
@@ -9,8 +10,8 @@ export class PersonRole extends Model<InferAttributes<PersonRole>, InferCreation
   static define(sequelize: Sequelize): void {
     this.init(
       {
-        personId: { type: DataTypes.UUID, primaryKey: true },
-        role: { type: DataTypes.TEXT, primaryKey: true },
+        personId: { ...uuid(), primaryKey: true },
+        role: { ...text(), primaryKey: true },
       },
       { sequelize, tableName: 'person_roles', underscored: true, timestamps: false },
     );

@@ -1,5 +1,4 @@
 import {
-  DataTypes,
   Model,
   type CreationOptional,
   type InferAttributes,
@@ -8,6 +7,7 @@ import {
   type Sequelize,
 } from 'sequelize';
 import { type PersonRole } from './person-role';
+import { instant, text, uuid } from '../columns';
 
 export type PersonState = 'invited' | 'active' | 'deactivated';
 
@@ -26,18 +26,15 @@ export class Person extends Model<InferAttributes<Person>, InferCreationAttribut
   declare roleRows?: NonAttribute<PersonRole[]>;
 
   static define(sequelize: Sequelize): void {
-    const id = { type: DataTypes.UUID, primaryKey: true };
-    const text = { type: DataTypes.TEXT, allowNull: false };
-    const date = { type: DataTypes.DATE, allowNull: false };
     this.init(
       {
-        id,
-        email: text,
-        name: text,
-        state: text,
-        passwordHash: { type: DataTypes.TEXT, allowNull: true },
-        createdAt: date,
-        lastSeenAt: { type: DataTypes.DATE, allowNull: true },
+        id: { ...uuid(), primaryKey: true },
+        email: text(),
+        name: text(),
+        state: text(),
+        passwordHash: text('maybe'),
+        createdAt: instant(),
+        lastSeenAt: instant('maybe'),
       },
       { sequelize, tableName: 'people', underscored: true, timestamps: false },
     );

@@ -1,4 +1,5 @@
-import { DataTypes, Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { instant, text, uuid } from '../columns';
 
 /** A refresh token by its SHA-256. Once rotated it stays known, so that using it again gives the theft away. */
 export class RefreshToken extends Model<InferAttributes<RefreshToken>, InferCreationAttributes<RefreshToken>> {
@@ -10,10 +11,10 @@ export class RefreshToken extends Model<InferAttributes<RefreshToken>, InferCrea
   static define(sequelize: Sequelize): void {
     this.init(
       {
-        hash: { type: DataTypes.TEXT, primaryKey: true },
-        sessionId: { type: DataTypes.UUID, allowNull: false },
-        issuedAt: { type: DataTypes.DATE, allowNull: false },
-        rotatedAt: { type: DataTypes.DATE, allowNull: true },
+        hash: { ...text(), primaryKey: true },
+        sessionId: uuid(),
+        issuedAt: instant(),
+        rotatedAt: instant('maybe'),
       },
       { sequelize, tableName: 'refresh_tokens', underscored: true, timestamps: false },
     );

@@ -1,4 +1,5 @@
-import { DataTypes, Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { instant, text, uuid } from '../columns';
 
 /** One sign-in: a family of refresh tokens of which the newest alone is good. Ends by sign-out, expiry or a lost right. */
 export class Session extends Model<InferAttributes<Session>, InferCreationAttributes<Session>> {
@@ -12,17 +13,15 @@ export class Session extends Model<InferAttributes<Session>, InferCreationAttrib
   declare address: string | null;
 
   static define(sequelize: Sequelize): void {
-    const uuid = { type: DataTypes.UUID, allowNull: false };
-    const date = { type: DataTypes.DATE, allowNull: false };
     this.init(
       {
-        id: { type: DataTypes.UUID, primaryKey: true },
-        personId: uuid,
-        createdAt: date,
-        expiresAt: date,
-        endedAt: { type: DataTypes.DATE, allowNull: true },
-        endedBecause: { type: DataTypes.TEXT, allowNull: true },
-        address: { type: DataTypes.TEXT, allowNull: true },
+        id: { ...uuid(), primaryKey: true },
+        personId: uuid(),
+        createdAt: instant(),
+        expiresAt: instant(),
+        endedAt: instant('maybe'),
+        endedBecause: text('maybe'),
+        address: text('maybe'),
       },
       { sequelize, tableName: 'sessions', underscored: true, timestamps: false },
     );

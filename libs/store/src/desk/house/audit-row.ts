@@ -1,11 +1,11 @@
 import {
-  DataTypes,
   Model,
   type CreationOptional,
   type InferAttributes,
   type InferCreationAttributes,
   type Sequelize,
 } from 'sequelize';
+import { instant, rowNumber, text, uuid } from '../columns';
 
 /** One line of the audit trail: who did what to what, when, from where. Never changed, never deleted. */
 export class AuditRow extends Model<InferAttributes<AuditRow>, InferCreationAttributes<AuditRow>> {
@@ -21,18 +21,16 @@ export class AuditRow extends Model<InferAttributes<AuditRow>, InferCreationAttr
   declare address: string | null;
 
   static define(sequelize: Sequelize): void {
-    const text = { type: DataTypes.TEXT, allowNull: false };
-    const maybe = { type: DataTypes.TEXT, allowNull: true };
     this.init(
       {
-        id: { type: DataTypes.INTEGER, primaryKey: true, autoIncrement: true },
-        at: { type: DataTypes.DATE, allowNull: false },
-        actorId: { type: DataTypes.UUID, allowNull: true },
-        actorName: maybe,
-        action: text,
-        subject: text,
-        detail: text,
-        address: maybe,
+        id: rowNumber(),
+        at: instant(),
+        actorId: uuid('maybe'),
+        actorName: text('maybe'),
+        action: text(),
+        subject: text(),
+        detail: text(),
+        address: text('maybe'),
       },
       { sequelize, tableName: 'audit', underscored: true, timestamps: false },
     );

@@ -1,11 +1,5 @@
-import {
-  DataTypes,
-  Model,
-  type InferAttributes,
-  type InferCreationAttributes,
-  type Sequelize,
-  type Transaction,
-} from 'sequelize';
+import { Model, type InferAttributes, type InferCreationAttributes, type Sequelize, type Transaction } from 'sequelize';
+import { text } from '../columns';
 
 /** What the desk remembers about itself, by key, as JSON: the cap on runs at once, whether this is the demonstration, … */
 export class DeskSetting extends Model<InferAttributes<DeskSetting>, InferCreationAttributes<DeskSetting>> {
@@ -14,7 +8,7 @@ export class DeskSetting extends Model<InferAttributes<DeskSetting>, InferCreati
 
   static define(sequelize: Sequelize): void {
     this.init(
-      { key: { type: DataTypes.TEXT, primaryKey: true }, value: { type: DataTypes.TEXT, allowNull: false } },
+      { key: { ...text(), primaryKey: true }, value: text() },
       { sequelize, tableName: 'settings', underscored: true, timestamps: false },
     );
   }

@@ -1,11 +1,11 @@
 import {
-  DataTypes,
   Model,
   type CreationOptional,
   type InferAttributes,
   type InferCreationAttributes,
   type Sequelize,
 } from 'sequelize';
+import { instant, rowNumber, text, whole } from '../columns';
 
 /** A mail in the outbox. `body` holds `{link}` where the link goes, so that the link can be blanked and forgotten. */
 export class Mail extends Model<InferAttributes<Mail>, InferCreationAttributes<Mail>> {
@@ -23,20 +23,18 @@ export class Mail extends Model<InferAttributes<Mail>, InferCreationAttributes<M
   declare nextAttemptAt: Date | null;
 
   static define(sequelize: Sequelize): void {
-    const text = { type: DataTypes.TEXT, allowNull: false };
-    const maybe = { type: DataTypes.TEXT, allowNull: true };
     this.init(
       {
-        id: { type: DataTypes.INTEGER, primaryKey: true, autoIncrement: true },
-        createdAt: { type: DataTypes.DATE, allowNull: false },
-        recipient: text,
-        subject: text,
-        body: text,
-        link: maybe,
-        state: { ...text, defaultValue: 'waiting' },
-        attempts: { type: DataTypes.INTEGER, allowNull: false, defaultValue: 0 },
-        error: maybe,
-        nextAttemptAt: { type: DataTypes.DATE, allowNull: true },
+        id: rowNumber(),
+        createdAt: instant(),
+        recipient: text(),
+        subject: text(),
+        body: text(),
+        link: text('maybe'),
+        state: { ...text(), defaultValue: 'waiting' },
+        attempts: { ...whole(), defaultValue: 0 },
+        error: text('maybe'),
+        nextAttemptAt: instant('maybe'),
       },
       { sequelize, tableName: 'mails', underscored: true, timestamps: false },
     );

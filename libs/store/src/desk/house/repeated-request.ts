@@ -1,4 +1,5 @@
-import { DataTypes, Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import { instant, text, uuid, whole } from '../columns';
 
 /** The answer that was given to a request with an Idempotency-Key, so that sending it again gives the same. */
 export class RepeatedRequest extends Model<InferAttributes<RepeatedRequest>, InferCreationAttributes<RepeatedRequest>> {
@@ -12,15 +13,14 @@ export class RepeatedRequest extends Model<InferAttributes<RepeatedRequest>, Inf
   declare at: Date;
 
   static define(sequelize: Sequelize): void {
-    const text = { type: DataTypes.TEXT, allowNull: false };
     this.init(
       {
-        personId: { type: DataTypes.UUID, primaryKey: true },
-        key: { type: DataTypes.TEXT, primaryKey: true },
-        request: text,
-        status: { type: DataTypes.INTEGER, allowNull: false },
-        answer: text,
-        at: { type: DataTypes.DATE, allowNull: false },
+        personId: { ...uuid(), primaryKey: true },
+        key: { ...text(), primaryKey: true },
+        request: text(),
+        status: whole(),
+        answer: text(),
+        at: instant(),
       },
       { sequelize, tableName: 'repeated_requests', underscored: true, timestamps: false },
     );
