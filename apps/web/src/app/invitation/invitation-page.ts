@@ -1,0 +1,99 @@
+import { ChangeDetectionStrategy, Component, inject, signal } from '@angular/core';
+import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
+import { MatButton } from '@angular/material/button';
+import { MatError, MatFormField, MatHint, MatLabel } from '@angular/material/form-field';
+import { MatInput } from '@angular/material/input';
+import { Router, RouterLink } from '@angular/router';
+import {
+  type Invitation,
+  MIN_PASSWORD_LENGTH,
+  invitationRedeemSchema,
+  invitationSchema,
+  passwordSchema,
+} from '@halfdeep/contracts';
+import { firstValueFrom } from 'rxjs';
+import { AddressToken } from '../core/address-token';
+import { Api } from '../core/api';
+import { formatMoment } from '../core/format';
+import { bySchema, messageOf, showFieldProblems } from '../core/forms';
+import { type ApiProblem, toApiProblem } from '../core/problem';
+import { Session } from '../core/session';
+import { DataState } from '../shared/data-state/data-state';
+import { ProblemMessage } from '../shared/problem-message/problem-message';
+
+/** Reads what a mailed invitation says and makes the account that it offers. */
+@Component({
+  selector: 'app-invitation-page',
+  imports: [
+    DataState,
+    MatButton,
+    MatError,
+    MatFormField,
+    MatHint,
+    MatInput,
+    MatLabel,
+    ProblemMessage,
+    ReactiveFormsModule,
+    RouterLink,
+  ],
+  templateUrl: './invitation-page.html',
+  styleUrl: '../sign-in/sign-in.scss',
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class InvitationPage {
+  private readonly api = inject(Api);
+  private readonly session = inject(Session);
+  private readonly router = inject(Router);
+  protected readonly token = inject(AddressToken).take();
+  protected readonly minLength = MIN_PASSWORD_LENGTH;
+  protected readonly messageOf = messageOf;
+  protected readonly invitation = signal<Invitation | null>(null);
+  /** Why the invitation could not be read. */
+  protected readonly unread = signal<ApiProblem | null>(null);
+  protected readonly busy = signal(false);
+  protected readonly problem = signal<ApiProblem | null>(null);
+  protected readonly shown = signal<readonly string[]>([]);
+  protected readonly until = (iso: string) => formatMoment(iso);
+
+  protected readonly form = new FormGroup({
+    name: new FormControl('', { nonNullable: true, validators: bySchema(invitationRedeemSchema.shape.name) }),
+    password: new FormControl('', { nonNullable: true, validators: bySchema(passwordSchema) }),
+  });
+
+  constructor() {
+    if (this.token) void this.look();
+  }
+
+  protected async look(): Promise<void> {
+    this.unread.set(null);
+    try {
+      const body = { token: this.token };
+      const invitation = await firstValueFrom(this.api.post('/api/invitations/look', body, invitationSchema));
+      this.form.controls.name.setValue(invitation.name);
+      this.invitation.set(invitation);
+    } catch (error) {
+      this.unread.set(toApiProblem(error));
+    }
+  }
+
+  /** Makes the account and signs in with it. */
+  protected async accept(): Promise<void> {
+    const invitation = this.invitation();
+    this.form.markAllAsTouched();
+    if (this.form.invalid || this.busy() || !invitation) return;
+    this.busy.set(true);
+    this.problem.set(null);
+    const { name, password } = this.form.getRawValue();
+    try {
+      await firstValueFrom(this.api.send('POST', '/api/invitations/redeem', { token: this.token, name, password }));
+      await firstValueFrom(this.session.signIn(invitation.email, password));
+      await this.router.navigateByUrl('/');
+    } catch (error) {
+      const problem = toApiProblem(error);
+      this.shown.set(showFieldProblems(this.form, problem));
+      this.problem.set(problem);
+    } finally {
+      this.busy.set(false);
+    }
+  }
+}
