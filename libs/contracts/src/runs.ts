@@ -1,6 +1,6 @@
 import * as z from 'zod';
 import { personRefSchema } from './people';
-import { setupSchema } from './setup-schema';
+import { setupSchema, startStateSchema } from './setup-schema';
 
 export const RUN_STATES = ['queued', 'running', 'finished', 'stopped', 'failed'] as const;
 export const runStateSchema = z.enum(RUN_STATES);
@@ -94,9 +94,20 @@ export const runSummarySchema = z
   .meta({ id: 'RunSummary' });
 export type RunSummary = z.infer<typeof runSummarySchema>;
 
-export const runSchema = runSummarySchema.extend({ setup: setupSchema, preflight: z.unknown() }).meta({ id: 'Run' });
+export const runSchema = runSummarySchema
+  .extend({
+    setup: setupSchema,
+    preflight: z.unknown(),
+    /** The start that goes on from this run's last state, ready to be written into a setup; null until it has finished. */
+    lastState: startStateSchema.nullable().default(null),
+  })
+  .meta({ id: 'Run' });
 /** `preflight` is the answer of libs/ocean at the time of queueing. */
-export type Run = RunSummary & { setup: z.infer<typeof setupSchema>; preflight: import('@halfdeep/ocean').Preflight };
+export type Run = RunSummary & {
+  setup: z.infer<typeof setupSchema>;
+  preflight: import('@halfdeep/ocean').Preflight;
+  lastState: z.infer<typeof startStateSchema> | null;
+};
 
 const label = z.string().trim().min(1, 'A run needs a label.').max(80, 'A label has at most 80 characters.');
 export const newRunSchema = z.strictObject({

@@ -1,6 +1,12 @@
 import * as z from 'zod';
 import { LIMITS, type LimitName, type Setup } from '@halfdeep/ocean';
 
+/** An empty field arrives as null. */
+function arrived(input: unknown): string {
+  if (input === undefined || input === null) return 'nothing';
+  return typeof input === 'number' ? String(input) : JSON.stringify(input);
+}
+
 /** A number inside a hard limit; the message says what is wrong, what arrived and what would be right. */
 function quantity(name: LimitName, range: { min?: number; max?: number } = {}) {
   const limit: (typeof LIMITS)[LimitName] & { multipleOf?: number } = LIMITS[name];
@@ -10,7 +16,7 @@ function quantity(name: LimitName, range: { min?: number; max?: number } = {}) {
   const rule = `${limit.label} must be between ${min} and ${max}${unit}`;
   const base = z
     .number({
-      error: (issue) => `${rule}; ${issue.input === undefined ? 'nothing' : JSON.stringify(issue.input)} arrived.`,
+      error: (issue) => `${rule}; ${arrived(issue.input)} arrived.`,
     })
     .min(min, { error: (issue) => `${rule}; ${String(issue.input)} arrived.` })
     .max(max, { error: (issue) => `${rule}; ${String(issue.input)} arrived.` });
@@ -164,6 +170,16 @@ export const windSchema = z.strictObject({
 });
 
 const sha256 = z.string().regex(/^[0-9a-f]{64}$/, 'A SHA-256 has 64 hexadecimal digits.');
+/** The last state of a finished run, to start from. */
+export const startStateSchema = z.strictObject({
+  kind: z.literal('state'),
+  runId: z.uuid('The run that the state comes from is named by its id.'),
+  fingerprint: sha256,
+  stateSha256: sha256,
+  startStep: z.number().int().min(0),
+  stepsPerDay: quantity('stepsPerDay'),
+});
+
 export const startSchema = z.discriminatedUnion('kind', [
   z.strictObject({ kind: z.literal('rest') }),
   z.strictObject({
@@ -186,14 +202,7 @@ export const startSchema = z.discriminatedUnion('kind', [
     wavelengthDeg: quantity('startLength'),
     crestLongitudeDeg: quantity('longitude'),
   }),
-  z.strictObject({
-    kind: z.literal('state'),
-    runId: z.uuid('The run that the state comes from is named by its id.'),
-    fingerprint: sha256,
-    stateSha256: sha256,
-    startStep: z.number().int().min(0),
-    stepsPerDay: quantity('stepsPerDay'),
-  }),
+  startStateSchema,
 ]);
 
 export const frictionSchema = z.strictObject({
