@@ -1,0 +1,245 @@
+import { canonicalJson, sha256Hex } from '../exact/bytes';
+import { windForcing } from '../forcing/forcing';
+import { SECONDS_PER_DAY } from '../forcing/season';
+import { buildGrid } from '../grid/build-grid';
+import { isWet, type Grid } from '../grid/grid';
+import type { Column, Fingerprint, Frame } from '../integration-types';
+import type { Setup } from '../setup';
+import { analyticStart } from '../start/initial-state';
+import { createModel, setState, type Model } from '../stepper/model';
+import { createWork, stepModel, type StepWork } from '../stepper/step';
+import { BasinBudget, BUDGET_COLUMNS } from './budget';
+import { pack, unpack } from './container';
+import { failureReport, IntegrationFailure, isFinite } from './failure';
+import { fingerprintOf } from './fingerprint';
+import { nineArrays, setNineArrays, shapeOf, type NativeVariable } from './levels';
+import { MooringRecorder } from './moorings';
+import { stepRange } from './schedule';
+import { SectionRecorder } from './sections';
+import { packState, startFromState } from './state';
+import { CORE_VERSION } from './version';
+
+const CHECK_EVERY = 20;
+
+/** Head of the bytes of a checkpoint. */
+interface CheckpointHead {
+  kind: 'checkpoint';
+  coreVersion: string;
+  setupSha256: string;
+  step: number;
+}
+
+/**
+ * One run: the setup's model with everything that it records. A step is a pure function of state, setup and step
+ * number, so a run is repeatable to the last bit, whatever its output intervals and however often it is interrupted.
+ */
+export class Integration {
+  readonly setup: Setup;
+  readonly grid: Grid;
+  /** Absolute first step: 0, or the step of the state that the run starts from. */
+  readonly startStep: number;
+  /** Absolute step at which the run ends. */
+  readonly totalSteps: number;
+  readonly #model: Model;
+  readonly #work: StepWork;
+  readonly #sections: SectionRecorder;
+  readonly #moorings: MooringRecorder;
+  #budget: BasinBudget;
+
+  private constructor(setup: Setup) {
+    const { layer, friction, constants, numerics } = setup;
+    const { startStep, totalSteps } = stepRange(setup);
+    this.setup = setup;
+    this.startStep = startStep;
+    this.totalSteps = totalSteps;
+    this.grid = buildGrid(setup);
+    this.#model = createModel({
+      grid: this.grid,
+      dt: SECONDS_PER_DAY / numerics.stepsPerDay,
+      reducedGravity: layer.reducedGravityMS2,
+      restThickness: layer.restThicknessM,
+      density: constants.densityKgM3,
+      rayleigh: friction.rayleighPerS,
+      viscosity: friction.viscosityM2S,
+      damping: layer.dampingPerS,
+      slip: friction.slip,
+      forcing: windForcing(setup, this.grid),
+    });
+    this.#model.step = startStep;
+    this.#work = createWork(this.grid.ny);
+    this.#sections = new SectionRecorder(this.#model, setup);
+    this.#moorings = new MooringRecorder(this.#model, setup.output.moorings);
+    this.#budget = new BasinBudget(this.#model);
+  }
+
+  /**
+   * A run at its first step. `state`: the bytes of `lastState` of the run that the setup names, when it starts from one.
+   * Throws RangeError when the setup cannot be integrated (size, numbers, sections or moorings off the water) or the
+   * state is missing, damaged, another one, or lies on another grid.
+   */
+  static start(setup: Setup, state?: Uint8Array): Integration {
+    const run = new Integration(setup);
+    if (setup.start.kind === 'state') {
+      if (!state)
+        throw new RangeError(
+          `The setup starts from the last state of run ${setup.start.runId}, and that state (${setup.start.stateSha256}) is missing.`,
+        );
+      startFromState(run.#model, setup, state);
+    } else {
+      if (state) throw new RangeError(`A state arrived, but the setup starts from “${setup.start.kind}”.`);
+      setState(run.#model, analyticStart(setup, run.grid, setup.start));
+    }
+    run.#budget = new BasinBudget(run.#model);
+    return run;
+  }
+
+  /**
+   * The run as it was when `checkpoint` was taken, in the middle of an output interval or not; it goes on bit by bit as
+   * if it had not been interrupted. Throws RangeError when the checkpoint is damaged, or of another setup or core.
+   */
+  static restore(setup: Setup, checkpoint: Uint8Array): Integration {
+    const { head, arrays } = unpack(checkpoint, 'checkpoint');
+    const saved = head as unknown as CheckpointHead;
+    if (saved.kind !== 'checkpoint') throw new RangeError(`A checkpoint is needed; a ${String(head['kind'])} arrived.`);
+    if (saved.coreVersion !== CORE_VERSION)
+      throw new RangeError(
+        `The checkpoint is of core version ${saved.coreVersion}; this is ${CORE_VERSION}, which cannot continue it to the same bits.`,
+      );
+    if (saved.setupSha256 !== setupHash(setup)) throw new RangeError('The checkpoint belongs to another setup.');
+    const run = new Integration(setup);
+    setNineArrays(run.#model, arrays);
+    run.#model.step = saved.step;
+    for (const [name, slots] of run.#accumulators()) {
+      if (arrays[name]?.length !== slots.length)
+        throw new RangeError(
+          `The checkpoint holds ${arrays[name]?.length ?? 0} values of “${name}”; ${slots.length} are needed.`,
+        );
+      slots.set(arrays[name]);
+    }
+    return run;
+  }
+
+  /** Completed steps, absolute. */
+  get step(): number {
+    return this.#model.step;
+  }
+
+  /** Model day, step / stepsPerDay. */
+  get day(): number {
+    return this.#model.step / this.setup.numerics.stepsPerDay;
+  }
+
+  /**
+   * Makes `steps` steps. The state is checked for finite values every `checkEvery` steps (at most, and by default, 20)
+   * and at the end; checkEvery: 1 names the first bad step and cell. Throws IntegrationFailure then, and RangeError
+   * when the steps would lead beyond the end.
+   */
+  advance(steps: number, options: { checkEvery?: number } = {}): void {
+    const every = Math.min(options.checkEvery ?? CHECK_EVERY, CHECK_EVERY);
+    if (!(Number.isInteger(steps) && steps >= 0 && this.step + steps <= this.totalSteps))
+      throw new RangeError(
+        `The run ends at step ${this.totalSteps} and stands at ${this.step}: it can go on by a whole number of steps up to ${this.totalSteps - this.step}; ${steps} arrived.`,
+      );
+    if (!(Number.isInteger(every) && every >= 1))
+      throw new RangeError(`checkEvery must be a whole number from 1 to ${CHECK_EVERY}; ${every} arrived.`);
+    for (let done = 1; done <= steps; done++) {
+      stepModel(this.#model, this.#work);
+      this.#sections.add(this.#work);
+      this.#budget.add(this.#work);
+      if ((done % every === 0 || done === steps) && !isFinite(this.#model))
+        throw new IntegrationFailure(
+          failureReport(this.#model, this.setup.numerics.stepsPerDay, every === 1, Math.min(every, done)),
+        );
+    }
+  }
+
+  /** The fields now, float32, land NaN; a face with water on one side only is a coast and holds 0. */
+  frame(): Frame {
+    return {
+      step: this.step,
+      day: this.day,
+      eta: this.#snapshot('eta'),
+      u: this.#snapshot('u'),
+      v: this.#snapshot('v'),
+    };
+  }
+
+  sectionColumns(): Column[] {
+    return this.#sections.columns;
+  }
+
+  mooringColumns(): Column[] {
+    return this.#moorings.columns;
+  }
+
+  budgetColumns(): Column[] {
+    return [...BUDGET_COLUMNS];
+  }
+
+  /** Closes the interval of the sections: its values in the order of `sectionColumns`. */
+  takeSections(): Float64Array {
+    return this.#sections.take();
+  }
+
+  /** The moorings now, in the order of `mooringColumns`. */
+  takeMoorings(): Float64Array {
+    return this.#moorings.take();
+  }
+
+  /** Closes the interval of the budget: its values in the order of `budgetColumns`. */
+  takeBudget(): Float64Array {
+    return this.#budget.take();
+  }
+
+  /** Everything that `restore` needs, with a checksum. */
+  checkpoint(): Uint8Array {
+    const head: CheckpointHead = {
+      kind: 'checkpoint',
+      coreVersion: CORE_VERSION,
+      setupSha256: setupHash(this.setup),
+      step: this.step,
+    };
+    return pack({
+      head: { ...head },
+      arrays: { ...nineArrays(this.#model), ...Object.fromEntries(this.#accumulators()) },
+    });
+  }
+
+  /** The nine arrays of the present state, for extensions and starts from it. Its SHA-256 is the setup's stateSha256. */
+  lastState(): Uint8Array {
+    return packState(this.#model, this.setup.numerics.stepsPerDay);
+  }
+
+  /** Fingerprint of the present state (numerics.md §7). */
+  fingerprint(): Fingerprint {
+    return fingerprintOf(this.#model);
+  }
+
+  #accumulators(): [string, Float64Array][] {
+    return [
+      ['section sums', this.#sections.slots],
+      ['budget sums', this.#budget.slots],
+    ];
+  }
+
+  #snapshot(variable: NativeVariable): Float32Array {
+    const { grid } = this;
+    const [rows, columns] = shapeOf(grid, variable);
+    const data = this.#model[variable].now;
+    const out = new Float32Array(rows * columns);
+    for (let j = 0; j < rows; j++)
+      for (let i = 0; i < columns; i++)
+        out[j * columns + i] = touchesWater(grid, variable, i, j) ? data[(j + 1) * grid.stride + i + 1] : NaN;
+    return out;
+  }
+}
+
+/** True for a water cell, and for a face with water on one side or both. */
+function touchesWater(grid: Grid, variable: NativeVariable, i: number, j: number): boolean {
+  if (variable === 'eta') return isWet(grid, i, j);
+  return isWet(grid, i, j) || (variable === 'u' ? isWet(grid, i - 1, j) : isWet(grid, i, j - 1));
+}
+
+function setupHash(setup: Setup): string {
+  return sha256Hex(new TextEncoder().encode(canonicalJson(setup)));
+}

@@ -1,0 +1,136 @@
+import { addTo, SUM_SLOTS, sumAt } from '../exact/running-sum';
+import type { Grid } from '../grid/grid';
+import type { Column } from '../integration-types';
+import type { Section, Setup } from '../setup';
+import type { Model } from '../stepper/model';
+import type { StepWork } from '../stepper/step';
+import { volumeNorthOf } from './budget';
+
+const M3S_PER_SV = 1e6;
+const W_PER_PW = 1e15;
+const M3_PER_KM3 = 1e9;
+
+/** A section on the grid: a row of v points (latitude) or a column of u points (longitude). */
+export interface SnappedSection {
+  section: Section;
+  /** v row or u column. */
+  index: number;
+  /** Where that line lies, degrees. */
+  atDeg: number;
+}
+
+/** Snaps a section to its nearest line. Throws RangeError when it lies outside the basin by more than half a cell. */
+export function snapSection(grid: Grid, section: Section): SnappedSection {
+  const lines = section.along === 'latitude' ? grid.latFace : grid.lonFace;
+  const spacing = lines[1] - lines[0];
+  const index = Math.round((section.atDeg - lines[0]) / spacing);
+  if (!(index >= 0 && index < lines.length))
+    throw new RangeError(
+      `The section “${section.name}” at ${section.atDeg}° lies outside the basin, which reaches from ${lines[0]}° to ${lines[lines.length - 1]}°.`,
+    );
+  return { section, index, atDeg: lines[index] };
+}
+
+/**
+ * Transports through the sections of a setup, added up every step from the very fluxes that change η (ut H dy and
+ * vt H dx), so that V_net = d(volume north)/dt + damping closes to round-off (numerics.md §9).
+ */
+export class SectionRecorder {
+  /** Everything that a checkpoint keeps: for each section the sums of transport and damping, then the step count. */
+  readonly slots: Float64Array;
+  readonly columns: Column[];
+  readonly #model: Model;
+  readonly #heatPerVolume: number;
+  readonly #snapped: SnappedSection[];
+
+  constructor(model: Model, setup: Pick<Setup, 'output' | 'layer' | 'constants'>) {
+    this.#model = model;
+    this.#heatPerVolume = setup.constants.heatCapacityJM3K * setup.layer.temperatureStepK;
+    this.#snapped = setup.output.sections.map((section) => snapSection(model.grid, section));
+    this.slots = new Float64Array(2 * SUM_SLOTS * this.#snapped.length + 1);
+    this.columns = this.#snapped.flatMap((snapped, k) => sectionColumns(snapped, k, model.damping > 0));
+  }
+
+  /** Adds the fluxes of one step. */
+  add(work: StepWork): void {
+    const { damping } = this.#model;
+    this.#snapped.forEach(({ section, index }, k) => {
+      const latitude = section.along === 'latitude';
+      addTo(
+        this.slots,
+        2 * SUM_SLOTS * k,
+        latitude ? this.#northward(index, this.#model.vt) : this.#eastward(index, this.#model.ut),
+      );
+      if (latitude && damping > 0) {
+        let volume = 0;
+        for (let j = index; j < work.etaByRow.length; j++) volume += work.etaByRow[j];
+        addTo(this.slots, 2 * SUM_SLOTS * k + SUM_SLOTS, -damping * volume);
+      }
+    });
+    this.slots[this.slots.length - 1] += 1;
+  }
+
+  /** Values in the order of `columns`; begins the next interval. NaN means when no step was made. */
+  take(): Float64Array {
+    const steps = this.slots[this.slots.length - 1];
+    const values: number[] = [];
+    this.#snapped.forEach(({ section, index }, k) => {
+      const mean = sumAt(this.slots, 2 * SUM_SLOTS * k) / steps;
+      const latitude = section.along === 'latitude';
+      const now = latitude ? this.#northward(index, this.#model.v.now) : this.#eastward(index, this.#model.u.now);
+      values.push(mean / M3S_PER_SV, now / M3S_PER_SV, (mean * this.#heatPerVolume) / W_PER_PW);
+      if (!latitude) return;
+      values.push(volumeNorthOf(this.#model, index) / M3_PER_KM3);
+      if (this.#model.damping > 0) values.push(sumAt(this.slots, 2 * SUM_SLOTS * k + SUM_SLOTS) / steps / M3S_PER_SV);
+    });
+    this.slots.fill(0);
+    return Float64Array.from(values);
+  }
+
+  /** Σ v H dx over a v row, m³/s. */
+  #northward(row: number, v: Float64Array): number {
+    const { grid, restThickness } = this.#model;
+    const from = (row + 1) * grid.stride + 1;
+    let sum = 0;
+    for (let k = from; k < from + grid.nx; k++) sum += v[k];
+    return sum * grid.dxV[row] * restThickness;
+  }
+
+  /** Σ u H dy over a u column, m³/s. */
+  #eastward(column: number, u: Float64Array): number {
+    const { grid, restThickness } = this.#model;
+    let sum = 0;
+    for (let j = 0, k = grid.stride + column + 1; j < grid.ny; j++, k += grid.stride) sum += u[k];
+    return sum * grid.dy * restThickness;
+  }
+}
+
+/** Columns of section k, named `<k>.transport` and so on. */
+function sectionColumns({ section }: SnappedSection, k: number, damped: boolean): Column[] {
+  const towards = section.along === 'latitude' ? 'northward' : 'eastward';
+  const columns: Column[] = [
+    { name: `${k}.transport`, label: `${section.name}: ${towards} volume transport`, unit: 'Sv', kind: 'mean' },
+    {
+      name: `${k}.transportNow`,
+      label: `${section.name}: ${towards} volume transport at the end of the interval`,
+      unit: 'Sv',
+      kind: 'instant',
+    },
+    { name: `${k}.heat`, label: `${section.name}: ${towards} heat transport`, unit: 'PW', kind: 'mean' },
+  ];
+  if (section.along === 'longitude') return columns;
+  columns.push({
+    name: `${k}.volumeNorth`,
+    label: `${section.name}: volume anomaly north of it`,
+    unit: 'km³',
+    kind: 'instant',
+  });
+  if (damped)
+    columns.push({
+      name: `${k}.dampingNorth`,
+      label: `${section.name}: volume added by damping north of it`,
+      unit: 'Sv',
+      kind: 'mean',
+    });
+  return columns;
+}
