@@ -1,0 +1,72 @@
+/** Ends of a colour scale in stored units. A diverging scale is symmetric, so that zero is its middle stop. */
+export interface ColourLimits {
+  min: number;
+  max: number;
+}
+
+const NICE = [1, 1.5, 2, 3, 4, 5, 6, 8, 10];
+
+/** The least of 1, 1.5, 2, 3, 4, 5, 6, 8 × 10^k that is not below `value`; 1 when value is not above 0. */
+export function niceCeiling(value: number): number {
+  if (!(value > 0) || !Number.isFinite(value)) return 1;
+  const decade = 10 ** Math.floor(Math.log10(value));
+  // A value that is nice already must stay: division leaves a rounding error behind.
+  const factor = NICE.find((nice) => nice * (1 + 1e-9) >= value / decade) ?? 10;
+  return factor * decade;
+}
+
+/** Finite extremes of what `rows` hold, skipping all but every `stride`-th value; NaN when there is none. */
+export function extremes(rows: Iterable<ArrayLike<number>>, stride = 1): { min: number; max: number } {
+  let min = Infinity;
+  let max = -Infinity;
+  for (const row of rows)
+    for (let k = 0; k < row.length; k += stride) {
+      const value = row[k] ?? NaN;
+      if (value < min && value > -Infinity) min = value;
+      if (value > max && value < Infinity) max = value;
+    }
+  return min <= max ? { min, max } : { min: NaN, max: NaN };
+}
+
+/**
+ * Limits for what was seen. `seen` in stored units, `factor` to shown ones: it is the shown ends that are round.
+ * Nothing seen yet, or nothing but zero: ±1 shown.
+ */
+export function fittedLimits(
+  seen: { min: number; max: number },
+  scale: 'diverging' | 'sequential',
+  factor: number,
+): ColourLimits {
+  if (!(seen.min <= seen.max))
+    return scale === 'diverging' ? { min: -1 / factor, max: 1 / factor } : { min: 0, max: 1 / factor };
+  if (scale === 'diverging') {
+    const end = niceCeiling(Math.max(Math.abs(seen.min), Math.abs(seen.max)) * factor) / factor;
+    return { min: -end, max: end };
+  }
+  const span = (seen.max - seen.min) * factor;
+  // A scale that nearly reaches zero starts there; otherwise both ends are rounded outward.
+  if (seen.min >= 0 && seen.min * factor < 2 * span) return { min: 0, max: niceCeiling(seen.max * factor) / factor };
+  const step = niceCeiling(span || Math.abs(seen.max) * factor) / 4;
+  return {
+    min: (Math.floor((seen.min * factor) / step) * step) / factor,
+    max: (Math.ceil((seen.max * factor) / step) * step) / factor,
+  };
+}
+
+/** Limits that only ever grow, so that a plot does not pump while it is being read. */
+export function grownLimits(held: ColourLimits | null, fitted: ColourLimits): ColourLimits {
+  if (!held) return fitted;
+  return { min: Math.min(held.min, fitted.min), max: Math.max(held.max, fitted.max) };
+}
+
+/** Levels between the limits, four steps from the middle to each end: zero is among them when they are symmetric. */
+export function isolineLevels(limits: ColourLimits): number[] {
+  const step = isolineStep(limits);
+  const first = Math.ceil(limits.min / step - 1e-9);
+  const last = Math.floor(limits.max / step + 1e-9);
+  return Array.from({ length: last - first + 1 }, (_, k) => (first + k) * step);
+}
+
+export function isolineStep(limits: ColourLimits): number {
+  return (limits.max - limits.min) / 8;
+}
