@@ -26,3 +26,16 @@ export { PRESETS, type OceanPreset } from './presets/presets';
 export { diffSetups } from './describe/diff-setups';
 export { describeSetup, type SetupDescription } from './describe/describe-setup';
 export { fieldLabel, fieldUnit } from './describe/field-label';
+export { VARIABLE_INFO, axesOf, type Points, type VariableInfo } from './derive/variable-info';
+export {
+  deriveColumn,
+  deriveMap,
+  deriveRow,
+  neededColumns,
+  neededRows,
+  type DerivedMap,
+  type NativeFields,
+  type NativeLines,
+  type NeededLines,
+} from './derive/derive';
+export { shapeOf, NATIVE_VARIABLES, type NativeVariable } from './integration/levels';
