@@ -54,9 +54,9 @@ export interface RunLedger {
    */
   claimNext(): Promise<LedgerRun | null>;
   /**
-   * running, stopped or failed → queued. Place: `front` before everything that waits (a run that the machine put back
-   * goes on first), `back` by the fair order between owners (a person resumed it). Clears workerPid, endedAt and the
-   * failure; with place `back` also the count of deaths.
+   * Back to queued. Place `front`: from running only, before everything that waits (the machine put it back, and it goes
+   * on first). Place `back`: from stopped or failed, by the fair order between owners (a person resumed it), with the
+   * count of deaths cleared. Clears workerPid, endedAt and the failure.
    */
   markQueued(runId: string, reason: QueuedReason | null, place: 'front' | 'back'): Promise<boolean>;
   /** running or stopped (it reached its end while the stop was on its way) → finished; sets endedAt, clears workerPid. */

@@ -76,7 +76,7 @@ export class DeskRunLedger implements RunLedger {
   markQueued(runId: string, reason: QueuedReason | null, place: 'front' | 'back'): Promise<boolean> {
     return this.desk.write(async (transaction) => {
       const run = await Run.findOne({
-        where: { id: runId, state: ['running', 'stopped', 'failed'] },
+        where: { id: runId, state: place === 'front' ? 'running' : ['stopped', 'failed'] },
         attributes: ['id', 'ownerId'],
         transaction,
       });

@@ -1,0 +1,3 @@
+import { serveJob } from './serve-job';
+
+serveJob();
