@@ -39,3 +39,7 @@ export {
   type NeededLines,
 } from './derive/derive';
 export { shapeOf, NATIVE_VARIABLES, type NativeVariable } from './integration/levels';
+export { preflight } from './preflight/preflight';
+export { proposeStepsPerDay } from './preflight/step-limits';
+export { applyRemedy } from './preflight/remedies';
+export { windDiagram, type WindDiagram } from './derive/wind-diagram';

@@ -1,0 +1,42 @@
+import type { Cost, PreflightContext } from '../preflight-types';
+import type { Setup } from '../setup';
+import type { GridLayout } from '../grid/build-grid';
+import type { LandRows } from './land-rows';
+
+/** Cell-steps a second of one core, assumed when the machine's own speed is not known. */
+export const ASSUMED_CELL_STEPS_PER_SECOND = 30e6;
+/** Keys, page headers and the write-ahead log of a run file, over its data. */
+const FILE_OVERHEAD = 1.05;
+const BUDGET_COLUMNS = 13;
+const MOORING_COLUMNS = 3;
+
+/**
+ * Work and disk of a run. Disk: frames of η, u, v in float32 on their own points, the series in float64, and the last
+ * two checkpoints of nine float64 arrays each.
+ */
+export function costOf(setup: Setup, layout: GridLayout, land: LandRows, context: PreflightContext): Cost {
+  const { nx, ny } = layout;
+  const { output, layer } = setup;
+  const cells = nx * ny;
+  const steps = Math.round(setup.length.days * setup.numerics.stepsPerDay);
+  const records = (intervalDays: number) => Math.floor(setup.length.days / intervalDays + 1e-9);
+  // The initial state is a frame of its own.
+  const frames = records(output.frameIntervalDays) + 1;
+  const points = cells + (nx + 1) * ny + nx * (ny + 1);
+  const damped = layer.dampingPerS > 0 ? 1 : 0;
+  const sectionColumns = output.sections.reduce((sum, { along }) => sum + (along === 'latitude' ? 4 + damped : 3), 0);
+  const seriesValues =
+    records(output.sectionIntervalDays) * (sectionColumns + BUDGET_COLUMNS) +
+    records(output.mooringIntervalDays) * MOORING_COLUMNS * output.moorings.length;
+  const checkpoints = 2 * 3 * points * 8;
+  const cellStepsPerSecond = context.cellStepsPerSecond ?? ASSUMED_CELL_STEPS_PER_SECOND;
+  return {
+    cells,
+    wetCells: land.wetCells(),
+    steps,
+    seconds: (cells * steps) / cellStepsPerSecond,
+    diskBytes: Math.ceil(FILE_OVERHEAD * (frames * points * 4 + seriesValues * 8) + checkpoints),
+    frames,
+    cellStepsPerSecond,
+  };
+}

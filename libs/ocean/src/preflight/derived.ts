@@ -1,0 +1,82 @@
+import { SECONDS_PER_DAY } from '../forcing/season';
+import type { DerivedNumber } from '../preflight-types';
+import type { Case } from './draft';
+import { polewardWords } from './rules/resolution';
+import { SECONDS_PER_YEAR } from './scales';
+import { stepNumbers } from './step-limits';
+
+/**
+ * The numbers that a specialist looks at first, the six that head the form foremost. What does not exist for this setup
+ * (no β, no rotation) is left out; every value is finite.
+ */
+export function derivedNumbers(of: Case): DerivedNumber[] {
+  const { scales } = of;
+  const { c, beta, f0, Lx, trapping, munk, stommel, fMax } = scales;
+  const { S, F, nuS, combined } = stepNumbers(scales.rates, scales.dt);
+  const edge = polewardWords(of);
+  const days = (seconds: number) => seconds / SECONDS_PER_DAY;
+  const equatorial = scales.holdsEquator;
+  const fHome = equatorial ? fMax : Math.abs(f0) || fMax;
+  const home = equatorial && edge ? `, ${edge}` : '';
+  const number = (id: string, label: string, symbol: string, value: number | null, unit: string) => ({
+    id,
+    label,
+    symbol,
+    value: value ?? NaN,
+    unit,
+  });
+  const crossing = (f: number) => (beta > 0 ? (Lx * f * f) / (beta * c * c) : null);
+  const gyre = munk !== null && munk > 0 ? ['munkWidth', 'stommelWidth'] : ['stommelWidth', 'munkWidth'];
+
+  const numbers: Record<string, DerivedNumber> = Object.fromEntries(
+    [
+      number('waveSpeed', 'wave speed', 'c', c, 'm/s'),
+      equatorial
+        ? number('trappingScale', 'trapping scale √(c/β)', 'L_eq', trapping && trapping / 1000, 'km')
+        : number('deformationRadius', 'deformation radius', 'c/|f|', c / fHome / 1000, 'km'),
+      number('munkWidth', 'Munk width', '(A/β)^⅓', munk && munk / 1000, 'km'),
+      number('stommelWidth', 'Stommel width', 'r/β', stommel && stommel / 1000, 'km'),
+      number('kelvinCrossing', 'Kelvin crossing', 'Lx/c', days(Lx / c), 'd'),
+      equatorial
+        ? number('rossbyCrossing', 'Rossby crossing, n = 1', '3Lx/c', days((3 * Lx) / c), 'd')
+        : number('rossbyCrossing', 'Rossby crossing', 'Lx f²/(βc²)', nullable(crossing(fHome), days), 'd'),
+      number(
+        'adjustment',
+        `adjustment at ${edge}`,
+        'Lx f²/(βc²)',
+        nullable(crossing(fMax), (s) => s / SECONDS_PER_YEAR),
+        'y',
+      ),
+      number('memory', 'memory of the layer', 'm', days(scales.memory), 'd'),
+      number('inertialPeriod', `inertial period${home}`, '2π/|f|', days((2 * Math.PI) / fHome), 'd'),
+      number('equatorialTime', 'equatorial time', 'T', equatorial ? days(1 / Math.sqrt(beta * c)) : null, 'd'),
+      number('beta', 'gradient of f', 'β', beta > 0 ? beta : null, '1/(m s)'),
+      number('fSouth', 'f at the south wall', 'f', scales.fSouth, '1/s'),
+      number('fNorth', 'f at the north wall', 'f', scales.fNorth, '1/s'),
+      number('wallRadius', `deformation radius at ${edge}`, 'c/|f|', beta > 0 ? c / fMax / 1000 : null, 'km'),
+      number(
+        'rossbySpeed',
+        equatorial ? 'Rossby speed, n = 1' : 'Rossby speed',
+        equatorial ? 'c/3' : 'βc²/f²',
+        equatorial ? c / 3 : beta > 0 ? (beta * c * c) / (fHome * fHome) : null,
+        'm/s',
+      ),
+      number('dx', 'cell, zonal', 'dx', scales.dx / 1000, 'km'),
+      number('dy', 'cell, meridional', 'dy', scales.dy / 1000, 'km'),
+      number('dt', 'step', 'dt', scales.dt, 's'),
+      number('S', 'gravity number', 'S', S, ''),
+      number('F', 'rotation number', 'F', F, ''),
+      number('nuS', 'viscosity number', 'νS', nuS, ''),
+      number('combined', 'waves and viscosity', '(S/S₀)² + νS/0.16', combined, ''),
+      number('largestStress', 'largest stress', '|τ|', of.wind.stress, 'N/m²'),
+      number('thinning', 'thickness change by the wind', '|η|/H', of.wind.thinning, ''),
+    ].map((entry) => [entry.id, entry]),
+  );
+  const first = ['waveSpeed', 'trappingScale', 'deformationRadius', gyre[0], 'kelvinCrossing', 'rossbyCrossing'];
+  const order = [...first, 'adjustment', ...Object.keys(numbers)];
+  return [...new Set(order)].flatMap((id) => (Number.isFinite(numbers[id]?.value) ? [numbers[id]] : []));
+}
+
+function nullable(value: number | null, convert: (value: number) => number): number | null {
+  return value === null ? null : convert(value);
+}

@@ -1,0 +1,192 @@
+import { readable } from '../../describe/numbers';
+import { SECONDS_PER_DAY } from '../../forcing/season';
+import { LIMITS } from '../../limits';
+import type { Remedy } from '../../preflight-types';
+import type { Setup, WindComponent } from '../../setup';
+import { ratioOfMaximum, ratioOfMinimum, verdictOf, NO_CURE, type Rule } from '../draft';
+import { polewardWords } from './resolution';
+
+const THINNING_LIMIT = 0.25;
+const UNITS_PER_DAY = 4;
+
+/** Largest |η|/H that linear theory expects: a quarter passes, beyond a half the linear equations do not hold. */
+export const thinning: Rule = ({ setup, wind: estimate, startThinning: start }) => {
+  const wind = estimate.thinning;
+  if (wind === null && (start === null || start === 0)) return null;
+  const found = Math.max(wind ?? 0, start ?? 0);
+  const byStart = (start ?? 0) > (wind ?? 0);
+  const ratio = ratioOfMaximum(found, THINNING_LIMIT);
+  const H = setup.layer.restThicknessM;
+  const source = byStart ? 'the start' : 'the wind';
+  const size = `about ${readable(found * H, 2)} m of ${readable(H, 4)} m (${readable(found, 2)}) by ${source}`;
+  return {
+    id: 'thinning',
+    label: 'Thickness change against H',
+    verdict: verdictOf(ratio, false),
+    value: found,
+    limit: THINNING_LIMIT,
+    unit: 'of H',
+    ratio,
+    reason:
+      found > 0.5
+        ? `The layer would change by ${size}: the linear equations do not hold; keep it below ${THINNING_LIMIT}.`
+        : ratio > 1
+          ? `The layer would change by ${size}: linear equations are doubtful past ${THINNING_LIMIT}.`
+          : `The layer would change by ${size}.`,
+    pointers: byStart
+      ? ['/start/amplitudeM', '/layer/restThicknessM']
+      : ['/wind/components', '/wind/seasonalStrength', '/layer/restThicknessM', '/layer/reducedGravityMS2'],
+    cures: () => [...weaker(setup, wind ?? 0, start ?? 0)],
+  };
+};
+
+/** Scales the wind, the start, or both, to the limit, rounded down to two digits. */
+function weaker(setup: Setup, wind: number, start: number): Remedy[] {
+  const factor = (found: number) => Math.floor((THINNING_LIMIT / found) * 100) / 100;
+  const scaled = (value: number, by: number) => Number((value * by).toPrecision(12));
+  const changes: Remedy['changes'] = [];
+  const words: string[] = [];
+  if (wind > THINNING_LIMIT) {
+    const by = factor(wind);
+    setup.wind.components.forEach((component, k) => {
+      for (const [field, value] of amplitudes(component))
+        if (value !== 0) changes.push({ pointer: `/wind/components/${k}/pattern/${field}`, value: scaled(value, by) });
+    });
+    words.push(`Wind × ${readable(by)}`);
+  }
+  if (start > THINNING_LIMIT && 'amplitudeM' in setup.start) {
+    const value = scaled(setup.start.amplitudeM, factor(start));
+    changes.push({ pointer: '/start/amplitudeM', value });
+    words.push(`start at ${readable(value)} m`);
+  }
+  const label = words.join(', ');
+  return changes.length > 0 ? [{ label: label.charAt(0).toUpperCase() + label.slice(1), changes }] : [];
+}
+
+function amplitudes({ pattern }: WindComponent): [string, number][] {
+  switch (pattern.kind) {
+    case 'uniform':
+      return [
+        ['eastwardNM2', pattern.eastwardNM2],
+        ['northwardNM2', pattern.northwardNM2],
+      ];
+    case 'linearShear':
+      return [['stressNM2', pattern.stressNM2]];
+    default:
+      return [['amplitudeNM2', pattern.amplitudeNM2]];
+  }
+}
+
+/** Length against twice the memory; only where a wind has to be forgotten from. A start from a state has run already. */
+export const lengthAgainstMemory: Rule = ({ setup, scales, wind }) => {
+  if (wind.stress === 0) return null;
+  const earlier = setup.start.kind === 'state' ? setup.start.startStep / setup.start.stepsPerDay : 0;
+  const found = earlier + setup.length.days;
+  const limit = (2 * scales.memory) / SECONDS_PER_DAY;
+  const ratio = ratioOfMinimum(found, limit);
+  const edge = polewardWords({ setup, scales });
+  const where = edge ? ` at ${edge}` : '';
+  const memories = readable(found / (limit / 2), 2);
+  const lengthWords = earlier > 0 ? `${readable(found, 5)} d since day 0` : `${readable(found, 5)} d`;
+  return {
+    id: 'length',
+    label: 'Length against spin-up',
+    verdict: verdictOf(ratio, false),
+    value: found,
+    limit,
+    unit: 'd',
+    ratio,
+    reason:
+      ratio > 1
+        ? `${lengthWords} are ${memories} times the memory of the layer${where}; ask for twice, ${readable(limit, 4)} d.`
+        : `${lengthWords} are ${memories} times the memory of the layer${where}.`,
+    pointers: ['/length/days'],
+    cures: () => longer(setup, limit - earlier),
+  };
+};
+
+/** Whole years that are whole output intervals too, else whole output intervals, at least so many days. */
+function longer(setup: Setup, days: number): Remedy[] {
+  const { frameIntervalDays, sectionIntervalDays, mooringIntervalDays } = setup.output;
+  const interval = [frameIntervalDays, sectionIntervalDays, mooringIntervalDays]
+    .map((value) => Math.round(value * UNITS_PER_DAY))
+    .reduce(leastCommonMultiple);
+  const year = 365 * UNITS_PER_DAY;
+  const wanted = Math.ceil(days * UNITS_PER_DAY - 1e-6);
+  return [leastCommonMultiple(interval, year), year, interval]
+    .map((unit) => (Math.ceil(wanted / unit) * unit) / UNITS_PER_DAY)
+    .filter(
+      (value, k, all) => value <= LIMITS.lengthDays.max && value <= 4 * Math.max(days, 365) && all.indexOf(value) === k,
+    )
+    .map((value) => ({
+      label: value % 365 === 0 ? `Use ${readable(value / 365, 5)} years` : `Use ${readable(value, 7)} d`,
+      changes: [{ pointer: '/length/days', value }],
+    }));
+}
+
+/** Intervals are whole 6-hour units and the run a whole number of each, so that no stream ends short. */
+export const wholeIntervals: Rule = ({ setup }) => {
+  const days = setup.length.days;
+  const streams = [
+    { word: 'frames', key: 'frameIntervalDays' },
+    { word: 'sections', key: 'sectionIntervalDays' },
+    { word: 'moorings', key: 'mooringIntervalDays' },
+  ] as const;
+  const used = streams.filter(({ word }) => word !== 'moorings' || setup.output.moorings.length > 0);
+  const uneven = used.filter(({ key }) => !Number.isInteger(setup.output[key] * UNITS_PER_DAY));
+  const left = used.map(({ word, key }) => ({ word, key, days: leftOver(days, setup.output[key]) }));
+  const short = left.filter((stream) => stream.days > 0);
+  const longest = Math.max(0, ...short.map((stream) => stream.days));
+  const pointers = ['/length/days', ...used.map(({ key }) => `/output/${key}`)];
+  const row = { id: 'intervals', label: 'Records to the end of the run', limit: 0, unit: 'd', pointers };
+  if (uneven.length > 0)
+    return {
+      ...row,
+      verdict: 'refuse',
+      value: longest,
+      ratio: 2,
+      reason: `The intervals of ${listed(uneven.map(({ word }) => word))} must be whole numbers of 6 hours.`,
+      cures: () => [
+        {
+          label: 'Use whole 6 hours',
+          changes: uneven.map(({ key }) => ({
+            pointer: `/output/${key}`,
+            value: Math.max(1, Math.round(setup.output[key] * UNITS_PER_DAY)) / UNITS_PER_DAY,
+          })),
+        },
+      ],
+    };
+  if (short.length === 0)
+    return {
+      ...row,
+      verdict: 'pass',
+      value: 0,
+      ratio: 0,
+      reason: `${readable(days, 7)} d are a whole number of every output interval.`,
+      cures: NO_CURE,
+    };
+  return {
+    ...row,
+    verdict: 'caution',
+    value: longest,
+    ratio: 1 + longest / Math.max(...short.map(({ key }) => setup.output[key])),
+    reason: `The last ${readable(longest, 4)} d have no record of ${listed(short.map(({ word }) => word))}; use a length that is a whole number of every interval.`,
+    cures: () => longer(setup, days),
+  };
+};
+
+function leftOver(days: number, interval: number): number {
+  const units = Math.round(days * UNITS_PER_DAY);
+  const each = Math.max(1, Math.round(interval * UNITS_PER_DAY));
+  return (units % each) / UNITS_PER_DAY;
+}
+
+function leastCommonMultiple(a: number, b: number): number {
+  let [x, y] = [a, b];
+  while (y > 0) [x, y] = [y, x % y];
+  return (a / x) * b;
+}
+
+function listed(words: readonly string[]): string {
+  return words.length < 2 ? words.join('') : `${words.slice(0, -1).join(', ')} and ${words[words.length - 1]}`;
+}

@@ -1,0 +1,147 @@
+import { evaluatePattern, variesZonally } from '../forcing/pattern';
+import { planeOf } from '../grid/build-grid';
+import type { Setup, WindComponent, WindPattern } from '../setup';
+import { SECONDS_PER_YEAR, type Scales } from './scales';
+
+/** Latitudes at which the estimate is taken at most, besides those that the patterns themselves ask for. */
+const MAX_ROWS = 160;
+/** Half-width of the differences that give the curl, degrees: far below any length scale, far above rounding. */
+const DIFFERENCE_DEG = 1e-4;
+
+/** What a wind does to a linear layer, estimated before the run. */
+export interface WindEstimate {
+  /** e of numerics.md §10, the largest expected |η|/H; null without β. */
+  thinning: number | null;
+  /** Largest stress over the basin and the year that the amplitudes allow, N/m². */
+  stress: number;
+}
+
+/**
+ * e is the largest sum over components of |η|/H that linear theory expects. Within L_eq of the equator
+ * τx X/(g′ρ0H²), elsewhere f² wE X/(g′βH²), wE = curl(τ/(ρ0 f)). X = Lx for a steady part, min(Lx, 2βc²/(f²ω)) for a
+ * harmonic, and no more than √(2π) widths of a patch (its integral along longitude). A northward stress at the equator
+ * is held by a slope over 2 L_eq instead of X.
+ */
+export function windEstimate(setup: Setup, scales: Scales): WindEstimate {
+  const { trapping, beta, layout, f0 } = scales;
+  const profiles = setup.wind.components.map((component) => profileOf(component, setup, scales));
+  const { referenceDeg } = planeOf(setup);
+  const south = layout.meridional.start;
+  const north = south + layout.ny * layout.meridional.spacing;
+  const west = layout.zonal.start;
+  const longitudes = sampleLongitudes(setup, west, west + layout.nx * layout.zonal.spacing);
+  const columns = profiles.map((profile) => longitudes.map((longitude) => profile.along(longitude)));
+  const { reducedGravityMS2: gPrime, restThicknessM: H } = setup.layer;
+  let thinning = 0;
+  let stress = 0;
+  for (const latitude of sampleLatitudes(setup, south, north, layout.ny)) {
+    const f = f0 + beta * (latitude - referenceDeg) * scales.metresPerDegreeLatitude;
+    const rows = profiles.map((profile) => ({ ...profile.across(latitude), reach: profile.reach(f) }));
+    for (let i = 0; i < longitudes.length; i++) {
+      let [push, sumX, sumY] = [0, 0, 0];
+      for (let k = 0; k < rows.length; k++) {
+        const { taux, tauy, dTauxDy, reach } = rows[k];
+        const { factor, slope } = columns[k][i];
+        sumX += Math.abs(taux * factor) * profiles[k].strength;
+        sumY += Math.abs(tauy * factor) * profiles[k].strength;
+        if (trapping === null) continue;
+        push +=
+          Math.abs(f) < beta * trapping
+            ? Math.abs(taux * factor) * reach + Math.abs(tauy * factor) * 2 * trapping * profiles[k].strength
+            : (Math.abs(f * (tauy * slope - dTauxDy * factor) + beta * taux * factor) * reach) / beta;
+      }
+      stress = Math.max(stress, Math.hypot(sumX, sumY));
+      thinning = Math.max(thinning, push / (gPrime * setup.constants.densityKgM3 * H * H));
+    }
+  }
+  return { thinning: trapping === null ? null : thinning, stress };
+}
+
+/** The largest |η|/H that an analytic start brings with it; 0 at rest, null when it comes from another run. */
+export function startThinning({ start, layer }: Setup): number | null {
+  if (start.kind === 'state') return null;
+  return start.kind === 'rest' ? 0 : Math.abs(start.amplitudeM) / layer.restThicknessM;
+}
+
+interface Profile {
+  /** Stress along the pattern's own meridian, N/m², and its northward derivative, N/m³. */
+  across: (latitudeDeg: number) => { taux: number; tauy: number; dTauxDy: number };
+  /** Factor from there to another longitude, and its eastward derivative, 1/m. */
+  along: (longitudeDeg: number) => { factor: number; slope: number };
+  /** Σ |season part| X at a Coriolis parameter, m. */
+  reach: (f: number) => number;
+  /** Σ |season part|. */
+  strength: number;
+}
+
+function profileOf(component: WindComponent, setup: Setup, scales: Scales): Profile {
+  const { pattern, season } = component;
+  const radius = setup.constants.earthRadiusM;
+  const home = variesZonally(pattern) && 'longitudeDeg' in pattern ? pattern.longitudeDeg : scales.layout.zonal.start;
+  const widest = 'widthLongitudeDeg' in pattern ? Math.sqrt(2 * Math.PI) * pattern.widthLongitudeDeg : Infinity;
+  const across = (latitude: number) => {
+    const at = evaluatePattern(pattern, home, latitude, radius);
+    const above = evaluatePattern(pattern, home, latitude + DIFFERENCE_DEG, radius).taux;
+    const below = evaluatePattern(pattern, home, latitude - DIFFERENCE_DEG, radius).taux;
+    return { ...at, dTauxDy: (above - below) / (2 * DIFFERENCE_DEG * scales.metresPerDegreeLatitude) };
+  };
+  const strength = setup.wind.seasonalStrength;
+  const yearly = (2 * Math.PI) / SECONDS_PER_YEAR;
+  const parts = [
+    { size: Math.abs(season.mean), omega: 0 },
+    { size: Math.abs(strength * season.annual.amplitude), omega: yearly },
+    { size: Math.abs(strength * season.semiannual.amplitude), omega: 2 * yearly },
+  ].filter(({ size }) => size > 0);
+  const { Lx, beta, c } = scales;
+  const bound = Math.min(Lx, widest * scales.metresPerDegreeLongitude);
+  return {
+    across,
+    along: zonalFactor(pattern, radius, scales.metresPerDegreeLongitude),
+    reach: (f) =>
+      parts.reduce(
+        (sum, { size, omega }) =>
+          sum + size * (omega === 0 || f === 0 ? bound : Math.min(bound, (2 * beta * c * c) / (f * f * omega))),
+        0,
+      ),
+    strength: parts.reduce((sum, { size }) => sum + size, 0),
+  };
+}
+
+/** A pattern that varies with longitude is a product of one function of each coordinate. */
+function zonalFactor(pattern: WindPattern, radius: number, metresPerDegree: number): Profile['along'] {
+  if (!variesZonally(pattern) || !('longitudeDeg' in pattern)) return () => ({ factor: 1, slope: 0 });
+  const at = (longitude: number) => {
+    const { taux, tauy } = evaluatePattern(pattern, longitude, pattern.latitudeDeg, radius);
+    return pattern.direction === 'eastward' ? taux : tauy;
+  };
+  const full = at(pattern.longitudeDeg);
+  if (full === 0) return () => ({ factor: 0, slope: 0 });
+  return (longitude) => ({
+    factor: at(longitude) / full,
+    slope:
+      (at(longitude + DIFFERENCE_DEG) - at(longitude - DIFFERENCE_DEG)) / (2 * DIFFERENCE_DEG * metresPerDegree * full),
+  });
+}
+
+function sampleLatitudes(setup: Setup, south: number, north: number, ny: number): number[] {
+  const rows = Math.min(ny, MAX_ROWS);
+  const samples = Array.from({ length: rows }, (_, j) => south + ((j + 0.5) * (north - south)) / rows);
+  for (const { pattern } of setup.wind.components) {
+    if (pattern.kind === 'zonalBelt') samples.push(...around(pattern.latitudeDeg, pattern.widthDeg));
+    if (pattern.kind === 'gaussianPatch') samples.push(...around(pattern.latitudeDeg, pattern.widthLatitudeDeg));
+  }
+  return samples.filter((latitude) => latitude >= south && latitude <= north);
+}
+
+function sampleLongitudes(setup: Setup, west: number, east: number): number[] {
+  const samples = [(west + east) / 2];
+  for (const { pattern } of setup.wind.components)
+    if (pattern.kind === 'gaussianPatch')
+      samples.push(...[-1, 0, 1].map((k) => pattern.longitudeDeg + k * pattern.widthLongitudeDeg));
+  return samples.filter((longitude) => longitude >= west && longitude <= east);
+}
+
+/** Where a Gaussian and its derivative are largest. */
+function around(centre: number, width: number): number[] {
+  return [-1.5, -1, -0.5, 0, 0.5, 1, 1.5].map((k) => centre + k * width);
+}
