@@ -131,6 +131,8 @@ export const sliceHeadSchema = z
     name: z.string(),
     variable: z.string().nullable(),
     unit: z.string().nullable(),
+    /** Maps: model day of the frame. */
+    day: z.number().optional(),
     dtype: z.enum(['float32', 'float64']),
     shape: z.array(z.number().int()),
     /** One axis a dimension; values are degrees, model days or column numbers. */
