@@ -1,8 +1,10 @@
 /**
- * Every number on screen goes through here: narrow no-break space between thousands and before the unit, true minus,
- * "1.00 → 1.20" for a change. No function rounds what it is not told to round.
+ * Every number on screen goes through here: narrow no-break space between thousands, no-break space before
+ * the unit, true minus, "1.00 → 1.20" for a change. No function rounds what it is not told to round.
  */
 export const NARROW = '\u202f';
+/** Between a number and its unit. */
+export const SPACE = '\u00a0';
 export const MINUS = '\u2212';
 /** Shown where there is no value: an en dash, never a zero. */
 export const NO_VALUE = '\u2013';
@@ -59,7 +61,7 @@ export function formatQuantity(value: number, unit: string, options: NumberOptio
 
 /** The space that stands between a number and this unit. */
 export function unitGap(unit: string): string {
-  return unit.startsWith('°') ? '' : NARROW;
+  return unit.startsWith('°') ? '' : SPACE;
 }
 
 /** "20° N", "0°", "17.5° S". */
@@ -133,7 +135,7 @@ export function formatDuration(seconds: number, parts: 1 | 2 = 2): string {
   for (const [name, size] of units.slice(first, first + parts)) {
     const count = Math.floor(rest / size);
     rest -= count * size;
-    if (count > 0 || out.length === 0) out.push(`${count}${NARROW}${name}`);
+    if (count > 0 || out.length === 0) out.push(`${count}${SPACE}${name}`);
   }
   return out.join(' ');
 }
@@ -145,7 +147,7 @@ export function formatBytes(bytes: number): string {
   let power = bytes < 1 ? 0 : Math.min(Math.floor(Math.log10(bytes) / 3), names.length - 1);
   if (power < names.length - 1 && Number((bytes / 1000 ** power).toPrecision(3)) >= 1000) power += 1;
   const value = bytes / 1000 ** power;
-  return `${power === 0 ? formatNumber(value, { decimals: 0 }) : fixedTo(value, 3)}${NARROW}${names[power] ?? ''}`;
+  return `${power === 0 ? formatNumber(value, { decimals: 0 }) : fixedTo(value, 3)}${SPACE}${names[power] ?? ''}`;
 }
 
 /** Speed of the stepper: "90 million cell-steps/s". */
@@ -242,7 +244,7 @@ function compass(degrees: number, [positive, negative]: [string, string], decima
   if (!Number.isFinite(degrees)) return NO_VALUE;
   const size = formatNumber(Math.abs(degrees), decimals === undefined ? {} : { decimals });
   const zero = Number(size) === 0;
-  return zero ? '0°' : `${size}°${NARROW}${degrees > 0 ? positive : negative}`;
+  return zero ? '0°' : `${size}°${SPACE}${degrees > 0 ? positive : negative}`;
 }
 
 function weekday(at: Date): string {
