@@ -42,4 +42,4 @@ export { shapeOf, NATIVE_VARIABLES, type NativeVariable } from './integration/le
 export { preflight } from './preflight/preflight';
 export { proposeStepsPerDay } from './preflight/step-limits';
 export { applyRemedy } from './preflight/remedies';
-export { windDiagram, type WindDiagram } from './derive/wind-diagram';
+export { windDiagram, type WindDiagram, type WindDiagramOptions } from './describe/wind-diagram';
