@@ -6,37 +6,23 @@ import { type Machine } from './machine';
 export class SetupCheck {
   constructor(private readonly machine: Machine) {}
 
-  /**
-   * What preflight says of a setup that fits its schema. Throws InputError (422) when no grid can be made of it; JSON
-   * pointers start with `prefix`, where the setup stands in the request.
-   */
-  async check(setup: Setup, prefix = ''): Promise<Preflight> {
-    const context = await this.machine.context();
-    try {
-      return preflight(setup, context);
-    } catch (error) {
-      // The grid builder names the limit that a size breaks.
-      if (!(error instanceof RangeError)) throw error;
-      throw new InputError(error.message, gridErrors(error.message, prefix), 422);
-    }
+  /** What preflight says of a setup that fits its schema. */
+  async check(setup: Setup): Promise<Preflight> {
+    return preflight(setup, await this.machine.context());
   }
 
-  /** The same, and throws InputError (422) naming fields and remedies when preflight refuses. */
+  /**
+   * The same, and throws InputError (422) naming fields and remedies when preflight refuses. JSON pointers start with
+   * `prefix`, where the setup stands in the request.
+   */
   async admit(setup: Setup, prefix = ''): Promise<Preflight> {
-    const answer = await this.check(setup, prefix);
+    const answer = await this.check(setup);
     const refused = answer.checks.filter((check) => check.verdict === 'refuse');
     if (answer.verdict !== 'refuse') return answer;
     const errors = refused.flatMap((check) => checkErrors(check, prefix));
     const detail = `Preflight refuses this setup: ${refused.map((check) => check.reason).join(' ')}`;
     throw new InputError(detail, errors, 422);
   }
-}
-
-function gridErrors(detail: string, prefix: string): FieldError[] {
-  return ['/numerics/spacingLongitudeDeg', '/numerics/spacingLatitudeDeg'].map((pointer) => ({
-    pointer: prefix + pointer,
-    detail,
-  }));
 }
 
 /** One line a field that the check is about: the reason, and the change that cures it. */

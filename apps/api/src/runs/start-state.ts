@@ -1,4 +1,4 @@
-import { buildGrid, stepRange, type Grid, type Setup, type Start } from '@halfdeep/ocean';
+import { buildGrid, type Grid, type Setup, type Start } from '@halfdeep/ocean';
 import { adoptStartState, Run, runPaths, StateFileError } from '@halfdeep/store';
 import { ConflictError, InputError, type FieldError } from '../http/errors';
 
@@ -37,12 +37,6 @@ export async function verifyStart(setup: Setup, start: StateStart, prefix: strin
   const errors = (['fingerprint', 'stateSha256', 'startStep', 'stepsPerDay'] as const)
     .filter((field) => known[field] !== start[field])
     .map((field) => at(field, `“${parent.label}” has ${field} ${known[field]}; ${start[field]} arrived.`));
-  try {
-    stepRange(setup);
-  } catch (error) {
-    if (!(error instanceof RangeError)) throw error;
-    errors.push({ pointer: `${prefix}/numerics/stepsPerDay`, detail: error.message });
-  }
   const difference = gridDifference(buildGrid(parent.setup), buildGrid(setup));
   if (difference) errors.push({ pointer: `${prefix}/numerics/spacingLongitudeDeg`, detail: difference });
   return errors.length > 0 ? refuse(errors) : parent;

@@ -108,7 +108,6 @@ export function sliceRoutes({ runs, slices }: { runs: RunService; slices: SliceS
 const LINES_A_WRITE = 2000;
 
 async function send(res: Response, as: 'binary' | 'csv', label: string, { head, data }: Slice): Promise<void> {
-  res.set('Cache-Control', 'private, no-cache');
   if (as === 'binary') {
     res.type(MEDIA).send(encodeSlice(head, data));
     return;

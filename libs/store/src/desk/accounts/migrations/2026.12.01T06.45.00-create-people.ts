@@ -9,8 +9,8 @@ export const createPeople: Migration = {
       name TEXT NOT NULL,
       state TEXT NOT NULL CHECK (state IN ('invited', 'active', 'deactivated')),
       password_hash TEXT,
-      created_at TEXT NOT NULL,
-      last_seen_at TEXT,
+      created_at DATETIME NOT NULL,
+      last_seen_at DATETIME,
       CHECK (state <> 'active' OR password_hash IS NOT NULL)
     )`);
     await query.sequelize.query(`CREATE TABLE person_roles (

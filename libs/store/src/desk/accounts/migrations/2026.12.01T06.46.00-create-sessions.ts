@@ -6,9 +6,9 @@ export const createSessions: Migration = {
     await query.sequelize.query(`CREATE TABLE sessions (
       id TEXT NOT NULL PRIMARY KEY,
       person_id TEXT NOT NULL REFERENCES people (id) ON DELETE CASCADE,
-      created_at TEXT NOT NULL,
-      expires_at TEXT NOT NULL,
-      ended_at TEXT,
+      created_at DATETIME NOT NULL,
+      expires_at DATETIME NOT NULL,
+      ended_at DATETIME,
       ended_because TEXT,
       address TEXT,
       CHECK ((ended_at IS NULL) = (ended_because IS NULL))
@@ -18,17 +18,17 @@ export const createSessions: Migration = {
     await query.sequelize.query(`CREATE TABLE refresh_tokens (
       hash TEXT NOT NULL PRIMARY KEY,
       session_id TEXT NOT NULL REFERENCES sessions (id) ON DELETE CASCADE,
-      issued_at TEXT NOT NULL,
-      rotated_at TEXT
+      issued_at DATETIME NOT NULL,
+      rotated_at DATETIME
     ) WITHOUT ROWID`);
     await query.sequelize.query('CREATE INDEX refresh_tokens_session ON refresh_tokens (session_id)');
     await query.sequelize.query(`CREATE TABLE one_use_tokens (
       hash TEXT NOT NULL PRIMARY KEY,
       purpose TEXT NOT NULL CHECK (purpose IN ('reset', 'invitation', 'first-admin')),
       person_id TEXT REFERENCES people (id) ON DELETE CASCADE,
-      created_at TEXT NOT NULL,
-      expires_at TEXT NOT NULL,
-      used_at TEXT,
+      created_at DATETIME NOT NULL,
+      expires_at DATETIME NOT NULL,
+      used_at DATETIME,
       issued_by TEXT,
       CHECK ((person_id IS NULL) = (purpose = 'first-admin'))
     ) WITHOUT ROWID`);

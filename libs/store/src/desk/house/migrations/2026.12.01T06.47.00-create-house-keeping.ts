@@ -5,7 +5,7 @@ export const createHouseKeeping: Migration = {
   async up(query) {
     await query.sequelize.query(`CREATE TABLE mails (
       id INTEGER PRIMARY KEY AUTOINCREMENT,
-      created_at TEXT NOT NULL,
+      created_at DATETIME NOT NULL,
       recipient TEXT NOT NULL,
       subject TEXT NOT NULL,
       body TEXT NOT NULL,
@@ -13,13 +13,13 @@ export const createHouseKeeping: Migration = {
       state TEXT NOT NULL CHECK (state IN ('waiting', 'sent', 'failed')),
       attempts INTEGER NOT NULL DEFAULT 0,
       error TEXT,
-      next_attempt_at TEXT,
+      next_attempt_at DATETIME,
       CHECK ((state = 'waiting') = (next_attempt_at IS NOT NULL))
     )`);
     await query.sequelize.query(`CREATE INDEX mails_waiting ON mails (next_attempt_at) WHERE state = 'waiting'`);
     await query.sequelize.query(`CREATE TABLE audit (
       id INTEGER PRIMARY KEY AUTOINCREMENT,
-      at TEXT NOT NULL,
+      at DATETIME NOT NULL,
       actor_id TEXT REFERENCES people (id) ON DELETE SET NULL,
       actor_name TEXT,
       action TEXT NOT NULL,
@@ -36,7 +36,7 @@ export const createHouseKeeping: Migration = {
       request TEXT NOT NULL,
       status INTEGER NOT NULL,
       answer TEXT NOT NULL,
-      at TEXT NOT NULL,
+      at DATETIME NOT NULL,
       PRIMARY KEY (person_id, key)
     ) WITHOUT ROWID`);
     await query.sequelize.query('CREATE INDEX repeated_requests_at ON repeated_requests (at)'); // old ones are swept
