@@ -51,9 +51,12 @@ export const invitationRedeemSchema = z.strictObject({
   token: z.string().min(20).max(200),
   name: z.string().trim().min(1, 'A name is missing.').max(80),
   password: passwordSchema,
+  /** The first admin's own, whose invitation names no address; ignored in every other. */
+  email: email.optional(),
 });
 export const invitationSchema = z
   .object({
+    /** Empty in the link that makes the first admin, who then gives one. */
     email: z.string(),
     name: z.string(),
     roles: z.array(roleSchema),

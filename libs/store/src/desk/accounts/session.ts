@@ -1,4 +1,11 @@
-import { Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
+import {
+  Model,
+  type InferAttributes,
+  type InferCreationAttributes,
+  type NonAttribute,
+  type Sequelize,
+} from 'sequelize';
+import { type Person } from './person';
 import { instant, text, uuid } from '../columns';
 
 /** One sign-in: a family of refresh tokens of which the newest alone is good. Ends by sign-out, expiry or a lost right. */
@@ -11,6 +18,8 @@ export class Session extends Model<InferAttributes<Session>, InferCreationAttrib
   /** Why it ended: "signed out", "token reused", "password reset", "roles changed", "deactivated". */
   declare endedBecause: string | null;
   declare address: string | null;
+  /** Present when read with `include: 'person'`. */
+  declare person?: NonAttribute<Person>;
 
   static define(sequelize: Sequelize): void {
     this.init(

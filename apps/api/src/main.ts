@@ -1,0 +1,126 @@
+import { existsSync, mkdirSync, readFileSync } from 'node:fs';
+import { createServer, type RequestListener, type Server } from 'node:http';
+import { type AddressInfo } from 'node:net';
+import { dirname, join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import { buildApp } from './app';
+import { composeServices, type Services } from './compose-services';
+import { queueDemonstration } from './demo/demonstration';
+import { prepareAccounts, type FirstStartNews } from './first-start';
+import { claimFolder } from './one-server';
+import { readSettings, SettingsError, type Settings } from './settings';
+
+/** A stop that takes longer than this leaves the open connections to themselves, ms. */
+const PATIENCE_MS = 10_000;
+
+/** The folder that holds package.json of the whole: of the sources and of the bundle alike. */
+function projectFolder(): string {
+  for (let folder = dirname(fileURLToPath(import.meta.url)); folder !== dirname(folder); folder = dirname(folder)) {
+    const manifest = join(folder, 'package.json');
+    if (existsSync(manifest) && (JSON.parse(readFileSync(manifest, 'utf8')) as { name?: string }).name === 'halfdeep')
+      return folder;
+  }
+  return process.cwd();
+}
+
+const say = (text: string) => process.stdout.write(`${text}\n`);
+
+function announce({ firstStart, demonstration, settings, publicUrl }: Services, news: FirstStartNews): void {
+  say(`\nHalfdeep is at ${publicUrl()}\n`);
+  if (news.signIns.length > 0) {
+    say(firstStart ? 'Demonstration accounts, shown this once:' : 'Demonstration accounts, with the password you set:');
+    for (const { email, password } of news.signIns) say(`  ${email.padEnd(28)} ${password}`);
+    say('');
+  } else if (demonstration) {
+    say('Its demonstration passwords were shown at the first start; to replace them, start once with');
+    say('HALFDEEP_DEMO_PASSWORD set to a new one.\n');
+  }
+  if (news.firstAdminLink) say(`Make the first admin here, once, within a day:\n  ${news.firstAdminLink}\n`);
+  if (demonstration && !settings.loopback)
+    say(`The demonstration accounts can be reached from other machines (HALFDEEP_HOST is ${settings.host}).\n`);
+}
+
+/** Answers what comes while the desk is being opened. */
+const stillStarting: RequestListener = (_req, res) => {
+  res.writeHead(503, { 'Content-Type': 'text/plain', 'Retry-After': '2' }).end('Halfdeep is starting. Try again.\n');
+};
+
+async function listen(server: Server, { host, port }: Settings): Promise<number> {
+  await new Promise<void>((resolve, reject) => {
+    server.once('error', reject);
+    server.listen(port, host, resolve);
+  });
+  return (server.address() as AddressInfo).port;
+}
+
+/** Says why the server cannot listen, in words. */
+function whyNot(error: unknown, { host, port }: Settings): Error {
+  const code = (error as NodeJS.ErrnoException).code;
+  const where = `port ${port} of ${host}`;
+  if (code === 'EADDRINUSE')
+    return new Error(`Another program listens on ${where}. Stop it, or set PORT to a free one: PORT=4301 npm start`);
+  if (code === 'EACCES') return new Error(`This user may not listen on ${where}. Set PORT to one above 1023.`);
+  if (code === 'EADDRNOTAVAIL' || code === 'ENOTFOUND')
+    return new Error(
+      `${host} is no address of this machine. Set HALFDEEP_HOST to one that is, 127.0.0.1 for instance.`,
+    );
+  return error as Error;
+}
+
+/** Stops taking requests, saves and closes everything; then the process ends by itself. */
+async function shutDown(server: Server, services: Services, giveBack: () => Promise<void>): Promise<void> {
+  const closed = new Promise<void>((resolve) => server.close(() => resolve()));
+  const impatient = setTimeout(() => server.closeAllConnections(), PATIENCE_MS);
+  impatient.unref();
+  server.closeIdleConnections();
+  await services.close(); // ends the event streams, which keep connections open
+  server.closeIdleConnections();
+  await closed;
+  await giveBack();
+}
+
+async function main(): Promise<void> {
+  const project = projectFolder();
+  const settings = readSettings(process.env, project);
+  mkdirSync(settings.varFolder, { recursive: true });
+  const giveBack = await claimFolder(settings.varFolder);
+  // The port is taken before anything is touched: a second start by mistake changes nothing.
+  let handler: RequestListener = stillStarting;
+  const server = createServer((req, res) => handler(req, res));
+  const port = await listen(server, settings).catch((error: unknown) => {
+    throw whyNot(error, settings);
+  });
+  const services = await composeServices(settings);
+  services.listeningOn(port);
+  const news = await prepareAccounts(services);
+  handler = buildApp(services, { webFolder: join(project, 'dist', 'web') });
+  await services.start();
+  announce(services, news);
+  if (services.demonstration)
+    await queueDemonstration({ ...services.runs, desk: services.desk }, 'modeller@halfdeep.example').catch(
+      (error: unknown) => services.logger.error({ err: error }, 'queueing the demonstration'),
+    );
+
+  let stopping = false;
+  const stop = (signal: NodeJS.Signals) => {
+    if (stopping) return;
+    stopping = true;
+    say(`${signal}: saving what runs, then stopping.`);
+    shutDown(server, services, giveBack).then(
+      () => process.exit(0),
+      (error: unknown) => {
+        services.logger.error({ err: error }, 'failed while stopping');
+        process.exit(1);
+      },
+    );
+  };
+  process.on('SIGTERM', stop);
+  process.on('SIGINT', stop);
+}
+
+main().catch((error: unknown) => {
+  const known = error instanceof SettingsError || error instanceof Error;
+  process.stderr.write(`Halfdeep does not start.\n${known ? error.message : String(error)}\n`);
+  if (process.env['HALFDEEP_LOG'] === 'debug' && error instanceof Error) process.stderr.write(`${error.stack ?? ''}\n`);
+  process.exit(error instanceof SettingsError ? 2 : 1);
+});
