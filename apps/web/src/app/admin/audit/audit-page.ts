@@ -12,7 +12,7 @@ import { ProblemMessage } from '../../shared/problem-message/problem-message';
   selector: 'app-audit-page',
   imports: [DataState, ListSearch, MatPaginator, ProblemMessage],
   templateUrl: './audit-page.html',
-  styles: '.title { margin-bottom: 12px; } app-list-search { margin-bottom: 12px; }',
+  styles: '.title { margin-bottom: 18px; } app-list-search { margin-bottom: 12px; }',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class AuditPage {

@@ -16,7 +16,7 @@ import { MailDialog } from './mail-dialog';
   imports: [DataState, ListSearch, MatButton, MatPaginator, ProblemMessage],
   templateUrl: './outbox-page.html',
   styles:
-    '.title { margin-bottom: 12px; } app-list-search { margin-bottom: 12px; } .failed { color: var(--hd-refuse); }',
+    '.title { margin-bottom: 18px; } app-list-search { margin-bottom: 12px; } .failed { color: var(--hd-refuse); }',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class OutboxPage {

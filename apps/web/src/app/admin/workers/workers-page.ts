@@ -18,7 +18,7 @@ const LOOK_AGAIN_MS = 2000;
   selector: 'app-workers-page',
   imports: [DataState, ProblemMessage, RouterLink],
   templateUrl: './workers-page.html',
-  styles: '.title { margin-bottom: 12px; } app-problem-message { display: block; margin-bottom: 12px; }',
+  styles: '.title { margin-bottom: 18px; } app-problem-message { display: block; margin-bottom: 12px; }',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class WorkersPage {
