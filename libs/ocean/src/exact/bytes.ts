@@ -26,7 +26,7 @@ export function float64Bytes(values: Float64Array): Uint8Array {
 
 /** Float64 values from little-endian bytes; always a copy. */
 export function float64From(bytes: Uint8Array): Float64Array {
-  const copy = bytes.slice();
+  const copy = new Uint8Array(bytes); // not slice(): of a Buffer that would be a view into shared memory
   if (LITTLE_ENDIAN) return new Float64Array(copy.buffer);
   const view = new DataView(copy.buffer);
   return Float64Array.from({ length: copy.byteLength / 8 }, (_, k) => view.getFloat64(8 * k, true));

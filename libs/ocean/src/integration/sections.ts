@@ -3,7 +3,7 @@ import type { Grid } from '../grid/grid';
 import type { Column } from '../integration-types';
 import type { Section, Setup } from '../setup';
 import type { Model } from '../stepper/model';
-import type { StepWork } from '../stepper/step';
+import { lastHalfLevel, type StepWork } from '../stepper/step';
 import { volumeNorthOf } from './budget';
 
 const M3S_PER_SV = 1e6;
@@ -56,11 +56,7 @@ export class SectionRecorder {
     const { damping } = this.#model;
     this.#snapped.forEach(({ section, index }, k) => {
       const latitude = section.along === 'latitude';
-      addTo(
-        this.slots,
-        2 * SUM_SLOTS * k,
-        latitude ? this.#northward(index, this.#model.vt) : this.#eastward(index, this.#model.ut),
-      );
+      addTo(this.slots, 2 * SUM_SLOTS * k, latitude ? this.#northward(index, 'used') : this.#eastward(index, 'used'));
       if (latitude && damping > 0) {
         let volume = 0;
         for (let j = index; j < work.etaByRow.length; j++) volume += work.etaByRow[j];
@@ -77,7 +73,7 @@ export class SectionRecorder {
     this.#snapped.forEach(({ section, index }, k) => {
       const mean = sumAt(this.slots, 2 * SUM_SLOTS * k) / steps;
       const latitude = section.along === 'latitude';
-      const now = latitude ? this.#northward(index, this.#model.v.now) : this.#eastward(index, this.#model.u.now);
+      const now = latitude ? this.#northward(index, 'now') : this.#eastward(index, 'now');
       values.push(mean / M3S_PER_SV, now / M3S_PER_SV, (mean * this.#heatPerVolume) / W_PER_PW);
       if (!latitude) return;
       values.push(volumeNorthOf(this.#model, index) / M3_PER_KM3);
@@ -87,20 +83,21 @@ export class SectionRecorder {
     return Float64Array.from(values);
   }
 
-  /** Σ v H dx over a v row, m³/s. */
-  #northward(row: number, v: Float64Array): number {
-    const { grid, restThickness } = this.#model;
+  /** Σ v H dx over a v row, m³/s: of the present state or of the flux that the last step used. */
+  #northward(row: number, which: 'now' | 'used'): number {
+    const { grid, restThickness, v } = this.#model;
     const from = (row + 1) * grid.stride + 1;
     let sum = 0;
-    for (let k = from; k < from + grid.nx; k++) sum += v[k];
+    for (let k = from; k < from + grid.nx; k++) sum += which === 'now' ? v.now[k] : lastHalfLevel(v, k);
     return sum * grid.dxV[row] * restThickness;
   }
 
   /** Σ u H dy over a u column, m³/s. */
-  #eastward(column: number, u: Float64Array): number {
-    const { grid, restThickness } = this.#model;
+  #eastward(column: number, which: 'now' | 'used'): number {
+    const { grid, restThickness, u } = this.#model;
     let sum = 0;
-    for (let j = 0, k = grid.stride + column + 1; j < grid.ny; j++, k += grid.stride) sum += u[k];
+    for (let j = 0, k = grid.stride + column + 1; j < grid.ny; j++, k += grid.stride)
+      sum += which === 'now' ? u.now[k] : lastHalfLevel(u, k);
     return sum * grid.dy * restThickness;
   }
 }

@@ -3,7 +3,7 @@ import { CALM, type Forcing } from '../forcing/forcing';
 import { paddedLength, type Grid } from '../grid/grid';
 import { rowFactors, type RowFactors } from './coefficients';
 import { refuseBadOptions, type ModelOptions } from './model-options';
-import { cellSpans, slipFactors, uSpans, vSpans, type Spans } from './spans';
+import { cellSpans, coastCorners, uSpans, vSpans, type CoastCorners, type Spans } from './spans';
 
 /** Three time levels of a field and the buffer of the next; padded. */
 export interface Levels {
@@ -35,15 +35,15 @@ export interface Model {
   readonly eta: Levels;
   readonly u: Levels;
   readonly v: Levels;
-  /** Values at n + ½ that the last step used; transports are ut and vt times H. */
+  // Rings of four padded rows, filled and used up within a step:
+  /** Velocities at n + ½. */
   readonly ut: Float64Array;
   readonly vt: Float64Array;
-  /** D = div(ut, vt) and g′p − A D of the last step, at cells; A s ζ at corners. */
+  /** D = div(ut, vt) and g′p − A D at cells; A s ζ at corners. */
   readonly divergence: Float64Array;
   readonly head: Float64Array;
   readonly spin: Float64Array;
-  /** A times the slip factor, at corners. */
-  readonly slipViscosity: Float64Array;
+  readonly coastCorners: CoastCorners;
   readonly rows: RowFactors;
   readonly cells: Spans;
   readonly uPoints: Spans;
@@ -60,9 +60,7 @@ export function createModel(options: ModelOptions): Model {
   const { density = 1025, rayleigh = 0, viscosity = 0, damping = 0, slip = 'free', forcing = CALM } = options;
   const field = () => new Float64Array(paddedLength(grid));
   const levels = (): Levels => ({ now: field(), previous: field(), before: field(), next: field() });
-  const slipViscosity = field();
-  slipFactors(grid, slip, slipViscosity);
-  for (let k = 0; k < slipViscosity.length; k++) slipViscosity[k] *= viscosity;
+  const ring = () => new Float64Array(4 * grid.stride);
   return {
     grid,
     dt,
@@ -78,12 +76,12 @@ export function createModel(options: ModelOptions): Model {
     eta: levels(),
     u: levels(),
     v: levels(),
-    ut: field(),
-    vt: field(),
-    divergence: field(),
-    head: field(),
-    spin: field(),
-    slipViscosity,
+    ut: ring(),
+    vt: ring(),
+    divergence: ring(),
+    head: ring(),
+    spin: ring(),
+    coastCorners: coastCorners(grid),
     rows: rowFactors(grid),
     cells: cellSpans(grid),
     uPoints: uSpans(grid),

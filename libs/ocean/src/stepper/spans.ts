@@ -39,15 +39,22 @@ function spansOf(grid: Grid, rows: number, inside: (i: number, j: number) => boo
   return { rowStart, bounds: Int32Array.from(bounds) };
 }
 
-/**
- * Slip factor at corners, padded (numerics.md §3): 1 where all four cells are water, else 0 for free slip and 2 for
- * no slip.
- */
-export function slipFactors(grid: Grid, slip: 'free' | 'none', out: Float64Array): void {
-  const coast = slip === 'free' ? 0 : 2;
-  for (let j = 0; j <= grid.ny; j++)
+/** Corners that do not have water on all four sides: column + 1 of each, rows 0 … ny. */
+export interface CoastCorners {
+  rowStart: Int32Array;
+  columns: Int32Array;
+}
+
+/** The corners where ζ takes the slip factor, 0 for free slip and 2 for no slip (numerics.md §3). */
+export function coastCorners(grid: Grid): CoastCorners {
+  const rowStart = new Int32Array(grid.ny + 2);
+  const columns: number[] = [];
+  for (let j = 0; j <= grid.ny; j++) {
     for (let i = 0; i <= grid.nx; i++) {
       const open = isWet(grid, i - 1, j - 1) && isWet(grid, i, j - 1) && isWet(grid, i - 1, j) && isWet(grid, i, j);
-      out[padded(grid, i, j)] = open ? 1 : coast;
+      if (!open) columns.push(i + 1);
     }
+    rowStart[j + 1] = columns.length;
+  }
+  return { rowStart, columns: Int32Array.from(columns) };
 }

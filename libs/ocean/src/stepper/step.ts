@@ -39,15 +39,19 @@ export function createWork(ny: number): StepWork {
 
 /**
  * Advances the model by one step of the generalised forward-backward scheme (numerics.md §4). One sweep over rows:
- * row j of (ut, vt, η, pressure, ζ), then v row j, then u row j − 1, so that everything is still in cache. The order
- * of every expression is fixed and the same with and without `work`.
+ * row j of (ut, vt, η, pressure, ζ), then v row j, then u row j − 1. What a step makes on the way lives in rings of four
+ * rows that stay in the innermost cache. The order of every expression is fixed and the same with and without `work`.
  */
 export function stepModel(model: Model, work: StepWork | null = null): void {
-  const { ny } = model.grid;
+  const { ny, stride } = model.grid;
   model.forcing.factors(model.step, model.factors);
   if (work) work.wind = work.speedSquared = work.viscous = work.kinetic = work.potential = work.etaSquared = 0;
+  // Beyond the southern wall nothing moves, and nothing moves through it.
+  model.ut.fill(0, ringRow(-1) * stride, (ringRow(-1) + 1) * stride);
+  model.vt.fill(0, ringRow(0) * stride, (ringRow(0) + 1) * stride);
   for (let j = 0; j <= ny; j++) {
     if (j < ny) continuityRow(model, j, work);
+    else model.ut.fill(0, ringRow(ny) * stride, (ringRow(ny) + 1) * stride);
     if (model.viscosity > 0) spinRow(model, j);
     if (j > 0 && j < ny) {
       if (work) meridionalRowWithWork(model, j, work);
@@ -72,18 +76,28 @@ function rotate(levels: Levels): void {
   levels.next = free;
 }
 
-/** Steps 1 of §4 on one padded row, halo columns included. */
-function extrapolateRow(levels: Levels, out: Float64Array, from: number, to: number): void {
-  const { now, previous, before } = levels;
-  for (let k = from; k < to; k++) out[k] = E0 * now[k] + E1 * previous[k] + E2 * before[k];
+/** Place of row j in a ring of four. */
+function ringRow(j: number): number {
+  return (j + 4) & 3;
 }
 
+/** Step 1 of §4 at padded index k. */
+function extrapolated({ now, previous, before }: Levels, k: number): number {
+  return E0 * now[k] + E1 * previous[k] + E2 * before[k];
+}
+
+/**
+ * Steps 1 to 4 of §4 on one row: u of this row and v of the next at n + ½, then η and the pressure. Land needs no
+ * exception: all faces of a land cell stand still, so its η stays 0.
+ */
 function continuityRow(model: Model, j: number, work: StepWork | null): void {
-  const { grid, ut, vt, divergence, head, rows, cells, dt, damping, reducedGravity, restThickness, viscosity } = model;
-  const { stride } = grid;
+  const { grid, ut, vt, divergence, head, rows, dt, damping, reducedGravity, restThickness, viscosity } = model;
+  const { stride, nx } = grid;
   const base = (j + 1) * stride;
-  extrapolateRow(model.u, ut, base, base + stride);
-  extrapolateRow(model.v, vt, base + stride, base + 2 * stride);
+  const here = ringRow(j) * stride - base;
+  const there = ringRow(j + 1) * stride - base;
+  const { now: u, previous: uP, before: uPP } = model.u;
+  const { now: v, previous: vP, before: vPP } = model.v;
   const { now, previous, before, next } = model.eta;
   const keep = (1 - 0.5 * damping * dt) / (1 + 0.5 * damping * dt);
   const drain = (dt * restThickness) / (1 + 0.5 * damping * dt);
@@ -94,22 +108,29 @@ function continuityRow(model: Model, j: number, work: StepWork | null): void {
   const w0 = reducedGravity * P0;
   const wm1 = reducedGravity * PM1;
   const wm2 = reducedGravity * PM2;
-  const { bounds, rowStart } = cells;
-  for (let s = rowStart[j]; s < rowStart[j + 1]; s++) {
-    const end = bounds[2 * s + 1];
-    for (let k = bounds[2 * s]; k < end; k++) {
-      const D = (ut[k + 1] - ut[k]) * perDx + (vt[k + stride] * north - vt[k] * south);
-      const eta = now[k];
-      const etaN = keep * eta - drain * D;
-      next[k] = etaN;
-      divergence[k] = D;
-      head[k] = w1 * etaN + w0 * eta + (wm1 * previous[k] + wm2 * before[k]) - viscosity * D;
-    }
+  ut[base + here] = extrapolated(model.u, base);
+  vt[base + there] = extrapolated(model.v, base + stride);
+  vt[base + there + nx + 1] = extrapolated(model.v, base + stride + nx + 1);
+  let west = extrapolated(model.u, base + 1);
+  ut[base + here + 1] = west;
+  const end = base + nx;
+  for (let k = base + 1; k <= end; k++) {
+    const east = E0 * u[k + 1] + E1 * uP[k + 1] + E2 * uPP[k + 1];
+    ut[k + here + 1] = east;
+    const v1 = E0 * v[k + stride] + E1 * vP[k + stride] + E2 * vPP[k + stride];
+    vt[k + there] = v1;
+    const D = (east - west) * perDx + (v1 * north - vt[k + here] * south);
+    west = east;
+    const eta = now[k];
+    const etaN = keep * eta - drain * D;
+    next[k] = etaN;
+    divergence[k + here] = D;
+    head[k + here] = w1 * etaN + w0 * eta + (wm1 * previous[k] + wm2 * before[k]) - viscosity * D;
   }
   if (grid.periodic) {
-    wrapRow(next, base, grid.nx);
-    wrapRow(head, base, grid.nx);
-    wrapRow(divergence, base, grid.nx);
+    wrapRow(next, base, nx);
+    wrapRow(head, base + here, nx);
+    wrapRow(divergence, base + here, nx);
   }
   if (work) continuityWork(model, j, work);
 }
@@ -119,6 +140,7 @@ function continuityWork(model: Model, j: number, work: StepWork): void {
   const { divergence, cells, grid } = model;
   const { now, next } = model.eta;
   const { bounds, rowStart } = cells;
+  const here = (ringRow(j) - (j + 1)) * grid.stride;
   let sum = 0;
   let squares = 0;
   let product = 0;
@@ -128,7 +150,7 @@ function continuityWork(model: Model, j: number, work: StepWork): void {
       const etaB = 0.5 * (now[k] + next[k]);
       sum += etaB;
       squares += etaB * etaB;
-      product += etaB * divergence[k];
+      product += etaB * divergence[k + here];
     }
   }
   const area = grid.dxC[j] * grid.dy;
@@ -142,17 +164,24 @@ function wrapRow(data: Float64Array, base: number, nx: number): void {
   data[base + nx + 1] = data[base + 1];
 }
 
-/** A s ζ at corner row j. */
+/** A s ζ at corner row j: the viscosity times ζ, with the slip factor put on the corners that touch land. */
 function spinRow(model: Model, j: number): void {
-  const { grid, ut, vt, spin, slipViscosity, rows } = model;
+  const { grid, ut, vt, spin, viscosity, rows, coastCorners } = model;
   const { stride, nx } = grid;
-  const base = (j + 1) * stride;
+  const base = ringRow(j) * stride;
+  const below = (ringRow(j - 1) - ringRow(j)) * stride;
   const perDx = rows.perDxV[j];
   const north = rows.curlNorth[j];
   const south = rows.curlSouth[j];
-  // The row beyond the northern wall is never extrapolated: ut stays 0 there.
-  for (let k = base + 1; k <= base + nx + 1; k++)
-    spin[k] = slipViscosity[k] * ((vt[k] - vt[k - 1]) * perDx - (ut[k] * north - ut[k - stride] * south));
+  let west = vt[base];
+  for (let k = base + 1; k <= base + nx + 1; k++) {
+    const east = vt[k];
+    spin[k] = viscosity * ((east - west) * perDx - (ut[k] * north - ut[k + below] * south));
+    west = east;
+  }
+  const slip = model.slip === 'free' ? 0 : 2;
+  const { rowStart, columns } = coastCorners;
+  for (let c = rowStart[j]; c < rowStart[j + 1]; c++) spin[base + columns[c]] *= slip;
 }
 
 /** Writes τ/(ρ0 H) of one row into model.stressRow, indexed by column + 1. */
@@ -182,6 +211,8 @@ function meridionalRow(model: Model, j: number): void {
   const { grid, ut, head, spin, rows, vPoints, dt, rayleigh, stressRow } = model;
   const { stride, dy } = grid;
   const base = (j + 1) * stride;
+  const here = ringRow(j) * stride - base;
+  const below = ringRow(j - 1) * stride - base;
   stressOfRow(model, j, 'y');
   const { now, next } = model.v;
   const keep = (1 - 0.5 * rayleigh * dt) / (1 + 0.5 * rayleigh * dt);
@@ -192,10 +223,16 @@ function meridionalRow(model: Model, j: number): void {
   const { bounds, rowStart } = vPoints;
   for (let s = rowStart[j]; s < rowStart[j + 1]; s++) {
     const end = bounds[2 * s + 1];
+    let west = ut[bounds[2 * s] + below] + ut[bounds[2 * s] + here];
+    let spinWest = spin[bounds[2 * s] + here];
     for (let k = bounds[2 * s]; k < end; k++) {
-      const C = turn * (ut[k - stride] + ut[k - stride + 1] + (ut[k] + ut[k + 1]));
-      const P = (head[k - stride] - head[k]) * perDy;
-      const F = (spin[k + 1] - spin[k]) * perDx;
+      const east = ut[k + below + 1] + ut[k + here + 1];
+      const spinEast = spin[k + here + 1];
+      const C = turn * (west + east);
+      const P = (head[k + below] - head[k + here]) * perDy;
+      const F = (spinEast - spinWest) * perDx;
+      west = east;
+      spinWest = spinEast;
       next[k] = keep * now[k] + push * (P - C + F + stressRow[k - base]);
     }
   }
@@ -206,6 +243,8 @@ function zonalRow(model: Model, j: number): void {
   const { grid, vt, head, spin, rows, uPoints, dt, rayleigh, stressRow } = model;
   const { stride, dy } = grid;
   const base = (j + 1) * stride;
+  const here = ringRow(j) * stride - base;
+  const above = ringRow(j + 1) * stride - base;
   stressOfRow(model, j, 'x');
   const { now, next } = model.u;
   const keep = (1 - 0.5 * rayleigh * dt) / (1 + 0.5 * rayleigh * dt);
@@ -217,10 +256,16 @@ function zonalRow(model: Model, j: number): void {
   const { bounds, rowStart } = uPoints;
   for (let s = rowStart[j]; s < rowStart[j + 1]; s++) {
     const end = bounds[2 * s + 1];
+    let west = turnSouth * vt[bounds[2 * s] + here - 1] + turnNorth * vt[bounds[2 * s] + above - 1];
+    let headWest = head[bounds[2 * s] + here - 1];
     for (let k = bounds[2 * s]; k < end; k++) {
-      const C = turnSouth * (vt[k - 1] + vt[k]) + turnNorth * (vt[k + stride - 1] + vt[k + stride]);
-      const P = (head[k - 1] - head[k]) * perDx;
-      const F = (spin[k] - spin[k + stride]) * perDy;
+      const east = turnSouth * vt[k + here] + turnNorth * vt[k + above];
+      const headEast = head[k + here];
+      const C = west + east;
+      const P = (headWest - headEast) * perDx;
+      const F = (spin[k + here] - spin[k + above]) * perDy;
+      west = east;
+      headWest = headEast;
       next[k] = keep * now[k] + push * (P + C + F + stressRow[k - base]);
     }
   }
@@ -233,6 +278,8 @@ function meridionalRowWithWork(model: Model, j: number, work: StepWork): void {
   const { grid, ut, head, divergence, spin, rows, vPoints, dt, rayleigh, viscosity, stressRow } = model;
   const { stride, dy } = grid;
   const base = (j + 1) * stride;
+  const here = ringRow(j) * stride - base;
+  const below = ringRow(j - 1) * stride - base;
   stressOfRow(model, j, 'y');
   const { now, next } = model.v;
   const keep = (1 - 0.5 * rayleigh * dt) / (1 + 0.5 * rayleigh * dt);
@@ -248,16 +295,22 @@ function meridionalRowWithWork(model: Model, j: number, work: StepWork): void {
   let kinetic = 0;
   for (let s = rowStart[j]; s < rowStart[j + 1]; s++) {
     const end = bounds[2 * s + 1];
+    let west = ut[bounds[2 * s] + below] + ut[bounds[2 * s] + here];
+    let spinWest = spin[bounds[2 * s] + here];
     for (let k = bounds[2 * s]; k < end; k++) {
-      const C = turn * (ut[k - stride] + ut[k - stride + 1] + (ut[k] + ut[k + 1]));
-      const P = (head[k - stride] - head[k]) * perDy;
-      const F = (spin[k + 1] - spin[k]) * perDx;
+      const east = ut[k + below + 1] + ut[k + here + 1];
+      const spinEast = spin[k + here + 1];
+      const C = turn * (west + east);
+      const P = (head[k + below] - head[k + here]) * perDy;
+      const F = (spinEast - spinWest) * perDx;
+      west = east;
+      spinWest = spinEast;
       const S = stressRow[k - base];
       const v = now[k];
       const vN = keep * v + push * (P - C + F + S);
       next[k] = vN;
       const vB = 0.5 * (v + vN);
-      const stretch = (divergence[k] - divergence[k - stride]) * viscousPerDy;
+      const stretch = (divergence[k + here] - divergence[k + below]) * viscousPerDy;
       wind += vB * S;
       squares += vB * vB;
       viscous += vB * (F + stretch);
@@ -272,6 +325,8 @@ function zonalRowWithWork(model: Model, j: number, work: StepWork): void {
   const { grid, vt, head, divergence, spin, rows, uPoints, dt, rayleigh, viscosity, stressRow } = model;
   const { stride, dy } = grid;
   const base = (j + 1) * stride;
+  const here = ringRow(j) * stride - base;
+  const above = ringRow(j + 1) * stride - base;
   stressOfRow(model, j, 'x');
   const { now, next } = model.u;
   const keep = (1 - 0.5 * rayleigh * dt) / (1 + 0.5 * rayleigh * dt);
@@ -288,16 +343,22 @@ function zonalRowWithWork(model: Model, j: number, work: StepWork): void {
   let kinetic = 0;
   for (let s = rowStart[j]; s < rowStart[j + 1]; s++) {
     const end = bounds[2 * s + 1];
+    let west = turnSouth * vt[bounds[2 * s] + here - 1] + turnNorth * vt[bounds[2 * s] + above - 1];
+    let headWest = head[bounds[2 * s] + here - 1];
     for (let k = bounds[2 * s]; k < end; k++) {
-      const C = turnSouth * (vt[k - 1] + vt[k]) + turnNorth * (vt[k + stride - 1] + vt[k + stride]);
-      const P = (head[k - 1] - head[k]) * perDx;
-      const F = (spin[k] - spin[k + stride]) * perDy;
+      const east = turnSouth * vt[k + here] + turnNorth * vt[k + above];
+      const headEast = head[k + here];
+      const C = west + east;
+      const P = (headWest - headEast) * perDx;
+      const F = (spin[k + here] - spin[k + above]) * perDy;
+      west = east;
+      headWest = headEast;
       const S = stressRow[k - base];
       const u = now[k];
       const uN = keep * u + push * (P + C + F + S);
       next[k] = uN;
       const uB = 0.5 * (u + uN);
-      const stretch = (divergence[k] - divergence[k - 1]) * viscousPerDx;
+      const stretch = (divergence[k + here] - divergence[k + here - 1]) * viscousPerDx;
       wind += uB * S;
       squares += uB * uB;
       viscous += uB * (F + stretch);
@@ -313,4 +374,12 @@ function addWork(work: StepWork, area: number, wind: number, squares: number, vi
   work.speedSquared += area * squares;
   work.viscous += area * viscous;
   work.kinetic += area * kinetic;
+}
+
+/**
+ * Value that the last step used at n + ½ of a velocity at padded index k: E0 u(n) + E1 u(n − 1) + E2 u(n − 2). After a
+ * step the free buffer still holds the oldest level, so this is the flux that changed η, to the last bit.
+ */
+export function lastHalfLevel(levels: Levels, k: number): number {
+  return E0 * levels.previous[k] + E1 * levels.before[k] + E2 * levels.next[k];
 }
