@@ -1,9 +1,22 @@
+import { LIMITS } from '../limits';
 import { coastLongitude } from '../grid/land';
 import type { GridLayout } from '../grid/build-grid';
 import type { Basin, Island } from '../setup';
 
+/** Rows of an oversize grid that are looked at. */
+const SAMPLED_ROWS = 500;
+
 /** Columns [from, to) of a row. */
 type Span = [number, number];
+
+/** Edges in degrees; a polygon has the longitudes at which its ring crosses each row of cell centres, a box has none. */
+interface PlacedIsland {
+  west: number;
+  east: number;
+  south: number;
+  north: number;
+  crossings: Map<number, number[]> | null;
+}
 
 /**
  * Land and water of a snapped grid, row by row as spans: the same cells as `landMask`, without an array of them.
@@ -13,25 +26,34 @@ export class LandRows {
   readonly #basin: Basin;
   readonly #layout: GridLayout;
   readonly #rows = new Map<number, Span[]>();
-  readonly #boxes: { island: Island; west: number; east: number; south: number; north: number }[];
+  readonly #islands: PlacedIsland[];
+  #wet: number | null = null;
 
   constructor(basin: Basin, layout: GridLayout) {
     this.#basin = basin;
     this.#layout = layout;
-    this.#boxes = basin.islands.map((island) => ({ island, ...boundsOf(island) }));
+    this.#islands = basin.islands.map((island) => ({
+      ...boundsOf(island),
+      crossings: island.kind === 'polygon' ? this.#crossingsOf(island.points) : null,
+    }));
   }
 
   get hasLand(): boolean {
-    return this.#boxes.length > 0 || this.#basin.westernCoast.kind === 'slanting';
+    return this.#islands.length > 0 || this.#basin.westernCoast.kind === 'slanting';
   }
 
-  /** Number of water cells. */
+  /** Number of water cells; of a grid beyond the hard limit an estimate from every so many rows, since it is refused. */
   wetCells(): number {
     const { nx, ny } = this.#layout;
     if (!this.hasLand) return nx * ny;
-    let wet = 0;
-    for (let j = 0; j < ny; j++) wet += nx - this.#landOf(j).reduce((sum, [from, to]) => sum + to - from, 0);
-    return wet;
+    if (this.#wet === null) {
+      const every = nx * ny > LIMITS.cells.max ? Math.ceil(ny / SAMPLED_ROWS) : 1;
+      let [wet, rows] = [0, 0];
+      for (let j = 0; j < ny; j += every, rows++)
+        wet += nx - this.#landOf(j).reduce((sum, [from, to]) => sum + to - from, 0);
+      this.#wet = every === 1 ? wet : Math.round((wet * ny) / rows);
+    }
+    return this.#wet;
   }
 
   isWet(i: number, j: number): boolean {
@@ -99,17 +121,37 @@ export class LandRows {
     const spans: Span[] = [];
     if (this.#basin.westernCoast.kind === 'slanting')
       spans.push([0, this.#firstNotWestOf(coastLongitude(this.#basin, latitude))]);
-    for (const { island, west, east, south, north } of this.#boxes) {
+    for (const { west, east, south, north, crossings } of this.#islands) {
       if (latitude < south || latitude > north) continue;
       const [first, last] = [this.#firstNotWestOf(west), this.#firstEastOf(east)];
-      if (island.kind === 'box') spans.push([first, last]);
+      if (crossings === null) spans.push([first, last]);
       else
-        for (const [from, to] of inside(island.points, latitude))
+        for (const [from, to] of twoByTwo(crossings.get(j) ?? []))
           spans.push([Math.max(first, this.#firstNotWestOf(from)), Math.min(last, this.#firstNotWestOf(to))]);
     }
     const row = merged(spans.map(([from, to]): Span => [Math.max(0, from), Math.min(nx, to)]));
     this.#rows.set(j, row);
     return row;
+  }
+
+  /** Where the edges of a ring cross the rows of cell centres; each edge looks only at the rows that it spans. */
+  #crossingsOf(ring: readonly [number, number][]): Map<number, number[]> {
+    const { start, spacing, cells } = this.#layout.meridional;
+    const rowNear = (latitude: number) => Math.round((latitude - start) / spacing - 0.5);
+    const rows = new Map<number, number[]>();
+    for (let k = 0, previous = ring.length - 1; k < ring.length; previous = k++) {
+      const [x1, y1] = ring[previous];
+      const [x2, y2] = ring[k];
+      const last = Math.min(cells - 1, rowNear(Math.max(y1, y2)) + 1);
+      for (let j = Math.max(0, rowNear(Math.min(y1, y2)) - 1); j <= last; j++) {
+        const latitude = this.latitudeOf(j);
+        if (y1 > latitude === y2 > latitude) continue;
+        const row = rows.get(j) ?? [];
+        row.push(x1 + ((latitude - y1) / (y2 - y1)) * (x2 - x1));
+        rows.set(j, row);
+      }
+    }
+    return rows;
   }
 
   /** First column whose centre is not west of a longitude; compared with the very centres of the grid. */
@@ -132,19 +174,13 @@ export class LandRows {
   }
 }
 
-/** Stretches of longitude inside a ring along a latitude: between its crossings, two by two (even-odd rule). */
-function inside(ring: readonly [number, number][], latitude: number): [number, number][] {
-  const crossings: number[] = [];
-  for (let k = 0, previous = ring.length - 1; k < ring.length; previous = k++) {
-    const [x1, y1] = ring[previous];
-    const [x2, y2] = ring[k];
-    if (y1 > latitude !== y2 > latitude) crossings.push(x1 + ((latitude - y1) / (y2 - y1)) * (x2 - x1));
-  }
-  crossings.sort((a, b) => a - b);
-  return Array.from({ length: crossings.length / 2 }, (_, k) => [crossings[2 * k], crossings[2 * k + 1]]);
+/** Stretches of longitude inside a ring along a row: between its crossings, two by two (even-odd rule). */
+function twoByTwo(crossings: readonly number[]): [number, number][] {
+  const sorted = [...crossings].sort((a, b) => a - b);
+  return Array.from({ length: sorted.length / 2 }, (_, k) => [sorted[2 * k], sorted[2 * k + 1]]);
 }
 
-function boundsOf(island: Island): { west: number; east: number; south: number; north: number } {
+function boundsOf(island: Island): Omit<PlacedIsland, 'crossings'> {
   if (island.kind === 'box')
     return { west: island.westDeg, east: island.eastDeg, south: island.southDeg, north: island.northDeg };
   const longitudes = island.points.map(([longitude]) => longitude);

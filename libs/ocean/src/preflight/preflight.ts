@@ -69,13 +69,11 @@ export function preflight(setup: Setup, context: PreflightContext = {}): Preflig
 
 function caseOf(setup: Setup, context: PreflightContext, like?: Case): Case {
   const scales = scalesOf(setup);
-  const land = new LandRows(setup.basin, scales.layout);
   // What a remedy leaves alone is not worked out again.
-  const sameWind =
-    like !== undefined &&
-    like.setup.wind === setup.wind &&
-    like.setup.basin === setup.basin &&
-    like.setup.layer === setup.layer;
+  const sameBasin = like !== undefined && like.setup.basin === setup.basin;
+  const sameGrid = sameBasin && like.scales.dx === scales.dx && like.scales.dy === scales.dy;
+  const land = sameGrid ? like.land : new LandRows(setup.basin, scales.layout);
+  const sameWind = sameBasin && like.setup.wind === setup.wind && like.setup.layer === setup.layer;
   return {
     setup,
     context,

@@ -5,6 +5,8 @@ import { SECONDS_PER_YEAR, type Scales } from './scales';
 
 /** Latitudes at which the estimate is taken at most, besides those that the patterns themselves ask for. */
 const MAX_ROWS = 160;
+/** Patches whose own longitudes are looked at, the strongest first; all of them count at every place. */
+const MAX_PATCHES = 10;
 /** Half-width of the differences that give the curl, degrees: far below any length scale, far above rounding. */
 const DIFFERENCE_DEG = 1e-4;
 
@@ -30,28 +32,42 @@ export function windEstimate(setup: Setup, scales: Scales): WindEstimate {
   const north = south + layout.ny * layout.meridional.spacing;
   const west = layout.zonal.start;
   const longitudes = sampleLongitudes(setup, west, west + layout.nx * layout.zonal.spacing);
-  const columns = profiles.map((profile) => longitudes.map((longitude) => profile.along(longitude)));
+  // [component][longitude]
+  const n = longitudes.length;
+  const factors = new Float64Array(profiles.length * n);
+  const slopes = new Float64Array(profiles.length * n);
+  profiles.forEach((profile, k) =>
+    longitudes.forEach((longitude, i) => {
+      const { factor, slope } = profile.along(longitude);
+      factors[k * n + i] = factor;
+      slopes[k * n + i] = slope;
+    }),
+  );
   const { reducedGravityMS2: gPrime, restThicknessM: H } = setup.layer;
+  const [push, sumX, sumY] = [new Float64Array(n), new Float64Array(n), new Float64Array(n)];
   let thinning = 0;
   let stress = 0;
   for (const latitude of sampleLatitudes(setup, south, north, layout.ny)) {
     const f = f0 + beta * (latitude - referenceDeg) * scales.metresPerDegreeLatitude;
-    const rows = profiles.map((profile) => ({ ...profile.across(latitude), reach: profile.reach(f) }));
-    for (let i = 0; i < longitudes.length; i++) {
-      let [push, sumX, sumY] = [0, 0, 0];
-      for (let k = 0; k < rows.length; k++) {
-        const { taux, tauy, dTauxDy, reach } = rows[k];
-        const { factor, slope } = columns[k][i];
-        sumX += Math.abs(taux * factor) * profiles[k].strength;
-        sumY += Math.abs(tauy * factor) * profiles[k].strength;
-        if (trapping === null) continue;
-        push +=
-          Math.abs(f) < beta * trapping
-            ? Math.abs(taux * factor) * reach + Math.abs(tauy * factor) * 2 * trapping * profiles[k].strength
-            : (Math.abs(f * (tauy * slope - dTauxDy * factor) + beta * taux * factor) * reach) / beta;
+    const equatorial = trapping !== null && Math.abs(f) < beta * trapping;
+    for (const sums of [push, sumX, sumY]) sums.fill(0);
+    profiles.forEach((profile, k) => {
+      const { taux, tauy, dTauxDy } = profile.across(latitude);
+      const reach = profile.reach(f);
+      const across = 2 * (trapping ?? 0) * profile.strength;
+      for (let i = 0; i < n; i++) {
+        const factor = factors[k * n + i];
+        sumX[i] += Math.abs(taux * factor) * profile.strength;
+        sumY[i] += Math.abs(tauy * factor) * profile.strength;
+        push[i] += equatorial
+          ? Math.abs(taux * factor) * reach + Math.abs(tauy * factor) * across
+          : Math.abs(f * (tauy * slopes[k * n + i] - dTauxDy * factor) + beta * taux * factor) * reach;
       }
-      stress = Math.max(stress, Math.hypot(sumX, sumY));
-      thinning = Math.max(thinning, push / (gPrime * setup.constants.densityKgM3 * H * H));
+    });
+    const scale = gPrime * setup.constants.densityKgM3 * H * H * (equatorial ? 1 : beta);
+    for (let i = 0; i < n; i++) {
+      stress = Math.max(stress, Math.hypot(sumX[i], sumY[i]));
+      if (trapping !== null) thinning = Math.max(thinning, push[i] / scale);
     }
   }
   return { thinning: trapping === null ? null : thinning, stress };
@@ -134,14 +150,13 @@ function sampleLatitudes(setup: Setup, south: number, north: number, ny: number)
 }
 
 function sampleLongitudes(setup: Setup, west: number, east: number): number[] {
-  const samples = [(west + east) / 2];
-  for (const { pattern } of setup.wind.components)
-    if (pattern.kind === 'gaussianPatch')
-      samples.push(...[-1, 0, 1].map((k) => pattern.longitudeDeg + k * pattern.widthLongitudeDeg));
-  return samples.filter((longitude) => longitude >= west && longitude <= east);
+  const patches = setup.wind.components.flatMap(({ pattern }) => (pattern.kind === 'gaussianPatch' ? [pattern] : []));
+  const strongest = patches.sort((a, b) => Math.abs(b.amplitudeNM2) - Math.abs(a.amplitudeNM2)).slice(0, MAX_PATCHES);
+  const samples = strongest.flatMap((patch) => [-1, 0, 1].map((k) => patch.longitudeDeg + k * patch.widthLongitudeDeg));
+  return [(west + east) / 2, ...samples].filter((longitude) => longitude >= west && longitude <= east);
 }
 
 /** Where a Gaussian and its derivative are largest. */
 function around(centre: number, width: number): number[] {
-  return [-1.5, -1, -0.5, 0, 0.5, 1, 1.5].map((k) => centre + k * width);
+  return [-1, -0.5, 0, 0.5, 1].map((k) => centre + k * width);
 }
