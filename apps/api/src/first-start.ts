@@ -26,6 +26,8 @@ const NAMES: Record<Role, string> = {
   admin: 'Ada Admin',
 };
 const addressOf = (role: Role) => `${role}@halfdeep.example`;
+/** Owns the demonstration's experiment. */
+export const DEMO_MODELLER = addressOf('modeller');
 
 /**
  * Makes sure that somebody can sign in: the demonstration accounts at the first start, or a link for the first admin as

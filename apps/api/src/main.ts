@@ -6,7 +6,7 @@ import { fileURLToPath } from 'node:url';
 import { buildApp } from './app';
 import { composeServices, type Services } from './compose-services';
 import { queueDemonstration } from './demo/demonstration';
-import { prepareAccounts, type FirstStartNews } from './first-start';
+import { DEMO_MODELLER, prepareAccounts, type FirstStartNews } from './first-start';
 import { claimFolder } from './one-server';
 import { readSettings, SettingsError, type Settings } from './settings';
 
@@ -67,7 +67,35 @@ function whyNot(error: unknown, { host, port }: Settings): Error {
   return error as Error;
 }
 
-/** Stops taking requests, saves and closes everything; then the process ends by itself. */
+/** A server that takes requests, and how it stops. */
+interface Running {
+  logger: Services['logger'];
+  /** Stops taking requests, saves and closes everything. */
+  stop: () => Promise<void>;
+}
+
+async function start(): Promise<Running> {
+  const project = projectFolder();
+  const settings = readSettings(process.env, project);
+  mkdirSync(settings.varFolder, { recursive: true });
+  const giveBack = await claimFolder(settings.varFolder);
+  let handler: RequestListener = stillStarting;
+  const server = createServer((req, res) => handler(req, res));
+  // The port is taken before anything is touched: a second start by mistake changes nothing.
+  const port = await listen(server, settings).catch(async (error: unknown) => {
+    await giveBack();
+    throw whyNot(error, settings);
+  });
+  const services = await composeServices(settings);
+  services.listeningOn(port);
+  const news = await prepareAccounts(services);
+  await services.start();
+  if (services.demonstration) await queueDemonstration({ ...services.runs, desk: services.desk }, DEMO_MODELLER);
+  handler = buildApp(services, { webFolder: join(project, 'dist', 'web') });
+  announce(services, news);
+  return { logger: services.logger, stop: () => shutDown(server, services, giveBack) };
+}
+
 async function shutDown(server: Server, services: Services, giveBack: () => Promise<void>): Promise<void> {
   const closed = new Promise<void>((resolve) => server.close(() => resolve()));
   const impatient = setTimeout(() => server.closeAllConnections(), PATIENCE_MS);
@@ -79,48 +107,29 @@ async function shutDown(server: Server, services: Services, giveBack: () => Prom
   await giveBack();
 }
 
-async function main(): Promise<void> {
-  const project = projectFolder();
-  const settings = readSettings(process.env, project);
-  mkdirSync(settings.varFolder, { recursive: true });
-  const giveBack = await claimFolder(settings.varFolder);
-  // The port is taken before anything is touched: a second start by mistake changes nothing.
-  let handler: RequestListener = stillStarting;
-  const server = createServer((req, res) => handler(req, res));
-  const port = await listen(server, settings).catch((error: unknown) => {
-    throw whyNot(error, settings);
-  });
-  const services = await composeServices(settings);
-  services.listeningOn(port);
-  const news = await prepareAccounts(services);
-  handler = buildApp(services, { webFolder: join(project, 'dist', 'web') });
-  await services.start();
-  announce(services, news);
-  if (services.demonstration)
-    await queueDemonstration({ ...services.runs, desk: services.desk }, 'modeller@halfdeep.example').catch(
-      (error: unknown) => services.logger.error({ err: error }, 'queueing the demonstration'),
-    );
-
-  let stopping = false;
-  const stop = (signal: NodeJS.Signals) => {
-    if (stopping) return;
-    stopping = true;
-    say(`${signal}: saving what runs, then stopping.`);
-    shutDown(server, services, giveBack).then(
-      () => process.exit(0),
-      (error: unknown) => {
-        services.logger.error({ err: error }, 'failed while stopping');
-        process.exit(1);
-      },
-    );
-  };
-  process.on('SIGTERM', stop);
-  process.on('SIGINT', stop);
+function fail(error: unknown): never {
+  const known = error instanceof Error;
+  process.stderr.write(`Halfdeep does not start.\n${known ? error.message : String(error)}\n`);
+  if (process.env['HALFDEEP_LOG'] === 'debug' && known) process.stderr.write(`${error.stack ?? ''}\n`);
+  process.exit(error instanceof SettingsError ? 2 : 1);
 }
 
-main().catch((error: unknown) => {
-  const known = error instanceof SettingsError || error instanceof Error;
-  process.stderr.write(`Halfdeep does not start.\n${known ? error.message : String(error)}\n`);
-  if (process.env['HALFDEEP_LOG'] === 'debug' && error instanceof Error) process.stderr.write(`${error.stack ?? ''}\n`);
-  process.exit(error instanceof SettingsError ? 2 : 1);
-});
+const starting = start();
+starting.catch(fail);
+
+let stopping = false;
+/** Also when the start is not over: what it began is closed in order. */
+async function stop(signal: NodeJS.Signals): Promise<void> {
+  if (stopping) return;
+  stopping = true;
+  say(`${signal}: saving what runs, then stopping.`);
+  const running = await starting;
+  try {
+    await running.stop();
+    process.exit(0);
+  } catch (error) {
+    running.logger.error({ err: error }, 'failed while stopping');
+    process.exit(1);
+  }
+}
+for (const signal of ['SIGTERM', 'SIGINT'] as const) process.on(signal, (name) => void stop(name));
