@@ -1,0 +1,161 @@
+import { computed, Injectable, linkedSignal, signal } from '@angular/core';
+import { setupSchema } from '@halfdeep/contracts';
+import { diffSetups, type Check, type Preflight, type Remedy, type Setup, type SetupChange } from '@halfdeep/ocean';
+import { blankSetup } from './blank-setup';
+import { sameValue, toPointer, valueAt, withValueAt } from './setup-pointer';
+
+/** The run that a sensitivity run is made from. */
+export interface ParentRun {
+  id: string;
+  label: string;
+  setup: Setup;
+}
+
+/**
+ * The setup as it is being written. While a field is empty its number is null, so `setup()` is null until every field
+ * reads well; fields are addressed by JSON pointer, as the schema, preflight, remedies and the API address them.
+ */
+@Injectable()
+export class SetupDraft {
+  private readonly written = signal<Setup>(blankSetup());
+  private readonly labelWritten = signal<string | null>(null);
+  private readonly fromServer = signal<ReadonlyMap<string, string>>(new Map());
+
+  readonly parent = signal<ParentRun | null>(null);
+  /** What the form was filled in with; a draft that equals it need not be kept. */
+  readonly start = signal<Setup>(blankSetup());
+  readonly preflight = signal<Preflight | null>(null);
+
+  readonly value = this.written.asReadonly();
+  private readonly parsed = computed(() => setupSchema.safeParse(this.written()));
+  /** The setup when every field reads well, else null. */
+  readonly setup = computed<Setup | null>(() => this.parsed().data ?? null);
+
+  /** The last setup that read well: what pictures and preflight show while a field is half typed. */
+  readonly readable = linkedSignal<Setup | null, Setup>({
+    source: this.setup,
+    computation: (setup, before) => setup ?? before?.value ?? blankSetup(),
+  });
+
+  /** What is wrong with a field, by pointer: the schema's word first, then the server's. */
+  readonly problems = computed<ReadonlyMap<string, string>>(() => {
+    const found = new Map(this.fromServer());
+    for (const issue of this.parsed().error?.issues ?? []) {
+      const pointer = toPointer(issue.path);
+      if (!found.has(pointer) || this.fromServer().has(pointer)) found.set(pointer, issue.message);
+    }
+    return found;
+  });
+
+  readonly changes = computed<SetupChange[]>(() => {
+    const parent = this.parent();
+    return parent ? diffSetups(parent.setup, this.readable()) : [];
+  });
+
+  private readonly changesByPointer = computed(
+    () => new Map(this.changes().map((change) => [change.pointer, change] as const)),
+  );
+
+  /** The label proposed from the changes until somebody writes another. */
+  readonly proposedLabel = computed(() => proposeLabel(this.parent(), this.changes()));
+  readonly label = computed(() => this.labelWritten() ?? this.proposedLabel());
+  readonly ownLabel = this.labelWritten.asReadonly();
+  readonly touched = computed(() => this.labelWritten() !== null || !sameValue(this.written(), this.start()));
+
+  at(pointer: string): unknown {
+    return valueAt(this.written(), pointer);
+  }
+
+  /** A word or a yes-no at a pointer as text; '' for anything else. */
+  text(pointer: string): string {
+    const value = this.at(pointer);
+    return typeof value === 'string' || typeof value === 'boolean' ? String(value) : '';
+  }
+
+  set(pointer: string, value: unknown): void {
+    if (Object.is(this.at(pointer), value)) return;
+    this.written.set(withValueAt(this.written(), pointer, value));
+    this.forget(pointer);
+  }
+
+  setLabel(label: string): void {
+    this.labelWritten.set(label);
+    this.forget('/label');
+  }
+
+  /** Replaces everything that was written. */
+  fill(setup: Setup, label: string | null = null): void {
+    this.written.set(setup);
+    this.labelWritten.set(label);
+    this.fromServer.set(new Map());
+  }
+
+  /** Writes what a remedy says; false when a place that it names is no longer there. */
+  apply(remedy: Remedy): boolean {
+    let changed = this.written();
+    try {
+      for (const { pointer, value } of remedy.changes) changed = withValueAt(changed, pointer, value);
+    } catch (error) {
+      if (error instanceof RangeError) return false;
+      throw error;
+    }
+    this.written.set(changed);
+    for (const { pointer } of remedy.changes) this.forget(pointer);
+    return true;
+  }
+
+  insert(pointer: string, item: unknown, index?: number): void {
+    const list = this.list(pointer);
+    const place = index ?? list.length;
+    this.set(pointer, [...list.slice(0, place), item, ...list.slice(place)]);
+  }
+
+  remove(pointer: string, index: number): void {
+    this.set(
+      pointer,
+      this.list(pointer).filter((_, k) => k !== index),
+    );
+  }
+
+  private list(pointer: string): unknown[] {
+    const list = this.at(pointer);
+    return Array.isArray(list) ? (list as unknown[]) : [];
+  }
+
+  /** Problems of a 422 answer: pointers into the request body {label, setup, parentRunId}. */
+  refuse(errors: readonly { pointer: string; detail: string }[]): void {
+    this.fromServer.set(
+      new Map(errors.map(({ pointer, detail }) => [pointer.replace(/^\/setup(?=\/|$)/, ''), detail])),
+    );
+  }
+
+  /** The change from the parent that is about exactly this place, or null. */
+  change(pointer: string): SetupChange | null {
+    return this.changesByPointer().get(pointer) ?? null;
+  }
+
+  /** The worst check that is about a field, passes left out. */
+  check(pointer: string): Check | null {
+    // Preflight sorts refusals before cautions before passes.
+    return (
+      this.preflight()?.checks.find((check) => check.verdict !== 'pass' && check.pointers.includes(pointer)) ?? null
+    );
+  }
+
+  /** What the server said about a place is old once the place, or what holds it, is written. */
+  private forget(pointer: string): void {
+    const kept = [...this.fromServer()].filter(
+      ([at]) => at !== '' && !at.startsWith(pointer) && !pointer.startsWith(at),
+    );
+    if (kept.length !== this.fromServer().size) this.fromServer.set(new Map(kept));
+  }
+}
+
+/** "Seasonal strength 1.20" for one change, two joined by a comma, "4 changes from Strong" beyond; "Control" without a parent. */
+export function proposeLabel(parent: ParentRun | null, changes: readonly SetupChange[]): string {
+  if (!parent) return 'Control';
+  if (changes.length === 0) return '';
+  if (changes.length > 2) return `${changes.length} changes from ${parent.label}`.slice(0, 80);
+  const words = changes.map(({ label, to, unit }) => [label, to, unit].filter(Boolean).join(' ')).join(', ');
+  return (words.charAt(0).toUpperCase() + words.slice(1)).slice(0, 80);
+}

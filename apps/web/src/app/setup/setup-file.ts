@@ -1,0 +1,78 @@
+import { setupSchema } from '@halfdeep/contracts';
+import { fieldLabel, type Setup } from '@halfdeep/ocean';
+import { toPointer, valueAt } from './setup-pointer';
+
+/** What a file held: a setup that the form can show (some fields may still be refused there), or why not. */
+export type SetupFileReading =
+  { kind: 'setup'; setup: Setup; label: string | null; refusedFields: number } | { kind: 'refused'; reasons: string[] };
+
+/** Issues that a field of the form can show and cure. */
+const CURABLE = new Set(['too_small', 'too_big', 'not_multiple_of', 'custom', 'invalid_format']);
+const MOST_REASONS = 6;
+
+/**
+ * Reads a setup from JSON text: the setup itself, as scripts post it, or an object {label, setup}. Values out of range
+ * are let into the form, which shows them; what is no setup is refused with the places that are wrong.
+ */
+export function readSetupFile(text: string): SetupFileReading {
+  let json: unknown;
+  try {
+    json = JSON.parse(text);
+  } catch (error) {
+    if (!(error instanceof SyntaxError)) throw error;
+    return { kind: 'refused', reasons: [`This file is not JSON: ${error.message}.`] };
+  }
+  const outer = isObject(json) && isObject(json['setup']) ? json : null;
+  const candidate: unknown = outer ? outer['setup'] : json;
+  const label = typeof outer?.['label'] === 'string' ? outer['label'].slice(0, 80) : null;
+  if (!isObject(candidate) || !('schemaVersion' in candidate))
+    return { kind: 'refused', reasons: ['This file holds no setup: a setup is an object with a schemaVersion.'] };
+  if (candidate['schemaVersion'] !== 1)
+    return {
+      kind: 'refused',
+      reasons: [
+        `The setup says schema version ${JSON.stringify(candidate['schemaVersion'])}; this form reads version 1.`,
+      ],
+    };
+  const parsed = setupSchema.safeParse(candidate);
+  if (parsed.success) return { kind: 'setup', setup: parsed.data, label, refusedFields: 0 };
+  const wrong = parsed.error.issues.filter(
+    (issue) => !CURABLE.has(issue.code) && !(issue.code === 'invalid_type' && isEmptyField(candidate, issue.path)),
+  );
+  if (wrong.length === 0)
+    return { kind: 'setup', setup: candidate as unknown as Setup, label, refusedFields: parsed.error.issues.length };
+  const reasons = wrong.slice(0, MOST_REASONS).map((issue) => {
+    const pointer = toPointer(issue.path);
+    return `${pointer || 'The setup'} (${fieldLabel(pointer)}): ${issue.message}`;
+  });
+  if (wrong.length > MOST_REASONS) reasons.push(`and ${wrong.length - MOST_REASONS} more`);
+  return { kind: 'refused', reasons };
+}
+
+/** True when the form can show it: every part is there and of its kind, though numbers may be empty or out of range. */
+export function hasShapeOfSetup(value: unknown): value is Setup {
+  return readSetupFile(JSON.stringify(value ?? null)).kind === 'setup';
+}
+
+/** The text that `readSetupFile` and the API read. */
+export function writeSetupFile(setup: Setup): string {
+  return `${JSON.stringify(setup, null, 2)}\n`;
+}
+
+/** A file name from a label: letters and digits of any script, the rest becomes hyphens. */
+export function setupFileName(label: string): string {
+  const stem = label
+    .toLowerCase()
+    .replace(/[^\p{L}\p{N}.]+/gu, '-')
+    .replace(/^[-.]+|[-.]+$/g, '');
+  return `${stem || 'setup'}.setup.json`;
+}
+
+/** A number that was still empty when the form was saved. */
+function isEmptyField(setup: unknown, path: readonly PropertyKey[]): boolean {
+  return valueAt(setup, toPointer(path)) === null;
+}
+
+function isObject(value: unknown): value is Record<string, unknown> {
+  return typeof value === 'object' && value !== null && !Array.isArray(value);
+}
