@@ -9,6 +9,10 @@ import { type Slice, type SliceService } from './slice-service';
 
 const runId = z.object({ id: z.uuid('A run is named by its id, a UUID.') });
 const variable = z.enum(VARIABLES, `A variable is one of ${VARIABLES.join(', ')}.`);
+const record = z
+  .string()
+  .regex(/^(latest|\d{1,9})$/, 'A record is a whole number from 0, or “latest”.')
+  .transform((text) => (text === 'latest' ? text : Number(text)));
 const format = z.enum(['binary', 'csv']).default('binary');
 /** What a query string holds for an absent number is no number: an empty text must not become 0. */
 const number = (name: string, min: number, max: number) =>
@@ -37,6 +41,7 @@ const hovmollerQuery = z
     message: 'A space-time slice lies along one line: give either latitude or longitude.',
   });
 
+const SERIES = ['sections', 'moorings', 'budget'] as const;
 const MEDIA = 'application/octet-stream';
 
 /** /runs/:id/frames, /hovmoller and /series: results as binary slices, or as CSV with ?format=csv. */
@@ -54,10 +59,7 @@ export function sliceRoutes({ runs, slices }: { runs: RunService; slices: SliceS
       action: 'run.read',
       summary: 'A map of one moment, [latitude, longitude]; record “latest” is the newest',
       params: runId.extend({
-        record: z.union(
-          [z.literal('latest'), z.coerce.number().int().min(0)],
-          'A record is a whole number from 0, or “latest”.',
-        ),
+        record,
       }),
       query: z.object({ variable, format }),
       subject,
@@ -93,7 +95,7 @@ export function sliceRoutes({ runs, slices }: { runs: RunService; slices: SliceS
       path: '/runs/:id/series/:stream',
       action: 'run.read',
       summary: 'Records of sections, moorings or the budget, [time, column], float64',
-      params: runId.extend({ stream: z.enum(['sections', 'moorings', 'budget']) }),
+      params: runId.extend({ stream: z.enum(SERIES, `A stream of series is one of ${SERIES.join(', ')}.`) }),
       query: z.object({ ...days, format }),
       subject,
       media: MEDIA,
