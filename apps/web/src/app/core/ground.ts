@@ -1,4 +1,5 @@
 import { DOCUMENT, Injectable, computed, inject, signal } from '@angular/core';
+import { keepText } from './kept';
 
 export type GroundName = 'paper' | 'ink';
 const KEY = 'halfdeep.ground';
@@ -21,12 +22,7 @@ export class Ground {
   choose(name: GroundName): void {
     this.chosen.set(name);
     this.document.documentElement.dataset['theme'] = name;
-    try {
-      this.document.defaultView?.localStorage.setItem(KEY, name);
-    } catch (error) {
-      // A browser that keeps nothing still shows the choice until the page is left.
-      if (!(error instanceof DOMException)) throw error;
-    }
+    keepText(KEY, name);
   }
 
   private read(): GroundName | null {

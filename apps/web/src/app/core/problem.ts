@@ -48,8 +48,9 @@ function problemOf(status: number, title: string, detail: string, retryAfter: nu
 
 /** Requests for binary slices get their refusal as bytes; they hold the same JSON. */
 function bodyOf(body: unknown): unknown {
-  const text =
-    body instanceof ArrayBuffer ? new TextDecoder().decode(body) : typeof body === 'string' ? body : undefined;
+  // By name, not by class: bytes can come from another realm.
+  const bytes = Object.prototype.toString.call(body) === '[object ArrayBuffer]';
+  const text = bytes ? new TextDecoder().decode(body as ArrayBuffer) : typeof body === 'string' ? body : undefined;
   if (text === undefined) return body;
   try {
     return JSON.parse(text) as unknown;

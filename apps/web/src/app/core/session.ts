@@ -1,10 +1,14 @@
-import { HttpClient } from '@angular/common/http';
+import { HttpClient, HttpErrorResponse } from '@angular/common/http';
 import { Injectable, computed, inject, signal } from '@angular/core';
 import { Router } from '@angular/router';
 import { type Me, type Role, meSchema, sessionSchema } from '@halfdeep/contracts';
 import { type Observable, catchError, defer, finalize, firstValueFrom, map, of, shareReplay, throwError } from 'rxjs';
 import { Api } from './api';
+import { keepText, keptText } from './kept';
 import { ApiProblem } from './problem';
+
+/** Name of the lock and of the moment of the last trade. */
+const TRADE = 'halfdeep.refreshed';
 
 /** Who sits at this desk. The tokens live in cookies that no script can read; this service knows the person alone. */
 @Injectable({ providedIn: 'root' })
@@ -68,15 +72,35 @@ export class Session {
     await this.router.navigateByUrl('/sign-in');
   }
 
-  /** Trades the refresh cookie for a new access cookie; one trade at a time. False: the session has ended. */
+  /**
+   * Trades the refresh cookie for new cookies; one trade at a time in this tab, and in all tabs where the browser can lock.
+   * False: the session has ended. Errors when the server does not answer.
+   */
   refresh(): Observable<boolean> {
-    this.refreshing ??= defer(() => this.http.post('/api/session/refresh', {}, { responseType: 'text' })).pipe(
-      map(() => true),
-      catchError(() => of(false)),
+    this.refreshing ??= defer(() => this.tradeInTurn()).pipe(
       finalize(() => (this.refreshing = null)),
       shareReplay({ bufferSize: 1, refCount: true }),
     );
     return this.refreshing;
+  }
+
+  // A refresh token is good once: a second tab that sent it too would end the session for both.
+  private async tradeInTurn(): Promise<boolean> {
+    const asked = Date.now();
+    const locks = (navigator as { locks?: LockManager }).locks; // missing on plain HTTP, save for this machine itself
+    if (!locks) return this.trade();
+    return locks.request(TRADE, async () => Number(keptText(TRADE) ?? 0) > asked || (await this.trade()));
+  }
+
+  private async trade(): Promise<boolean> {
+    try {
+      await firstValueFrom(this.http.post('/api/session/refresh', {}, { responseType: 'text' }));
+    } catch (error) {
+      if (error instanceof HttpErrorResponse && error.status === 401) return false;
+      throw error;
+    }
+    keepText(TRADE, String(Date.now()));
+    return true;
   }
 
   /** The server no longer knows this session: keep the address, ask to sign in. */
