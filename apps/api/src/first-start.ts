@@ -20,11 +20,8 @@ export interface FirstStartNews {
   firstAdminLink: string | null;
 }
 
-const NAMES: Record<Role, string> = {
-  modeller: 'Mara Modeller',
-  reviewer: 'Ravi Reviewer',
-  admin: 'Ada Admin',
-};
+/** The demonstration's people are named after their role. */
+const NAMES: Record<Role, string> = { modeller: 'Modeller', reviewer: 'Reviewer', admin: 'Admin' };
 const addressOf = (role: Role) => `${role}@halfdeep.example`;
 /** Owns the demonstration's experiment. */
 export const DEMO_MODELLER = addressOf('modeller');
