@@ -120,6 +120,7 @@ export class RunJob {
         return Integration.restore(this.job.setup, bytes);
       } catch (error) {
         if (!(error instanceof StateFileError || error instanceof RangeError)) throw error;
+        process.stderr.write(`Run ${this.job.runId}: checkpoint of step ${entry.step} passed over: ${error.message}\n`);
       }
     }
     return null;

@@ -61,6 +61,7 @@ export class EmbeddedQueue implements RunQueue {
   private settings: QueueSettings = { cap: 1, paused: false, whenLowered: 'drain' };
   private queue: BetterQueue<RunTask, void> | null = null;
   private holdUntil = 0;
+  private telling: Promise<void> = Promise.resolve();
   private closing: Promise<void> | null = null;
 
   /** RangeError when the environment asks for a pause between checkpoints that is no number of seconds. */
@@ -180,6 +181,7 @@ export class EmbeddedQueue implements RunQueue {
     abort.abort();
     await impatient;
     await new Promise<void>((resolve) => (this.queue ? this.queue.destroy(resolve) : resolve()));
+    await this.telling;
     this.events.complete();
   }
 
@@ -345,12 +347,11 @@ export class EmbeddedQueue implements RunQueue {
     void this.tellQueue();
   }
 
-  private async tellQueue(): Promise<void> {
-    try {
-      this.events.next({ type: 'queue', queue: await this.summary() });
-    } catch (error) {
-      this.log('counting the queue', error);
-    }
+  private tellQueue(): Promise<void> {
+    this.telling = this.telling
+      .then(async () => this.events.next({ type: 'queue', queue: await this.summary() }))
+      .catch((error: unknown) => this.log('counting the queue', error));
+    return this.telling;
   }
 
   /** Makes better-queue look whether there is room and work. */

@@ -285,7 +285,7 @@ describe('checkpoints', () => {
     await writer.rewindTo(50);
     const files = (await readdir(paths.folder)).filter((name) => name.includes('checkpoint')).sort();
     expect(files).toEqual(['r.40.checkpoint', 'r.50.checkpoint']);
-    expect(await readVerified(entries[0].path, entries[0].sha256, 'checkpoint')).toEqual(Buffer.from(bytes(50)));
+    expect(await readVerified(entries[0].path, entries[0].sha256, 'checkpoint')).toEqual(bytes(50));
     await writeFile(entries[0].path, 'damaged');
     await expect(readVerified(entries[0].path, entries[0].sha256, 'checkpoint')).rejects.toThrow(StateFileError);
     await writer.rewindTo(40);
@@ -305,7 +305,7 @@ describe('checkpoints', () => {
     const sha256 = await writeWhole(paths.last, bytes(9));
     const child = runPaths(varDir, 'child');
     await adoptStartState(paths, child, sha256);
-    expect(await readVerified(child.start, sha256, 'start state')).toEqual(Buffer.from(bytes(9)));
+    expect(await readVerified(child.start, sha256, 'start state')).toEqual(bytes(9));
     await expect(adoptStartState(paths, child, 'f'.repeat(64))).rejects.toThrow(/damaged/);
     await expect(adoptStartState(child, paths, sha256)).rejects.toThrow(/missing/);
   });

@@ -52,7 +52,7 @@ export async function readVerified(path: string, sha256: string, what: string): 
     throw new StateFileError(
       `The ${what} is damaged: SHA-256 ${found.slice(0, 12)}… was found, ${sha256.slice(0, 12)}… is right.`,
     );
-  return bytes;
+  return new Uint8Array(bytes.buffer, bytes.byteOffset, bytes.byteLength);
 }
 
 /**
