@@ -93,7 +93,7 @@ async function bundledWorker(): Promise<string> {
 
 async function makeHand(services: Services, server: Server, name: string, roles: Role[]): Promise<Hand> {
   const id = randomUUID();
-  const email = `${name}@desk.example`;
+  const email = `${name.toLowerCase()}@desk.example`;
   const passwordHash = await services.hasher.hash(PASSWORD);
   await services.desk.write(async (transaction) => {
     await Person.create({ id, email, name, state: 'active', passwordHash, createdAt: new Date() }, { transaction });
