@@ -48,7 +48,9 @@ export function buildApp(services: Services, options: AppOptions = {}): Express 
     peopleRoutes(services),
     ...runFeatureRoutes(services.runs, services.sessions.accessRevoked$),
   ];
-  const described = describingRouter(() => [...routers, described].flatMap(routesOf));
+  const described = describingRouter(() => routes);
+  const routes = [...routers, described].flatMap(routesOf);
+  app.locals['routes'] = routes;
   const api = Router();
   api.use((_req, res, next) => {
     res.set('Cache-Control', 'private, no-cache');
@@ -67,7 +69,7 @@ export function buildApp(services: Services, options: AppOptions = {}): Express 
 }
 
 /** GET /api/openapi.json, which describes itself too. */
-function describingRouter(routes: () => RouteRecord[]): Router {
+function describingRouter(routes: () => readonly RouteRecord[]): Router {
   const router = Router();
   let document: ReturnType<typeof describeApi> | undefined;
   route(

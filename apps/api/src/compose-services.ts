@@ -87,7 +87,11 @@ async function onDesk(
   const publicUrl = () => settings.publicUrl ?? addressOf(settings.host, port);
   const carrier = options.carrier ?? (settings.smtpUrl ? smtpCarrier(settings.smtpUrl) : await localCarrier());
   const audit = new AuditTrail(now);
-  const outbox = new Outbox(desk, carrier, logger, { showLinks: demonstration && settings.loopback, now });
+  const outbox = new Outbox(desk, carrier, logger, {
+    showLinks: demonstration && settings.loopback,
+    linkKey: secrets.linkKey,
+    now,
+  });
   const sessions = new SessionService(desk, audit, secrets.accessKey, now);
   const hasher = options.hasher ?? new PasswordHasher();
   const shared = { desk, sessions, outbox, audit, publicUrl, now };

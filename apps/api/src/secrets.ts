@@ -9,6 +9,8 @@ const secretsSchema = z.object({
   accessKey: key,
   /** Signs the cookie by which a browser is known again. */
   deviceKey: key,
+  /** Seals the links of mails that wait in the outbox. */
+  linkKey: key,
 });
 /** 32 random bytes each, base64url. */
 export type Secrets = z.infer<typeof secretsSchema>;
@@ -16,7 +18,7 @@ export type Secrets = z.infer<typeof secretsSchema>;
 /** Fresh secrets, each of 32 random bytes. */
 export function makeSecrets(): Secrets {
   const fresh = () => randomBytes(32).toString('base64url');
-  return { accessKey: fresh(), deviceKey: fresh() };
+  return { accessKey: fresh(), deviceKey: fresh(), linkKey: fresh() };
 }
 
 /** Reads var/secrets.json, or makes it at the first start, readable by its owner alone. Removing it signs everybody out. */

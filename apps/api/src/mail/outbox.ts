@@ -4,6 +4,7 @@ import { type Logger } from 'pino';
 import { Op, type Transaction } from 'sequelize';
 import { containing } from '../http/list';
 import { type MailCarrier } from './mail-carrier';
+import { openLink, sealLink } from './sealed-link';
 
 export interface Letter {
   to: string;
@@ -21,6 +22,8 @@ const WITHHELD = '[link withheld]';
 export interface OutboxOptions {
   /** Demonstration on loopback: links stay readable in the admin's view, since there is no mailbox to look into. */
   showLinks: boolean;
+  /** Seals the links while their mails wait. */
+  linkKey: string;
   now?: () => Date;
 }
 
@@ -46,7 +49,8 @@ export class Outbox {
   /** Puts a letter into the outbox, in the caller's transaction. Call `dispatch` when that has committed. */
   async put({ to, subject, body, link }: Letter, transaction: Transaction): Promise<void> {
     const now = this.now();
-    const row = { createdAt: now, recipient: to, subject, body, link: link ?? null, nextAttemptAt: now };
+    const row = { createdAt: now, recipient: to, subject, body, link: null as string | null, nextAttemptAt: now };
+    if (link !== undefined) row.link = sealLink(link, this.options.linkKey);
     await Mail.create(row, { transaction });
   }
 
@@ -80,7 +84,9 @@ export class Outbox {
     const attempts = mail.attempts + 1;
     let outcome: Partial<Pick<Mail, 'state' | 'error' | 'nextAttemptAt' | 'link'>>;
     try {
-      await this.carrier.send({ to, subject, text: body.replaceAll('{link}', link ?? WITHHELD) });
+      const opened = link === null ? null : openLink(link, this.options.linkKey);
+      if (link !== null && opened === null) throw new Error('Its link was sealed with secrets that are gone.');
+      await this.carrier.send({ to, subject, text: body.replaceAll('{link}', opened ?? '') });
       outcome = { state: 'sent', error: null, nextAttemptAt: null };
     } catch (error) {
       // Whatever the mail server or the way to it says: the admin reads it in the outbox.
@@ -106,7 +112,8 @@ export class Outbox {
   }
 
   private present({ id, createdAt, recipient, subject, state, attempts, error, body, link }: Mail): OutboxMail {
-    const shown = this.options.showLinks ? (link ?? WITHHELD) : WITHHELD;
+    const opened = this.options.showLinks && link !== null ? openLink(link, this.options.linkKey) : null;
+    const shown = opened ?? WITHHELD;
     const text = body.replaceAll('{link}', shown);
     return { id, createdAt: createdAt.toISOString(), to: recipient, subject, state, attempts, error, body: text };
   }

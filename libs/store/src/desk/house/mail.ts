@@ -14,7 +14,7 @@ export class Mail extends Model<InferAttributes<Mail>, InferCreationAttributes<M
   declare recipient: string;
   declare subject: string;
   declare body: string;
-  /** The working link; null when the mail has none, or once it has been sent and is to be forgotten. */
+  /** The working link, sealed; null when the mail has none, or once it has been sent and is to be forgotten. */
   declare link: string | null;
   declare state: CreationOptional<'waiting' | 'sent' | 'failed'>;
   declare attempts: CreationOptional<number>;
