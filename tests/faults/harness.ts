@@ -1,8 +1,9 @@
 import { build } from 'esbuild';
 import { createHash, randomUUID } from 'node:crypto';
+import { existsSync, readFileSync } from 'node:fs';
 import { mkdir, mkdtemp, rm } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
-import { join } from 'node:path';
+import { join, relative, sep } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import type { Preflight, Setup } from '@halfdeep/ocean';
 import { EmbeddedQueue, type EmbeddedQueueOptions, type RunQueueEvent } from '@halfdeep/queue';
@@ -11,14 +12,35 @@ import { DeskRunLedger } from '../../apps/api/src/runs/desk-run-ledger';
 
 const root = fileURLToPath(new URL('../../', import.meta.url));
 
-/** Bundles one of the processes beside this file as the build does; resolves to the bundle's path. */
-export async function bundle(name: 'slow-worker' | 'deadly-worker' | 'engine-server'): Promise<string> {
-  // Inside the workspace, so that packages are found from there.
-  await mkdir(join(root, 'var'), { recursive: true });
-  const outfile = join(root, 'var', `faults-${process.pid}-${randomUUID().slice(0, 8)}`, `${name}.mjs`);
+/** Bundles one of the workers beside this file as the build does; resolves to the bundle's path. */
+export async function bundle(name: 'slow-worker' | 'deadly-worker'): Promise<string> {
+  const folder = bundleFolder();
+  await bundleInto(folder, { [name]: `tests/faults/${name}.ts` });
+  return join(folder, `${name}.js`);
+}
+
+/** Bundles the whole server, with the slow worker where it looks for its worker; resolves to the server's path. */
+export async function bundleServer(): Promise<string> {
+  const folder = bundleFolder();
+  await bundleInto(folder, { 'api/main': 'apps/api/src/main.ts', 'worker/main': 'tests/faults/slow-worker.ts' });
+  return join(folder, 'api/main.js');
+}
+
+/** Removes the folder that a bundle was written to. */
+export async function removeBundle(path: string): Promise<void> {
+  const [folder] = relative(join(root, 'var'), path).split(sep);
+  await rm(join(root, 'var', folder), { recursive: true, force: true });
+}
+
+/** Inside the workspace, so that packages are found from there. */
+const bundleFolder = () => join(root, 'var', `faults-${randomUUID()}`);
+
+async function bundleInto(outdir: string, entries: Record<string, string>): Promise<void> {
+  await mkdir(outdir, { recursive: true });
   await build({
-    entryPoints: [join(root, 'tests/faults', `${name}.ts`)],
-    outfile,
+    absWorkingDir: root,
+    entryPoints: Object.entries(entries).map(([out, path]) => ({ in: join(root, path), out })),
+    outdir,
     bundle: true,
     platform: 'node',
     target: 'node20',
@@ -27,10 +49,7 @@ export async function bundle(name: 'slow-worker' | 'deadly-worker' | 'engine-ser
     tsconfig: join(root, 'tsconfig.base.json'),
     logLevel: 'warning',
   });
-  return outfile;
 }
-
-export const removeBundle = (path: string) => rm(join(path, '..'), { recursive: true, force: true });
 
 /** A folder for databases and runs, and how to get rid of it. */
 export async function scratch(): Promise<string> {
@@ -233,7 +252,7 @@ export async function recordsHash(varDir: string, runId: string, fromDay = -1): 
   return hash.digest('hex');
 }
 
-export async function until(what: () => boolean | Promise<boolean>, seconds = 30): Promise<void> {
+export async function until(what: () => boolean | Promise<boolean>, seconds = 60): Promise<void> {
   const deadline = Date.now() + seconds * 1000;
   while (!(await what())) {
     if (Date.now() > deadline) throw new Error(`Not within ${seconds} s: ${what.toString()}`);
@@ -241,12 +260,13 @@ export async function until(what: () => boolean | Promise<boolean>, seconds = 30
   }
 }
 
-/** True while a process with this id lives (a zombie counts as gone). */
+/** True while a process with this id lives. A zombie, which nobody has collected yet, does not. */
 export function lives(pid: number): boolean {
   try {
     process.kill(pid, 0);
-    return true;
+    const stat = existsSync('/proc/self/stat') ? readFileSync(`/proc/${pid}/stat`, 'utf8') : '';
+    return !/\) Z /.test(stat);
   } catch {
-    return false; // ESRCH: there is none
+    return false; // there is none
   }
 }
