@@ -12,7 +12,7 @@ import { BasinBudget, BUDGET_COLUMNS } from './budget';
 import { pack, unpack } from './container';
 import { failureReport, IntegrationFailure, isFinite } from './failure';
 import { fingerprintOf } from './fingerprint';
-import { nineArrays, setNineArrays, shapeOf, type NativeVariable } from './levels';
+import { nineArrays, setNineArrays, shapeOf, unpad, type NativeVariable } from './levels';
 import { MooringRecorder } from './moorings';
 import { stepRange } from './schedule';
 import { SectionRecorder } from './sections';
@@ -164,6 +164,12 @@ export class Integration {
     };
   }
 
+  /** The fields now in double precision, logical shapes (η [ny][nx], u [ny][nx + 1], v [ny + 1][nx]), land 0; copies. */
+  fields(): Record<NativeVariable, Float64Array> {
+    const of = (variable: NativeVariable) => unpad(this.grid, variable, this.#model[variable].now);
+    return { eta: of('eta'), u: of('u'), v: of('v') };
+  }
+
   sectionColumns(): Column[] {
     return this.#sections.columns;
   }
@@ -208,6 +214,11 @@ export class Integration {
   /** The nine arrays of the present state, for extensions and starts from it. Its SHA-256 is the setup's stateSha256. */
   lastState(): Uint8Array {
     return packState(this.#model, this.setup.numerics.stepsPerDay);
+  }
+
+  /** SHA-256 that names the bytes of a last state: `stateSha256` of a setup that starts from it. */
+  static stateSha256(state: Uint8Array): string {
+    return sha256Hex(state);
   }
 
   /** Fingerprint of the present state (numerics.md §7). */

@@ -1,0 +1,217 @@
+import { Matrix, solve } from 'ml-matrix';
+import { describe, expect, it } from 'vitest';
+import { forcingFromFunctions, padded, planeGrid, setState, stepModel, type Grid } from '@halfdeep/ocean';
+import { beta, c, commonModel, commonStep, DAY, g, H, harmonicOf, L, order, rho0, stepsFor, T } from './common';
+
+// Case h. Wind stress linear in latitude about the equator, τx = a y: its Ekman pumping is zero, its Ekman and Sverdrup
+// transports are the same, V = −a/(ρ0 β), the equator included (common practice; derived for this project).
+const A = 0.05 / 1.5e6;
+const PER_WIDTH = -A / (rho0 * beta); // m²/s
+const V_SVERDRUP = PER_WIDTH / H;
+const PERIOD = 365.25 * DAY;
+
+/**
+ * V(y) of −ω²V − V″ + y²V = −y², V = 0 at ±half (units L, T), by Chebyshev collocation: Trefethen (2000), Spectral
+ * Methods in MATLAB, ch. 6. Returns V and V′ at any y by barycentric interpolation.
+ */
+function seasonal(omega: number, half: number): { V: (y: number) => number; dV: (y: number) => number } {
+  const N = 96;
+  const x = Array.from({ length: N + 1 }, (_, k) => Math.cos((Math.PI * k) / N));
+  const weight = (k: number) => (k === 0 || k === N ? 2 : 1) * (k % 2 ? -1 : 1);
+  const D = Matrix.zeros(N + 1, N + 1);
+  for (let i = 0; i <= N; i++) {
+    let sum = 0;
+    for (let k = 0; k <= N; k++) {
+      if (i === k) continue;
+      const entry = weight(i) / weight(k) / (x[i] - x[k]);
+      D.set(i, k, entry);
+      sum += entry;
+    }
+    D.set(i, i, -sum);
+  }
+  D.div(half);
+  const operator = D.mmul(D).neg();
+  const right = Matrix.zeros(N + 1, 1);
+  for (let i = 0; i <= N; i++) {
+    const y = half * x[i];
+    operator.set(i, i, operator.get(i, i) + y * y - omega * omega);
+    right.set(i, 0, -y * y);
+  }
+  for (const wall of [0, N]) {
+    for (let k = 0; k <= N; k++) operator.set(wall, k, k === wall ? 1 : 0);
+    right.set(wall, 0, 0);
+  }
+  const V = solve(operator, right);
+  const dV = D.mmul(V);
+  const interpolate = (values: Matrix) => (y: number) => {
+    let top = 0;
+    let bottom = 0;
+    for (let k = 0; k <= N; k++) {
+      const distance = y / half - x[k];
+      if (distance === 0) return values.get(k, 0);
+      const w = (k % 2 ? -1 : 1) * (k === 0 || k === N ? 0.5 : 1);
+      top += (w / distance) * values.get(k, 0);
+      bottom += w / distance;
+    }
+    return top / bottom;
+  };
+  return { V: interpolate(V), dV: interpolate(dV) };
+}
+
+/** A zonally uniform channel with walls at ±half L and `perL` rows in L. */
+function channel(perL: number, half: number): Grid {
+  const dy = L / perL;
+  return planeGrid({
+    nx: 4,
+    ny: 2 * half * perL,
+    dx: dy,
+    dy,
+    y0: -half * L,
+    periodic: true,
+    f: (y) => beta * y,
+    beta,
+  });
+}
+
+interface SeasonErrors {
+  v: number;
+  u: number;
+  eta: number;
+}
+
+/** Runs one period of τx = a y cos ωt from the exact state and returns relative errors of the amplitudes. */
+function seasonalErrors(perL: number, half: number): SeasonErrors {
+  const grid = channel(perL, half);
+  const omega = (2 * Math.PI) / PERIOD;
+  const { V, dV } = seasonal(omega * T, half);
+  const { steps, dt } = stepsFor(PERIOD, commonStep(grid));
+  const forcing = forcingFromFunctions(grid, [
+    { taux: (_x, y) => A * y, factor: (step) => Math.cos((2 * Math.PI * (step + 0.5)) / steps) },
+  ]);
+  const model = commonModel({ grid, dt, forcing });
+  const speed = -V_SVERDRUP;
+  setState(model, { v: (_i, j) => (j === 0 || j === grid.ny ? 0 : speed * V(grid.yFace[j] / L)) });
+  const rows = Array.from({ length: grid.ny }, (_, j) => j);
+  const series = {
+    v: rows.map(() => new Float64Array(steps)),
+    u: rows.map(() => new Float64Array(steps)),
+    eta: rows.map(() => new Float64Array(steps)),
+  };
+  for (let n = 0; n < steps; n++) {
+    for (const j of rows) {
+      const k = padded(grid, 1, j);
+      series.v[j][n] = model.v.now[k];
+      series.u[j][n] = model.u.now[k];
+      series.eta[j][n] = model.eta.now[k];
+    }
+    stepModel(model);
+  }
+  const phase = (n: number) => (2 * Math.PI * n) / steps;
+  const within = (y: number) => Math.abs(y) <= 3 * L;
+  const worst = (found: (j: number) => number, exact: (j: number) => number, y: Float64Array) => {
+    let error = 0;
+    let size = 0;
+    for (const j of rows.filter((row) => within(y[row]))) {
+      error = Math.max(error, Math.abs(found(j) - exact(j)));
+      size = Math.max(size, Math.abs(exact(j)));
+    }
+    return error / size;
+  };
+  return {
+    v: worst(
+      (j) => harmonicOf(series.v[j], phase).cos,
+      (j) => speed * V(grid.yFace[j] / L),
+      grid.yFace,
+    ),
+    u: worst(
+      (j) => harmonicOf(series.u[j], phase).sin,
+      (j) => (speed * (grid.yCentre[j] / L) * (V(grid.yCentre[j] / L) + 1)) / (omega * T),
+      grid.yCentre,
+    ),
+    eta: worst(
+      (j) => harmonicOf(series.eta[j], phase).sin,
+      (j) => ((c / g) * speed * -dV(grid.yCentre[j] / L)) / (omega * T),
+      grid.yCentre,
+    ),
+  };
+}
+
+describe('wind without pumping, τx = a y', () => {
+  it('the spectral reference gives the independently computed figures', () => {
+    const omega = ((2 * Math.PI) / PERIOD) * T;
+    const { V, dV } = seasonal(omega, 8);
+    // V(0, L, 2L)/vs; amplitudes of u at L/2, L, 2L and of η at L, 2L, printed to six and five digits.
+    expect(V(0) / -1).toBeCloseTo(1.000905, 6);
+    expect(V(1) / -1).toBeCloseTo(1.000625, 6);
+    expect(V(2) / -1).toBeCloseTo(1.000241, 6);
+    const u = (y: number) => Math.abs((V_SVERDRUP * y * (V(y) + 1)) / omega);
+    for (const [y, amplitude] of [
+      [0.5, 1.4178e-4],
+      [1, 2.1527e-4],
+      [2, 1.661e-4],
+    ])
+      expect(Math.abs(u(y) / amplitude - 1)).toBeLessThan(1e-4);
+    const eta = (y: number) => Math.abs(((c / g) * V_SVERDRUP * dV(y)) / omega);
+    expect(Math.abs(eta(1) / 9.6471e-3 - 1)).toBeLessThan(1e-4);
+    expect(Math.abs(eta(2) / 5.6756e-3 - 1)).toBeLessThan(1e-4);
+  });
+
+  it('the seasonal response is exact: v to 1e-4, u and η to 1 % at L/8, second order', () => {
+    const coarse = seasonalErrors(8, 8);
+    const fine = seasonalErrors(16, 8);
+    expect(coarse.v).toBeLessThan(1e-4);
+    expect(coarse.u).toBeLessThan(0.01);
+    expect(coarse.eta).toBeLessThan(0.01);
+    expect(order(coarse.u, fine.u)).toBeGreaterThan(1.7);
+    expect(order(coarse.eta, fine.eta)).toBeGreaterThan(1.7);
+  });
+
+  it('switched on abruptly, V(0) grows as computed independently up to 3 T', () => {
+    const grid = channel(8, 8);
+    const { steps: perHalf, dt } = stepsFor(T / 2, commonStep(grid) / 2);
+    const model = commonModel({ grid, dt, forcing: forcingFromFunctions(grid, [{ taux: (_x, y) => A * y }]) });
+    setState(model, {});
+    const expected: Record<number, number> = { 0.5: 0.00521, 1: 0.08264, 1.5: 0.40438, 2: 1.16479, 3: 3.26279 };
+    for (let half = 1; half <= 6; half++) {
+      for (let n = 0; n < perHalf; n++) stepModel(model);
+      if (!(half / 2 in expected)) continue;
+      const found = model.v.now[padded(grid, 1, grid.ny / 2)] / V_SVERDRUP;
+      expect(Math.abs(found - expected[half / 2]), `t = ${half / 2} T`).toBeLessThan(0.01 * expected[half / 2] + 2e-4);
+    }
+  });
+
+  describe('in a closed basin of 8000 × 4000 km with r = 1e-6', () => {
+    const dx = 50e3;
+    const grid = planeGrid({ nx: 160, ny: 80, dx, dy: dx, y0: -2e6, f: (y) => beta * y, beta });
+    const { steps, dt } = stepsFor(365 * DAY, commonStep(grid));
+    const forcing = forcingFromFunctions(grid, [{ taux: (_x, y) => A * y }]);
+    const model = commonModel({ grid, dt, rayleigh: 1e-6, forcing });
+    setState(model, {});
+    const across = (j: number, from: number, to: number) => {
+      let sum = 0;
+      for (let i = from; i < to; i++) sum += model.v.now[padded(grid, i, j)];
+      return sum * H * dx;
+    };
+    const equator = grid.ny / 2;
+    const at60: number[] = [];
+    let netBefore = NaN;
+    const day60 = Math.round((60 * DAY) / dt);
+    for (let n = 1; n <= steps; n++) {
+      stepModel(model);
+      if (n === steps - Math.round((30 * DAY) / dt)) netBefore = across(equator, 0, grid.nx);
+      // The middle of the basin: by day 60 neither wall's signal matters there.
+      if (n === day60) for (const j of [equator, equator + 7, equator + 14]) at60.push(across(j, 60, 100) / (40 * dx));
+    }
+    const net = across(equator, 0, grid.nx);
+
+    it('the interior carries V = −a/(ρ0 β) = −1.413927 m²/s by day 60, to 5 %, the equator included', () => {
+      expect(Math.abs(PER_WIDTH - -1.413927)).toBeLessThan(1e-6);
+      for (const found of at60) expect(Math.abs(found / PER_WIDTH - 1)).toBeLessThan(0.05);
+    });
+    it('a western boundary current brings it all back: 4 % of V Lx are missing after a year, and ever less', () => {
+      // 4.3 % by this measure, the net transport over V Lx, and falling by 7 % in ten days as the gyre fills.
+      expect(Math.abs(net / (PER_WIDTH * 8e6))).toBeLessThan(0.045);
+      expect(Math.abs(net)).toBeLessThan(0.85 * Math.abs(netBefore));
+    });
+  });
+});
