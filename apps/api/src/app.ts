@@ -87,7 +87,7 @@ function describingRouter(routes: () => readonly RouteRecord[]): Router {
 }
 
 /** Event streams would be held back, slices of numbers hardly shrink. */
-function worthCompressing(req: Request, res: Response): boolean {
+export function worthCompressing(req: Request, res: Response): boolean {
   const type = String(res.getHeader('Content-Type') ?? '');
   return !/event-stream|octet-stream/.test(type) && compression.filter(req, res);
 }
