@@ -1,6 +1,6 @@
 import { signal } from '@angular/core';
 import { type SliceHead } from '@halfdeep/contracts';
-import { type Observable, type Subscription } from 'rxjs';
+import { type Observable, Subscription } from 'rxjs';
 import { SliceError, type Slice } from './slices';
 
 /** Values of one request: 64 Ki values are 256 KiB of float32, read and drawn without a hitch. */
@@ -133,12 +133,19 @@ export class GrowingSlice {
     this.reading.set({ done, of: done + pieces });
     // Half an interval before the next record, so that rounding of days never asks for one twice or misses one.
     const half = this.wanted.intervalDays / 2;
-    const from = this.rows.count === 0 ? this.wanted.firstDay - half : this.rows.day(this.rows.count - 1) + half;
-    const to = from + Math.min(missing, rowsAPiece) * this.wanted.intervalDays;
-    this.request = this.read(from, to).subscribe({
-      next: (slice) => this.take(slice, done),
-      error: (error: unknown) => this.fail(error),
-    });
+    const from =
+      this.rows.count === 0 ? Math.max(0, this.wanted.firstDay - half) : this.rows.day(this.rows.count - 1) + half;
+    const first = this.rows.count === 0 ? this.wanted.firstDay : this.rows.day(this.rows.count - 1) + 2 * half;
+    const to = first - half + Math.min(missing, rowsAPiece) * this.wanted.intervalDays;
+    // Held before it is asked: an answer that comes at once must find it.
+    const request = new Subscription();
+    this.request = request;
+    request.add(
+      this.read(from, to).subscribe({
+        next: (slice) => this.take(slice, done),
+        error: (error: unknown) => this.fail(error),
+      }),
+    );
   }
 
   private take(slice: Slice, done: number): void {

@@ -1,6 +1,17 @@
 import { Injectable, computed, inject, signal } from '@angular/core';
 import { type HalfdeepEvent, type Progress, type Run, type RunSummary, runSchema } from '@halfdeep/contracts';
-import { type Observable, Subscription, firstValueFrom, from, merge, of, switchMap, throwError } from 'rxjs';
+import {
+  type Observable,
+  Subscription,
+  asapScheduler,
+  firstValueFrom,
+  from,
+  merge,
+  observeOn,
+  of,
+  switchMap,
+  throwError,
+} from 'rxjs';
 import { Api } from './api';
 import { oncePerFrame } from './frame-scheduler';
 import { GrowingSlice, type Watermark } from './growing-rows';
@@ -61,7 +72,14 @@ export class RunFollower {
       }),
     );
     const asks: Observable<unknown> = initial ? events.reopened : merge(of(null), events.reopened);
-    this.subscriptions.add(asks.pipe(switchMap(() => from(this.refresh()))).subscribe());
+    this.subscriptions.add(
+      asks
+        .pipe(
+          observeOn(asapScheduler),
+          switchMap(() => from(this.refresh())),
+        )
+        .subscribe(),
+    );
   }
 
   /** Asks for the run as it stands now. */
@@ -102,7 +120,7 @@ export class RunFollower {
       this.lines.get(oldest)?.close();
       this.lines.delete(oldest);
     }
-    this.tell();
+    this.tellSoon();
     return line;
   }
 
@@ -111,7 +129,7 @@ export class RunFollower {
     if (held) return held;
     const series = new GrowingSlice((first, last) => this.slices.series(this.id, stream, first, last), 40);
     this.seriesRead.set(stream, series);
-    this.tell();
+    this.tellSoon();
     return series;
   }
 
@@ -154,6 +172,11 @@ export class RunFollower {
   private set(run: Followed): void {
     this.known.set(run);
     this.tell();
+  }
+
+  /** Lines and series are asked for while templates are evaluated, where no signal may be written. */
+  private tellSoon(): void {
+    queueMicrotask(() => this.tell());
   }
 
   private tell(): void {

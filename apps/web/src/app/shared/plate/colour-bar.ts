@@ -1,17 +1,21 @@
 import {
   ChangeDetectionStrategy,
   Component,
-  type ElementRef,
+  DestroyRef,
+  ElementRef,
+  afterNextRender,
   computed,
   effect,
   inject,
   input,
+  signal,
   viewChild,
 } from '@angular/core';
-import { formatNumber, formatQuantity } from '../../core/format';
+import { formatQuantity } from '../../core/format';
 import { type ColourLimits } from './limits';
 import { svg } from './overlay';
 import { type Palette, Palettes } from './palette';
+import { tickNumber } from './ticks';
 
 const FONT = '400 11px "Inter Variable", Inter, sans-serif';
 let counter = 0;
@@ -53,7 +57,7 @@ export function drawColourBar(
       svg(
         'text',
         { x: at, y: y + 23, 'text-anchor': 'middle', fill: palette.colour['text-2'], style: `font: ${FONT}` },
-        formatNumber(value, { significant: 3, signed: model.scale === 'diverging' }),
+        tickNumber(value, model.scale === 'diverging'),
       ),
     );
   }
@@ -65,7 +69,7 @@ export function drawColourBar(
 /** The colour scale of a plot, under it. */
 @Component({
   selector: 'app-colour-bar',
-  template: `<svg #bar role="img" [attr.aria-label]="label()" [attr.width]="width() + 90" height="26"></svg>`,
+  template: `<svg #bar role="img" [attr.aria-label]="label()" [attr.width]="shown() + 90" height="26"></svg>`,
   styles: `
     :host {
       display: block;
@@ -83,7 +87,10 @@ export class ColourBar {
   private readonly bar = viewChild.required<ElementRef<SVGSVGElement>>('bar');
   private readonly id = `bar${counter++}`;
   readonly model = input.required<BarModel>();
+  /** The most it may take, px; where there is less room it is narrower. */
   readonly width = input(220);
+  private readonly room = signal(Infinity);
+  protected readonly shown = computed(() => Math.max(60, Math.min(this.width(), this.room() - 90)));
 
   protected readonly label = computed(() => {
     const { limits, factor, unit } = this.model();
@@ -95,7 +102,14 @@ export class ColourBar {
     effect(() => {
       const target = this.bar().nativeElement;
       target.replaceChildren();
-      drawColourBar(target, this.model(), this.palettes.of(this.palettes.theme()), 22, 1, this.width(), this.id);
+      drawColourBar(target, this.model(), this.palettes.of(this.palettes.theme()), 22, 1, this.shown(), this.id);
+    });
+    const element = inject<ElementRef<HTMLElement>>(ElementRef).nativeElement;
+    const destroy = inject(DestroyRef);
+    afterNextRender(() => {
+      const observer = new ResizeObserver(() => this.room.set(element.clientWidth));
+      observer.observe(element);
+      destroy.onDestroy(() => observer.disconnect());
     });
   }
 }

@@ -7,7 +7,7 @@ import { type Palette } from './palette';
 import { type PlotBox, nearestIndex, toPxY } from './plot-box';
 import { type Place, PlotSurface } from './plot-surface';
 import { type PlotTrace } from './plotly';
-import { timeTicks, valueTicks } from './ticks';
+import { tickNumber, timeTicks, valueTicks } from './ticks';
 
 /** A curve against model time. `series` 1–5 chooses colour and dash together, so that neither is the only sign. */
 export interface Curve {
@@ -58,6 +58,17 @@ export class CurvePlot extends PlotSurface {
     const wide = (side: number) => (side < 0.02 * end ? 0.05 * end : side < 0.5 * end ? 0.5 * end : end);
     return [-wide(-low), wide(high)];
   });
+  /** Power of ten that the axis is read in: 0 unless its numbers would be too small or too large to write out. */
+  private readonly power = computed(() => {
+    const end = Math.max(...this.yFull().map(Math.abs));
+    return end >= 1e-2 && end < 1e5 ? 0 : 3 * Math.floor(Math.log10(end) / 3);
+  });
+  private readonly axisUnit = computed(() => {
+    if (this.power() === 0) return this.unit();
+    // "1 × 10⁻¹²" without its "1 ×".
+    const text = formatNumber(10 ** this.power(), { significant: 1 });
+    return `${text.slice(text.indexOf('10'))} ${this.unit()}`;
+  });
   protected override gridlines = true;
 
   protected override makeBox(width: number): PlotBox {
@@ -76,7 +87,7 @@ export class CurvePlot extends PlotSurface {
       x,
       y,
       xTicks: timeTicks(x[0], x[1], w, 48),
-      yTicks: valueTicks(y[0], y[1], h, (value) => formatNumber(value, { significant: 4 })),
+      yTicks: valueTicks(y[0], y[1], h, (value) => tickNumber(value / 10 ** this.power())),
     };
   }
 
@@ -139,7 +150,7 @@ export class CurvePlot extends PlotSurface {
       'stroke-linejoin': 'round',
     };
     const place = { x: box.left + 8, y: box.top + 14, fill: palette.colour['text-2'], style: `font: ${FONT}` };
-    target.append(svg('text', { ...place, ...halo }, this.unit()));
+    target.append(svg('text', { ...place, ...halo }, this.axisUnit()));
   }
 
   protected override snap(at: Place): Place | null {

@@ -1,3 +1,5 @@
+import { formatQuantity } from '../../core/format';
+
 /** Ends of a colour scale in stored units. A diverging scale is symmetric, so that zero is its middle stop. */
 export interface ColourLimits {
   min: number;
@@ -26,6 +28,35 @@ export function extremes(rows: Iterable<ArrayLike<number>>, stride = 1): { min: 
       if (value > max && value < Infinity) max = value;
     }
   return min <= max ? { min, max } : { min: NaN, max: NaN };
+}
+
+/**
+ * What a colour scale should span: 99.5 % of the values on each side, but never less than half of the extreme, so that a
+ * jet of a few cells along a wall does not turn the rest of the basin grey. Looks at no more than some 20 000 values.
+ */
+export function typicalSpan(rows: readonly ArrayLike<number>[]): { min: number; max: number } {
+  const whole = extremes(rows);
+  if (Number.isNaN(whole.min)) return whole;
+  const total = rows.reduce((sum, row) => sum + row.length, 0);
+  // A step that is prime to most row lengths, so that a sample does not walk down one column.
+  const stride = Math.max(1, Math.ceil(total / 20_000)) | 1;
+  const seen: number[] = [];
+  let k = 0;
+  for (const row of rows) {
+    for (; k < row.length; k += stride) {
+      const value = row[k] ?? NaN;
+      if (Number.isFinite(value)) seen.push(value);
+    }
+    k -= row.length;
+  }
+  if (seen.length === 0) return whole;
+  seen.sort((a, b) => a - b);
+  const at = (share: number) => seen[Math.round(share * (seen.length - 1))] ?? NaN;
+  const inward = (quantile: number, extreme: number) =>
+    Math.abs(quantile) < Math.abs(extreme) / 2 ? extreme / 2 : quantile;
+  if (whole.min >= 0) return { min: whole.min, max: inward(at(0.995), whole.max) };
+  if (whole.max <= 0) return { min: inward(at(0.005), whole.min), max: at(0.995) };
+  return { min: inward(at(0.005), whole.min), max: inward(at(0.995), whole.max) };
 }
 
 /**
@@ -65,6 +96,11 @@ export function isolineLevels(limits: ColourLimits): number[] {
   const first = Math.ceil(limits.min / step - 1e-9);
   const last = Math.floor(limits.max / step + 1e-9);
   return Array.from({ length: last - first + 1 }, (_, k) => (first + k) * step);
+}
+
+/** "2.5 m": the distance between isolines as a caption says it. */
+export function isolineWords(limits: ColourLimits, factor: number, unit: string): string {
+  return formatQuantity(Number((isolineStep(limits) * factor).toPrecision(3)), unit);
 }
 
 export function isolineStep(limits: ColourLimits): number {

@@ -1,4 +1,4 @@
-import { signal } from '@angular/core';
+import { type WritableSignal, signal } from '@angular/core';
 
 /**
  * What plots that belong together share: the place of the cursor and the part that is zoomed to, in data coordinates.
@@ -6,8 +6,13 @@ import { signal } from '@angular/core';
  */
 export class PlotLink {
   readonly cursor = signal<{ x: number; y: number } | null>(null);
-  readonly xZoom = signal<[number, number] | null>(null);
+  readonly xZoom: WritableSignal<[number, number] | null>;
   readonly yZoom = signal<[number, number] | null>(null);
+
+  /** Links that are given one signal for x share their zoom along it and nothing else. */
+  constructor(xZoom: WritableSignal<[number, number] | null> = signal(null)) {
+    this.xZoom = xZoom;
+  }
 
   /** Zooms by `factor` (below 1 comes closer) about a place, never beyond the whole. */
   zoom(factor: number, about: { x: number; y: number }, xFull: [number, number], yFull: [number, number]): void {

@@ -213,11 +213,11 @@ export abstract class PlotSurface {
     };
   }
 
-  /** The plot as one SVG element in the paper theme, as wide as on screen but not below 640 px. For saving. */
-  async figure(): Promise<SVGSVGElement> {
+  /** The plot as one SVG element in the paper theme, by default as wide as on screen but not below 640 px. For saving. */
+  async figure(widthPx = Math.max(640, this.width())): Promise<SVGSVGElement> {
     const plotly = await this.loader.load();
     const palette = this.palettes.of('paper');
-    const box = this.makeBox(Math.max(640, this.width()));
+    const box = this.makeBox(widthPx);
     const { width, height } = box;
     const figure = { data: this.traces(box, palette), layout: this.layout(box, palette), config: PLOT_CONFIG };
     const url = await plotly.toImage(figure, { format: 'svg', width, height });

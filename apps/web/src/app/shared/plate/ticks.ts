@@ -1,4 +1,4 @@
-import { formatLatitude, formatLongitude } from '../../core/format';
+import { formatLatitude, formatLongitude, formatNumber } from '../../core/format';
 
 /** Labelled ticks, and the stops between which the graduated frame is inked alternately. */
 export interface AxisTicks {
@@ -38,6 +38,13 @@ export function degreeTicks(
     stops: withEnds(multiples(low, high, step / 2), low, high),
     inkFirst: isEven(Math.floor(low / (step / 2) + 1e-6)),
   };
+}
+
+/** A number at a tick: as short as it can be, "20" and not "20.00"; very large and small ones as a power of ten. */
+export function tickNumber(value: number, signed = false): string {
+  const size = Math.abs(value);
+  if (size !== 0 && (size >= 1e6 || size < 1e-3)) return formatNumber(value, { significant: 2, signed });
+  return formatNumber(Number(value.toPrecision(4)), { signed });
 }
 
 /** Plain numbers: steps of 1, 2, 5 × 10^k. */

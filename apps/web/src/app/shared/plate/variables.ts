@@ -1,6 +1,6 @@
-import { type Variable } from '@halfdeep/ocean';
+import { VARIABLES, VARIABLE_INFO, type Variable } from '@halfdeep/ocean';
 
-/** How a variable is shown: its name, its kind of colour scale, and the unit in which people read it. */
+/** How a variable is shown: its name inside a sentence, its kind of colour scale, and the unit in which people read it. */
 export interface VariableView {
   label: string;
   scale: 'diverging' | 'sequential';
@@ -9,20 +9,23 @@ export interface VariableView {
   unit: string;
 }
 
-export const VARIABLE_VIEWS: Record<Variable, VariableView> = {
-  eta: { label: 'thickness anomaly', scale: 'diverging', factor: 1, unit: 'm' },
-  h: { label: 'thickness', scale: 'sequential', factor: 1, unit: 'm' },
-  u: { label: 'eastward current', scale: 'diverging', factor: 1, unit: 'm/s' },
-  v: { label: 'northward current', scale: 'diverging', factor: 1, unit: 'm/s' },
-  uCentre: { label: 'eastward current at centres', scale: 'diverging', factor: 1, unit: 'm/s' },
-  vCentre: { label: 'northward current at centres', scale: 'diverging', factor: 1, unit: 'm/s' },
-  speed: { label: 'speed', scale: 'sequential', factor: 1, unit: 'm/s' },
-  vorticity: { label: 'relative vorticity', scale: 'diverging', factor: 1e6, unit: '10⁻⁶ 1/s' },
-  pv: { label: 'potential vorticity', scale: 'diverging', factor: 1e9, unit: '10⁻⁹ 1/(m s)' },
-  taux: { label: 'eastward wind stress', scale: 'diverging', factor: 1, unit: 'N/m²' },
-  tauy: { label: 'northward wind stress', scale: 'diverging', factor: 1, unit: 'N/m²' },
-  ekmanPumping: { label: 'Ekman pumping', scale: 'diverging', factor: 86_400, unit: 'm/d' },
+/** Stored in SI; shown in units that leave a plain number on the colour bar. */
+const SHOWN: Partial<Record<Variable, { factor: number; unit: string }>> = {
+  vorticity: { factor: 1e6, unit: '10⁻⁶ 1/s' },
+  pv: { factor: 1e9, unit: '10⁻⁹ 1/(m s)' },
+  ekmanPumping: { factor: 86_400, unit: 'm/d' },
 };
+
+export const VARIABLE_VIEWS = Object.fromEntries(
+  VARIABLES.map((variable) => {
+    const { label, scale, unit } = VARIABLE_INFO[variable];
+    const inSentence = variable === 'ekmanPumping' ? label : label.charAt(0).toLowerCase() + label.slice(1);
+    return [variable, { label: inSentence, scale, ...(SHOWN[variable] ?? { factor: 1, unit }) }];
+  }),
+) as Record<Variable, VariableView>;
+
+/** For a select: every variable with its name. */
+export const VARIABLE_CHOICES = VARIABLES.map((id) => ({ id, label: VARIABLE_VIEWS[id].label }));
 
 export function isVariable(text: string | null | undefined): text is Variable {
   return text != null && Object.hasOwn(VARIABLE_VIEWS, text);

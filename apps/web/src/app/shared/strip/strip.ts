@@ -167,7 +167,18 @@ export class Strip {
     const [left, right, top, bottom] = small ? [5, 5, 5, 5] : [50, 8, 12, 28];
     const [w, h] = [Math.max(20, width - left - right), this.height() - top - bottom];
     const xTicks = timeTicks(x[0], x[1], w, width < 560 ? 70 : 44);
-    return { width, height: this.height(), left, top, w, h, x, y, xTicks, yTicks: degreeTicks('latitude', ...y, h) };
+    return {
+      width,
+      height: this.height(),
+      left,
+      top,
+      w,
+      h,
+      x,
+      y,
+      xTicks,
+      yTicks: degreeTicks('latitude', ...y, h, 24),
+    };
   }
 
   private draw(): void {

@@ -1,0 +1,140 @@
+import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
+import { type Run } from '@halfdeep/contracts';
+import { buildGrid } from '@halfdeep/ocean';
+import { formatNumber, formatQuantity } from '../core/format';
+import { type GrowingSlice } from '../core/growing-rows';
+import { type PlotLink } from '../shared/plate/plot-link';
+import { VerdictSign } from '../shared/verdict/verdict';
+import { CLOSES_BELOW, columnIndex, energyClosure, largestMassResidual } from './energy-closure';
+import { sameSetup } from './same-setup';
+import { type CurveSpec, SeriesPlate } from './series-plate';
+
+const SECONDS_PER_DAY = 86_400;
+/** PJ an interval to GW; Gt an interval to thousands of tonnes a second. */
+const GW_PER_PJ_A_SECOND = 1e6;
+const KT_PER_GT = 1e6;
+const KG_PER_GT = 1e12;
+
+/** Energy and mass of the basin: what goes in, what comes out, and what is not accounted for. */
+@Component({
+  selector: 'app-budget-plates',
+  imports: [SeriesPlate, VerdictSign],
+  template: `
+    <app-series-plate
+      [run]="run()"
+      [slice]="slice()"
+      [pen]="pen()"
+      name="Energy budget"
+      [caption]="energyCaption()"
+      unit="GW"
+      [specs]="energy()"
+      [link]="links()(0)"
+      emptyHeading="From the first interval"
+      emptyAbout="Work of the wind and of friction, the change of energy, and what is left over."
+    >
+      @if (hasRows()) {
+        <app-verdict [verdict]="closes() ? 'pass' : 'caution'" [text]="closes() ? 'closes' : 'does not close'" />
+      }
+    </app-series-plate>
+    <app-series-plate
+      [run]="run()"
+      [slice]="slice()"
+      [pen]="pen()"
+      name="Mass budget"
+      [caption]="massCaption()"
+      unit="kt/s"
+      [specs]="mass()"
+      [link]="links()(1)"
+      emptyHeading="From the first interval"
+      emptyAbout="Change of mass, what damping adds, and what is left over."
+    >
+      @if (hasRows()) {
+        <app-verdict
+          [verdict]="massCloses() ? 'pass' : 'caution'"
+          [text]="massCloses() ? 'closes' : 'does not close'"
+        />
+      }
+    </app-series-plate>
+  `,
+  styles: `
+    :host {
+      display: contents;
+    }
+  `,
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class BudgetPlates {
+  readonly run = input.required<Run>();
+  readonly slice = input.required<GrowingSlice>();
+  readonly pen = input.required<'live' | 'lost' | 'none'>();
+  readonly links = input.required<(plate: number) => PlotLink>();
+
+  private readonly seconds = computed(() => this.run().setup.output.sectionIntervalDays * SECONDS_PER_DAY);
+  private readonly closure = computed(() => energyClosure(this.slice()));
+  protected readonly hasRows = computed(() => {
+    this.slice().version();
+    return this.slice().rows.count > 0;
+  });
+  protected readonly closes = computed(() => this.closure().share < CLOSES_BELOW);
+
+  protected readonly energy = computed<CurveSpec[]>(() => {
+    const slice = this.slice();
+    slice.head();
+    const factor = GW_PER_PJ_A_SECOND / this.seconds();
+    const damped = this.run().setup.layer.dampingPerS > 0;
+    const sinks = ['rayleighWork', 'viscousWork', ...(damped ? ['dampingWork'] : [])];
+    const spec = (name: string, columns: string[], series: CurveSpec['series']): CurveSpec => ({
+      name,
+      columns: columns.map((column) => columnIndex(slice, column)),
+      factor,
+      series,
+    });
+    return [
+      spec('wind', ['windWork'], 1),
+      spec(damped ? 'friction, damping' : 'friction', sinks, 3),
+      spec('stored', ['energyChange'], 2),
+      spec('numerical', ['numericalWork'], 5),
+      spec('residual', ['energyResidual'], 4),
+    ];
+  });
+  protected readonly energyCaption = computed(() => {
+    const { residual, share, against } = this.closure();
+    if (Number.isNaN(share)) return 'Basin integral; work that adds energy is positive.';
+    const held = against === 'wind work' ? 'the largest work of the wind' : 'the largest energy, as no wind blows';
+    return `Basin integral, work that adds energy is positive. Largest residual ${formatQuantity(residual, 'PJ', { significant: 2 })} an interval, ${formatNumber(share, { significant: 1 })} of ${held}.`;
+  });
+
+  /** Mass of the layer at rest is what a residual of mass is held against, Gt. */
+  private readonly setup = computed(() => this.run().setup, { equal: sameSetup });
+  private readonly restMass = computed(() => {
+    const { constants, layer } = this.setup();
+    const { nx, ny, mask, dxC, dy } = buildGrid(this.setup());
+    let area = 0;
+    for (let j = 0; j < ny; j++) for (let i = 0; i < nx; i++) area += (mask[j * nx + i] ?? 0) * (dxC[j] ?? 0) * dy;
+    return (area * layer.restThicknessM * constants.densityKgM3) / KG_PER_GT;
+  });
+  private readonly massResidual = computed(() => largestMassResidual(this.slice()));
+  protected readonly massCloses = computed(() => this.massResidual() / this.restMass() < CLOSES_BELOW);
+  protected readonly mass = computed<CurveSpec[]>(() => {
+    const slice = this.slice();
+    slice.head();
+    const factor = KT_PER_GT / this.seconds();
+    const spec = (name: string, column: string, series: CurveSpec['series']): CurveSpec => ({
+      name,
+      columns: [columnIndex(slice, column)],
+      factor,
+      series,
+    });
+    const damping = this.run().setup.layer.dampingPerS > 0 ? [spec('damping', 'massDamping', 3)] : [];
+    return [spec('change', 'massChange', 1), ...damping, spec('residual', 'massResidual', 4)];
+  });
+  protected readonly massCaption = computed(() => {
+    const residual = this.massResidual();
+    const rule =
+      this.run().setup.layer.dampingPerS > 0
+        ? 'Change of mass is what interface damping adds.'
+        : 'Without damping no mass is gained or lost: what is drawn is round-off.';
+    if (Number.isNaN(residual)) return rule;
+    return `${rule} Largest residual ${formatQuantity(residual, 'Gt', { significant: 2 })} an interval.`;
+  });
+}

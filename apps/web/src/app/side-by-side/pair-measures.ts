@@ -1,0 +1,127 @@
+import { type ResourceRef, ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
+import { type Run, type SideBySide } from '@halfdeep/contracts';
+import { formatModelDay, formatNumber, formatQuantity } from '../core/format';
+import { toApiProblem } from '../core/problem';
+import { DataState } from '../shared/data-state/data-state';
+import { VARIABLE_VIEWS, isVariable } from '../shared/plate/variables';
+import { type MapMeasures } from './pair-math';
+
+const SIGNIFICANT = 3;
+
+/** How far apart two runs are: over the whole run (computed by the server) and on the day of the maps (computed here). */
+@Component({
+  selector: 'app-pair-measures',
+  imports: [DataState],
+  template: `
+    @if (today(); as today) {
+      <div class="scroll">
+        <table class="numbers">
+          <caption class="visually-hidden">
+            How far apart the maps of this day are
+          </caption>
+          <thead>
+            <tr>
+              <th scope="col">map, {{ dayOf(today.day) }}</th>
+              <th scope="col">A</th>
+              <th scope="col">B</th>
+              <th scope="col">B / A</th>
+            </tr>
+          </thead>
+          <tbody>
+            <tr>
+              <td>RMS of {{ nameOf(today.variable) }}</td>
+              <td>{{ shown(today.measures.rmsA, today.variable) }}</td>
+              <td>{{ shown(today.measures.rmsB, today.variable) }}</td>
+              <td class="strong">{{ number(today.measures.rmsB / today.measures.rmsA) }}</td>
+            </tr>
+            <tr>
+              <td>RMS difference</td>
+              <td colspan="3">{{ shown(today.measures.rmsDifference, today.variable) }}</td>
+            </tr>
+            <tr>
+              <td>pattern correlation</td>
+              <td colspan="3">{{ number(today.measures.correlation) }}</td>
+            </tr>
+          </tbody>
+        </table>
+      </div>
+    }
+    @if (answer().error()) {
+      <app-data-state state="error" [problem]="problem()" (again)="answer().reload()" />
+    } @else if (answer().hasValue()) {
+      @if (answer().value()?.reason; as reason) {
+        <p class="small quiet">{{ reason }}</p>
+      } @else {
+        <div class="scroll" tabindex="0" role="region" aria-label="Measures over the whole run">
+          <table class="numbers">
+            <thead>
+              <tr>
+                <th scope="col">whole run, {{ common() }}</th>
+                <th scope="col">A, RMS</th>
+                <th scope="col">B, RMS</th>
+                <th scope="col">RMS difference</th>
+                <th scope="col">correlation</th>
+              </tr>
+            </thead>
+            <tbody>
+              @for (measure of answer().value()?.measures ?? []; track measure.variable) {
+                <tr>
+                  <td>{{ nameOf(measure.variable) }}</td>
+                  <td>{{ shown(measure.rmsA, measure.variable) }}</td>
+                  <td>{{ shown(measure.rmsB, measure.variable) }}</td>
+                  <td>{{ shown(measure.rmsDifference, measure.variable) }}</td>
+                  <td class="strong">{{ number(measure.correlation) }}</td>
+                </tr>
+              }
+            </tbody>
+          </table>
+        </div>
+        <p class="note quiet">
+          Over all cells that are water in both, weighted by area; {{ answer().value()?.regridding }}.
+        </p>
+      }
+    } @else {
+      <app-data-state state="loading" heading="both runs, to measure them" />
+    }
+  `,
+  styles: `
+    :host {
+      display: grid;
+      gap: 20px;
+      align-content: start;
+      min-width: 0;
+    }
+    .strong {
+      font-weight: 600;
+    }
+  `,
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class PairMeasures {
+  readonly a = input.required<Run>();
+  readonly b = input.required<Run>();
+  readonly today = input.required<{ day: number; variable: string; measures: MapMeasures } | null>();
+  readonly answer = input.required<ResourceRef<SideBySide | undefined>>();
+
+  protected readonly problem = computed(() => (this.answer().error() ? toApiProblem(this.answer().error()) : null));
+  protected readonly common = computed(() => {
+    const days = this.answer().value()?.commonDays;
+    return days
+      ? `days ${formatNumber(days.from)} to ${formatNumber(days.to)}, ${formatNumber(days.records)} maps`
+      : '';
+  });
+
+  protected dayOf(day: number): string {
+    return formatModelDay(day);
+  }
+  protected nameOf(variable: string): string {
+    return isVariable(variable) ? VARIABLE_VIEWS[variable].label : variable;
+  }
+  protected shown(value: number | null, variable: string): string {
+    const { factor, unit } = isVariable(variable) ? VARIABLE_VIEWS[variable] : { factor: 1, unit: '' };
+    return formatQuantity((value ?? NaN) * factor, unit, { significant: SIGNIFICANT });
+  }
+  protected number(value: number | null): string {
+    return formatNumber(value ?? NaN, { significant: 4 });
+  }
+}
