@@ -98,7 +98,7 @@ export interface Somebody {
 /** A new person with these roles, who may sign in with PASSWORD. */
 export async function somebody({ services }: DeskApi, name: string, ...roles: Role[]): Promise<Somebody> {
   const id = randomUUID();
-  const email = `${name}-${id.slice(0, 4)}@desk.example`;
+  const email = `${name.toLowerCase().replace(/[^a-z]+/g, '-')}-${id.slice(0, 4)}@desk.example`;
   const passwordHash = await services.hasher.hash(PASSWORD);
   await services.desk.write(async (transaction) => {
     await Person.create({ id, email, name, state: 'active', passwordHash, createdAt: new Date() }, { transaction });

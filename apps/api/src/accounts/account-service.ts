@@ -12,6 +12,7 @@ import { isCommonPassword } from './common-password';
 import { makeDeviceMark, readDeviceMark } from './device-mark';
 import { findToken, issueToken, withdrawTokens } from './one-use-tokens';
 import { type PasswordHasher } from './password-hasher';
+import { rolesOf } from './roles-of';
 import { type SessionService, type SessionTokens } from './session-service';
 import { type SignInGuard } from './sign-in-guard';
 
@@ -82,8 +83,7 @@ export class AccountService {
       await audit.record({ by, action: 'signed in', subject: email, detail }, transaction);
       return opened;
     });
-    const roles = (person.roleRows ?? []).map((row) => row.role);
-    const me = this.toMe({ id: person.id, name: person.name, email, roles });
+    const me = this.toMe({ id: person.id, name: person.name, email, roles: rolesOf(person) });
     return { me, tokens, deviceMark: device === null ? makeDeviceMark(email, deviceKey) : options.deviceMark! };
   }
 
@@ -142,8 +142,13 @@ export class AccountService {
       return { email: '', name: '', roles: [...FIRST_ADMIN_ROLES], invitedBy: 'this server', expiresAt };
     const person = await Person.findByPk(row.personId ?? '', { include: ['roleRows'] });
     if (person?.state !== 'invited') refuseToken('Ask an admin for a new one.');
-    const roles = (person.roleRows ?? []).map(({ role }) => role);
-    return { email: person.email, name: person.name, roles, invitedBy: row.issuedBy ?? 'an admin', expiresAt };
+    return {
+      email: person.email,
+      name: person.name,
+      roles: rolesOf(person),
+      invitedBy: row.issuedBy ?? 'an admin',
+      expiresAt,
+    };
   }
 
   /** Accepts an invitation. `email` is for the first admin alone. */

@@ -7,6 +7,7 @@ import { UnauthenticatedError } from '../http/errors';
 import { type Actor, type Caller } from '../policy/actor';
 import { signAccess, type AccessClaims } from './access-token';
 import { freshToken, hashToken } from './one-use-tokens';
+import { rolesOf } from './roles-of';
 
 const MINUTE_MS = 60_000;
 const DAY_MS = 24 * 60 * MINUTE_MS;
@@ -121,9 +122,8 @@ export class SessionService {
   async identify({ sub, sid }: AccessClaims): Promise<Actor | null> {
     const session = await this.live(sid);
     if (session?.personId !== sub) return null;
-    const { id, name, email, roleRows } = session.person;
-    const roles = (roleRows ?? []).map((row) => row.role);
-    return { id, name, email, roles, sessionId: sid, sessionExpiresAt: session.expiresAt };
+    const { id, name, email } = session.person;
+    return { id, name, email, roles: rolesOf(session.person), sessionId: sid, sessionExpiresAt: session.expiresAt };
   }
 
   /** The session that a refresh token belongs to, good or traded; null when it is unknown. */

@@ -4,6 +4,7 @@ import { Person, PersonRole, type DeskDatabase } from '@halfdeep/store';
 import { col, fn, type Order, type Transaction } from 'sequelize';
 import { deactivatedLetter, invitationLetter, reactivatedLetter, rolesChangedLetter } from '../accounts/account-mails';
 import { issueToken, withdrawTokens } from '../accounts/one-use-tokens';
+import { rolesOf } from '../accounts/roles-of';
 import { type AccessRevoked, type SessionService } from '../accounts/session-service';
 import { type AuditTrail } from '../audit/audit-trail';
 import { ConflictError, InputError, NotFoundError } from '../http/errors';
@@ -32,10 +33,9 @@ const SORTS: Record<string, Order> = {
   '-lastSeenAt': [['lastSeenAt', 'DESC']],
 };
 
-const rolesOf = (person: Person): Role[] => ROLES.filter((role) => person.roleRows?.some((row) => row.role === role));
 const sameRoles = (a: readonly Role[], b: readonly Role[]) =>
   ROLES.every((role) => a.includes(role) === b.includes(role));
-const inWords = (roles: readonly Role[]) => roles.join(', ');
+const inWords = (roles: readonly Role[]) => ROLES.filter((role) => roles.includes(role)).join(', ');
 
 /** Who may sign in, and as what: the admin's side of it. */
 export class PeopleService {
