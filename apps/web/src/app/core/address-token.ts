@@ -1,5 +1,8 @@
 import { Location } from '@angular/common';
-import { Injectable, inject } from '@angular/core';
+import { Injectable, type Signal, inject, signal } from '@angular/core';
+import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
+import { NavigationEnd, NavigationSkipped, Router } from '@angular/router';
+import { filter } from 'rxjs';
 
 /**
  * The one-use token of a mailed link ("/reset#…", "/reset#token=…" or "/reset?token=…"), taken out of the address at
@@ -8,9 +11,24 @@ import { Injectable, inject } from '@angular/core';
 @Injectable({ providedIn: 'root' })
 export class AddressToken {
   private readonly location = inject(Location);
+  private readonly router = inject(Router);
 
-  /** The token, or null when the address carries none. */
-  take(): string | null {
+  /**
+   * In an injection context: the token of the address, null while it carries none. A link that is opened in the same tab
+   * changes no more than the part behind the #, and is taken up too.
+   */
+  follow(): Signal<string | null> {
+    const token = signal(this.take());
+    this.router.events
+      .pipe(
+        filter((event) => event instanceof NavigationEnd || event instanceof NavigationSkipped),
+        takeUntilDestroyed(),
+      )
+      .subscribe(() => token.update((last) => this.take() ?? last));
+    return token.asReadonly();
+  }
+
+  private take(): string | null {
     const [beforeHash = '', hash = ''] = this.location.path(true).split('#', 2);
     const [path = '', query = ''] = beforeHash.split('?', 2);
     const fromHash = hash.includes('=') ? new URLSearchParams(hash).get('token') : decodeURIComponent(hash);

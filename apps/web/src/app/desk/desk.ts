@@ -55,6 +55,12 @@ export class Desk {
     const desk = this.data.desk();
     return desk ? desk.waiting.map((run) => ({ run, when: startsWhen(run, desk) })) : [];
   });
+  protected readonly ended = computed(() => {
+    const desk = this.data.desk();
+    if (!desk || desk.ended.length === 0) return { heading: 'Ended', about: 'nothing yet' };
+    if (desk.recent) return { heading: 'Ended before', about: 'the last few, nothing new since' };
+    return { heading: 'Ended', about: 'since your last visit' };
+  });
   protected readonly disk = computed(() => {
     const disk = this.data.desk()?.disk;
     if (!disk) return null;

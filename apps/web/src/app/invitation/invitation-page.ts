@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, inject, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, effect, inject, signal, untracked } from '@angular/core';
 import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import { MatError, MatFormField, MatHint, MatLabel } from '@angular/material/form-field';
@@ -44,7 +44,7 @@ export class InvitationPage {
   private readonly api = inject(Api);
   private readonly session = inject(Session);
   private readonly router = inject(Router);
-  protected readonly token = inject(AddressToken).take();
+  protected readonly token = inject(AddressToken).follow();
   protected readonly minLength = MIN_PASSWORD_LENGTH;
   protected readonly messageOf = messageOf;
   protected readonly invitation = signal<Invitation | null>(null);
@@ -61,13 +61,17 @@ export class InvitationPage {
   });
 
   constructor() {
-    if (this.token) void this.look();
+    effect(() => {
+      const token = this.token();
+      if (token) untracked(() => void this.look());
+    });
   }
 
   protected async look(): Promise<void> {
     this.unread.set(null);
+    this.invitation.set(null);
     try {
-      const body = { token: this.token };
+      const body = { token: this.token() };
       const invitation = await firstValueFrom(this.api.post('/api/invitations/look', body, invitationSchema));
       this.form.controls.name.setValue(invitation.name);
       this.invitation.set(invitation);
@@ -85,7 +89,7 @@ export class InvitationPage {
     this.problem.set(null);
     const { name, password } = this.form.getRawValue();
     try {
-      await firstValueFrom(this.api.send('POST', '/api/invitations/redeem', { token: this.token, name, password }));
+      await firstValueFrom(this.api.send('POST', '/api/invitations/redeem', { token: this.token(), name, password }));
       await firstValueFrom(this.session.signIn(invitation.email, password));
       await this.router.navigateByUrl('/');
     } catch (error) {

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, inject, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, inject, linkedSignal, signal } from '@angular/core';
 import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import { MatError, MatFormField, MatHint, MatLabel } from '@angular/material/form-field';
@@ -32,13 +32,18 @@ import { ProblemMessage } from '../shared/problem-message/problem-message';
 })
 export class ResetPage {
   private readonly api = inject(Api);
-  protected readonly token = signal(inject(AddressToken).take());
+  private readonly fromAddress = inject(AddressToken).follow();
+  /** The token in use; a link that is opened later in this tab takes the place of what stood here. */
+  protected readonly token = linkedSignal(() => this.fromAddress());
   protected readonly minLength = MIN_PASSWORD_LENGTH;
   protected readonly messageOf = messageOf;
   protected readonly busy = signal(false);
   protected readonly problem = signal<ApiProblem | null>(null);
   protected readonly shown = signal<readonly string[]>([]);
-  protected readonly done = signal<'asked' | 'changed' | null>(null);
+  protected readonly done = linkedSignal<string | null, 'asked' | 'changed' | null>({
+    source: this.fromAddress,
+    computation: () => null,
+  });
 
   protected readonly request = new FormGroup({
     email: new FormControl('', { nonNullable: true, validators: bySchema(passwordResetRequestSchema.shape.email) }),
