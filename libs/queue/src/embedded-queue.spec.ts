@@ -1,9 +1,12 @@
-import { afterEach, describe, expect, it } from 'vitest';
+import { afterEach, describe, expect, it, vi } from 'vitest';
 import { fileURLToPath } from 'node:url';
 import type { Setup } from '@halfdeep/ocean';
 import { EmbeddedQueue, type EmbeddedQueueOptions } from './embedded-queue';
 import type { RunQueueEvent } from './run-queue';
 import { MemoryLedger } from './testing/memory-ledger';
+
+// The machine may be busy: none of these measures time.
+vi.setConfig({ testTimeout: 60_000 });
 
 type Script = 'finish' | 'work' | 'stubborn' | 'die' | 'saveAndDie' | 'full' | 'fail';
 const worker = { path: fileURLToPath(new URL('./testing/scripted-worker.mjs', import.meta.url)) };
@@ -35,7 +38,7 @@ async function queueOn(ledger: MemoryLedger, options: Partial<EmbeddedQueueOptio
   return { queue, events, add, states };
 }
 
-async function until(what: () => boolean, seconds = 10): Promise<void> {
+async function until(what: () => boolean, seconds = 50): Promise<void> {
   const deadline = Date.now() + seconds * 1000;
   while (!what()) {
     if (Date.now() > deadline) throw new Error(`Not within ${seconds} s: ${what.toString()}`);

@@ -2,7 +2,7 @@ import fc from 'fast-check';
 import { mkdtemp, readdir, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import { type Frame, type Setup } from '@halfdeep/ocean';
 import {
   adoptStartState,
@@ -24,6 +24,9 @@ import {
   writeWhole,
 } from './index';
 import { chunkRecords } from './layout';
+
+// The machine may be busy: none of these measures time.
+vi.setConfig({ testTimeout: 60_000 });
 
 // Two tiles and a bit each way, so that edges, corners and the wider u and taller v rows are all met.
 const SIZE = { nx: 53, ny: 31 };
