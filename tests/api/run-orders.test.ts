@@ -107,6 +107,20 @@ describe('orders to a run', () => {
     await hand.post(`/api/runs/${endless.id}/extend`, { label: 'x', days: 5 }).expect(409);
   });
 
+  it('refuses to extend or repeat what the quota has no room for, and keeps nothing', async () => {
+    const run = await reach(hand, (await newRun(hand, experiment.id, smallSetup(3))).id, 'finished');
+    const setDisk = (diskBytes: number | null) =>
+      api.services.desk.write((transaction) => RunRow.update({ diskBytes }, { where: { id: run.id }, transaction }));
+    await setDisk(20e9 - 1000);
+    const rows = await RunRow.count();
+    const answer = await hand.post(`/api/runs/${run.id}/extend`, { label: 'x', days: 30 }).expect(422);
+    expect((answer.body as Problem).errors?.map((error) => error.pointer)).toEqual(['/days']);
+    expect((answer.body as Problem).detail).toMatch(/Preflight refuses this setup/);
+    await hand.post(`/api/runs/${run.id}/repeat`).expect(422);
+    expect(await RunRow.count()).toBe(rows);
+    await setDisk(run.diskBytes);
+  });
+
   it('keeps an extension repeatable when its parent is deleted', async () => {
     const parent = await newRun(hand, experiment.id, smallSetup(3), 'Parent');
     await reach(hand, parent.id, 'finished');

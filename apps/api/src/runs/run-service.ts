@@ -85,7 +85,7 @@ export class RunService {
    */
   async create(experiment: Experiment, input: NewRun): Promise<Run> {
     const { label, setup } = input;
-    const preflight = await this.parts.check.admit(setup, '/setup');
+    const preflight = await this.parts.check.admit(setup, (pointer) => `/setup${pointer}`);
     const parent = input.parentRunId ? await Run.findByPk(input.parentRunId) : null;
     if (input.parentRunId && !parent) {
       const detail = `There is no run ${input.parentRunId} to come from.`;
@@ -114,7 +114,7 @@ export class RunService {
     return this.queueDraft(parent.experimentId, parent.ownerId, {
       label: input.label,
       setup,
-      preflight: await this.parts.check.admit(setup),
+      preflight: await this.parts.check.admit(setup, () => '/days'),
       parent,
       descent: 'extension',
       changes: diffSetups(parent.setup, setup),
@@ -128,7 +128,7 @@ export class RunService {
     return this.queueDraft(original.experimentId, original.ownerId, {
       label: `${original.label.slice(0, 70)}, repeated`,
       setup,
-      preflight: await this.parts.check.admit(setup),
+      preflight: await this.parts.check.admit(setup, () => ''),
       parent: original,
       descent: 'sensitivity',
       changes: [],

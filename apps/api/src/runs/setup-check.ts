@@ -12,25 +12,26 @@ export class SetupCheck {
   }
 
   /**
-   * The same, and throws InputError (422) naming fields and remedies when preflight refuses. JSON pointers start with
-   * `prefix`, where the setup stands in the request.
+   * The same, and throws InputError (422) naming fields and remedies when preflight refuses. `place` says where in the
+   * request a field of the setup stands, as a JSON pointer.
    */
-  async admit(setup: Setup, prefix = ''): Promise<Preflight> {
+  async admit(setup: Setup, place: (pointer: string) => string): Promise<Preflight> {
     const answer = await this.check(setup);
-    const refused = answer.checks.filter((check) => check.verdict === 'refuse');
     if (answer.verdict !== 'refuse') return answer;
-    const errors = refused.flatMap((check) => checkErrors(check, prefix));
+    const refused = answer.checks.filter((check) => check.verdict === 'refuse');
+    const errors = refused.flatMap((check) => checkErrors(check, place));
     const detail = `Preflight refuses this setup: ${refused.map((check) => check.reason).join(' ')}`;
     throw new InputError(detail, errors, 422);
   }
 }
 
 /** One line a field that the check is about: the reason, and the change that cures it. */
-function checkErrors(check: Check, prefix: string): FieldError[] {
+function checkErrors(check: Check, place: (pointer: string) => string): FieldError[] {
   const cure = check.remedy
     ? ` ${check.remedy.label}: ${check.remedy.changes
-        .map(({ pointer, value }) => `${prefix}${pointer} = ${JSON.stringify(value)}`)
+        .map(({ pointer, value }) => `${place(pointer)} = ${JSON.stringify(value)}`)
         .join(', ')}.`
     : '';
-  return check.pointers.map((pointer) => ({ pointer: prefix + pointer, detail: `${check.reason}${cure}` }));
+  const places = new Set(check.pointers.map(place));
+  return [...places].map((pointer) => ({ pointer, detail: `${check.reason}${cure}` }));
 }
