@@ -1,7 +1,8 @@
 import { afterEach, describe, expect, it, vi } from 'vitest';
 import { fileURLToPath } from 'node:url';
 import type { Setup } from '@halfdeep/ocean';
-import { EmbeddedQueue, type EmbeddedQueueOptions } from './embedded-queue';
+import { EmbeddedQueue } from './embedded-queue';
+import type { EmbeddedQueueOptions } from './queue-options';
 import type { RunQueueEvent } from './run-queue';
 import { MemoryLedger } from './testing/memory-ledger';
 

@@ -1,28 +1,15 @@
 import { availableParallelism } from 'node:os';
 import { setTimeout as sleep } from 'node:timers/promises';
 import BetterQueue from 'better-queue';
-import { type Observable, Subject } from 'rxjs';
-import type { Progress, QueuedReason, QueueSummary, RunFailure, RunState } from '@halfdeep/contracts';
+import type { Observable } from 'rxjs';
+import type { Progress, QueuedReason, QueueSummary, RunFailure } from '@halfdeep/contracts';
 import { LedgerStore, type RunTask } from './ledger-store';
+import { QueueAnnouncer } from './queue-announcer';
+import { type EmbeddedQueueOptions, withDefaults } from './queue-options';
 import type { LedgerRun, QueueSettings, RunLedger } from './run-ledger';
 import type { QueueWorker, RunQueue, RunQueueEvent } from './run-queue';
 import type { WorkerMessage, WorkerReport } from './worker-messages';
-import { type WorkerEnd, type WorkerEntry, WorkerProcess } from './worker-process';
-
-export interface EmbeddedQueueOptions {
-  ledger: RunLedger;
-  /** Folder that holds `runs/`. */
-  varDir: string;
-  worker: WorkerEntry;
-  /** Shortest time between checkpoints, s. Default 20; HALFDEEP_CHECKPOINT_SECONDS overrides it. */
-  checkpointSeconds?: number;
-  /** Pause before work is tried again after the disk was full, s. Default 30. */
-  diskRetrySeconds?: number;
-  /** How long a worker may take to save when the queue closes, s; then it is killed. Default 30. */
-  closeSeconds?: number;
-  /** Told of errors of the ledger, with what was tried. Default: one line on standard error. */
-  log?: (what: string, error: unknown) => void;
-}
+import { type WorkerEnd, WorkerProcess } from './worker-process';
 
 /** Deaths of a run's workers without a new checkpoint after which the run has failed. */
 const MAX_DEATHS = 3;
@@ -40,7 +27,6 @@ interface Active {
   worker: WorkerProcess;
   intent: Intent | null;
   deaths: number;
-  records: string;
   /** Ledger writes of this worker's messages, one after another. */
   writes: Promise<void>;
 }
@@ -52,23 +38,26 @@ interface Active {
 export class EmbeddedQueue implements RunQueue {
   readonly events$: Observable<RunQueueEvent>;
   readonly maxCap = Math.max(4, availableParallelism());
-  private readonly events = new Subject<RunQueueEvent>();
+  private readonly options: Required<EmbeddedQueueOptions>;
+  private readonly announce: QueueAnnouncer;
   private readonly ledger: RunLedger;
-  private readonly checkpointSeconds: number;
   private readonly active = new Map<string, Active>();
   /** Tasks from claim to the last word in the ledger, by run. */
   private readonly tasks = new Map<string, Promise<void>>();
   private settings: QueueSettings = { cap: 1, paused: false, whenLowered: 'drain' };
   private queue: BetterQueue<RunTask, void> | null = null;
   private holdUntil = 0;
-  private telling: Promise<void> = Promise.resolve();
   private closing: Promise<void> | null = null;
 
   /** RangeError when the environment asks for a pause between checkpoints that is no number of seconds. */
-  constructor(private readonly options: EmbeddedQueueOptions) {
+  constructor(options: EmbeddedQueueOptions) {
+    this.options = withDefaults(options);
     this.ledger = options.ledger;
-    this.checkpointSeconds = options.checkpointSeconds ?? checkpointSecondsFromEnvironment();
-    this.events$ = this.events.asObservable();
+    this.announce = new QueueAnnouncer(
+      () => this.summary(),
+      (error) => this.options.log('counting the queue', error),
+    );
+    this.events$ = this.announce.events$;
   }
 
   async start(): Promise<void> {
@@ -84,7 +73,7 @@ export class EmbeddedQueue implements RunQueue {
       concurrent: Math.min(this.settings.cap, this.maxCap),
       store: new LedgerStore(
         this.ledger,
-        (run) => this.tell(run.runId, 'running'),
+        (run) => this.announce.state(run.runId, 'running'),
         (error) => this.retryLater(error),
       ),
       precondition: (done) => done(null, Date.now() >= this.holdUntil),
@@ -93,7 +82,7 @@ export class EmbeddedQueue implements RunQueue {
     if (this.settings.paused) this.queue.pause();
     // Better-queue looks for one task at a time; after each start there may be room for the next.
     this.queue.on('task_started', () => this.nudge());
-    await this.tellQueue();
+    await this.announce.queue();
   }
 
   async enqueue(runId: string): Promise<void> {
@@ -101,7 +90,7 @@ export class EmbeddedQueue implements RunQueue {
     if (!run) throw new Error(`Run ${runId} is not in the ledger.`);
     if (run.state !== 'queued') return; // taken already
     this.opened().push({ id: runId });
-    this.tell(runId, 'queued', run.queuedReason);
+    this.announce.state(runId, 'queued', run.queuedReason);
   }
 
   async stop(runId: string): Promise<boolean> {
@@ -111,7 +100,7 @@ export class EmbeddedQueue implements RunQueue {
       active.intent = 'stop';
       active.worker.save();
     }
-    this.tell(runId, 'stopped');
+    this.announce.state(runId, 'stopped');
     return true;
   }
 
@@ -134,19 +123,19 @@ export class EmbeddedQueue implements RunQueue {
       }
     }
     this.nudge();
-    await this.tellQueue();
+    await this.announce.queue();
   }
 
   async setPaused(paused: boolean): Promise<void> {
     await this.change({ paused });
     if (paused) this.opened().pause();
     else this.nudge();
-    await this.tellQueue();
+    await this.announce.queue();
   }
 
   async reorder(runIds: readonly string[]): Promise<void> {
     await this.ledger.reorder(runIds);
-    await this.tellQueue();
+    await this.announce.queue();
   }
 
   async summary(): Promise<QueueSummary> {
@@ -166,7 +155,7 @@ export class EmbeddedQueue implements RunQueue {
 
   private async shutDown(): Promise<void> {
     this.queue?.pause();
-    const patience = (this.options.closeSeconds ?? 30) * 1000;
+    const patience = this.options.closeSeconds * 1000;
     for (const active of this.active.values()) {
       active.intent ??= 'close';
       active.worker.save();
@@ -181,8 +170,7 @@ export class EmbeddedQueue implements RunQueue {
     abort.abort();
     await impatient;
     await new Promise<void>((resolve) => (this.queue ? this.queue.destroy(resolve) : resolve()));
-    await this.telling;
-    this.events.complete();
+    await this.announce.complete();
   }
 
   /** One task of better-queue from claim to the last word in the ledger. Never rejects. */
@@ -202,7 +190,7 @@ export class EmbeddedQueue implements RunQueue {
 
   /** The ledger failed in the middle of a task: the run would stay `running` for ever, so it is put back once that works. */
   private recover(runId: string, error: unknown): void {
-    this.log(`computing run ${runId}`, error);
+    this.options.log(`computing run ${runId}`, error);
     const retry = setTimeout(() => {
       this.requeue(runId, 'worker died')
         .then(() => this.resumeRequeued(runId))
@@ -218,10 +206,10 @@ export class EmbeddedQueue implements RunQueue {
       await this.requeue(runId, 'server stopped');
       return;
     }
-    const { varDir } = this.options;
-    const job = { runId, setup, varDir, checkpointSeconds: this.checkpointSeconds };
+    const { varDir, checkpointSeconds } = this.options;
+    const job = { runId, setup, varDir, checkpointSeconds };
     const worker = new WorkerProcess(job, this.options.worker, (message) => this.hear(runId, message));
-    const active: Active = { worker, intent: null, deaths: run.deaths, records: '', writes: Promise.resolve() };
+    const active: Active = { worker, intent: null, deaths: run.deaths, writes: Promise.resolve() };
     this.active.set(runId, active);
     this.write(active, 'noting the worker', () => this.ledger.recordWorker(runId, worker.pid ?? null));
     const end = await worker.ended;
@@ -231,31 +219,22 @@ export class EmbeddedQueue implements RunQueue {
     } finally {
       this.active.delete(runId);
     }
-    await this.tellQueue();
+    await this.announce.queue();
   }
 
   private hear(runId: string, message: WorkerMessage): void {
     const active = this.active.get(runId);
     if (!active) return;
-    if (message.type === 'report')
-      this.write(active, 'noting progress', () => this.noteProgress(runId, active, message));
+    if (message.type === 'report') this.write(active, 'noting progress', () => this.noteProgress(runId, message));
     if (message.type === 'checkpoint') {
       active.deaths = 0;
       this.write(active, 'noting a checkpoint', () => this.ledger.clearDeaths(runId));
     }
   }
 
-  private async noteProgress(runId: string, active: Active, report: WorkerReport): Promise<void> {
+  private async noteProgress(runId: string, report: WorkerReport): Promise<void> {
     await this.ledger.recordProgress(runId, report.progress, report.diskBytes);
-    this.tellProgress(runId, active, report.progress);
-  }
-
-  private tellProgress(runId: string, active: Active, progress: Progress): void {
-    this.events.next({ type: 'progress', runId, progress });
-    const records = JSON.stringify(progress.records);
-    if (records === active.records) return;
-    active.records = records;
-    this.events.next({ type: 'records', runId, records: progress.records });
+    this.announce.progress(runId, report.progress);
   }
 
   /** Writes into the ledger how a worker ended, and what becomes of its run. */
@@ -264,17 +243,17 @@ export class EmbeddedQueue implements RunQueue {
     if (outcome && 'progress' in outcome) {
       const progress: Progress = { ...outcome.progress, cellStepsPerSecond: null, secondsLeft: null };
       await this.ledger.recordProgress(runId, progress, outcome.diskBytes);
-      this.tellProgress(runId, active, progress);
+      this.announce.progress(runId, progress);
     }
     if (outcome?.kind === 'finished') {
       const { fingerprint, stateSha256, lastStep, progress } = outcome;
       const done = await this.ledger.markFinished(runId, { fingerprint, stateSha256, lastStep, progress });
-      if (done) this.tell(runId, 'finished');
+      if (done) this.announce.state(runId, 'finished');
       else await this.resumeRequeued(runId);
     } else if (outcome?.kind === 'failed') {
       await this.fail(runId, outcome.failure);
     } else if (outcome?.kind === 'disk full') {
-      this.holdUntil = Date.now() + (this.options.diskRetrySeconds ?? 30) * 1000;
+      this.holdUntil = Date.now() + this.options.diskRetrySeconds * 1000;
       await this.goOnLater(runId, active, 'disk full');
     } else if (outcome?.kind === 'saved' || active.intent === 'stop' || active.intent === 'requeue') {
       await this.goOnLater(runId, active, 'worker died');
@@ -311,14 +290,14 @@ export class EmbeddedQueue implements RunQueue {
   }
 
   private async fail(runId: string, failure: RunFailure): Promise<void> {
-    if (await this.ledger.markFailed(runId, failure)) this.tell(runId, 'failed', null, failure);
+    if (await this.ledger.markFailed(runId, failure)) this.announce.state(runId, 'failed', null, failure);
     else await this.resumeRequeued(runId);
   }
 
   /** Puts a run that is running back to the front of the queue. */
   private async requeue(runId: string, reason: QueuedReason): Promise<boolean> {
     const done = await this.ledger.markQueued(runId, reason, 'front');
-    if (done) this.tell(runId, 'queued', reason);
+    if (done) this.announce.state(runId, 'queued', reason);
     return done;
   }
 
@@ -334,24 +313,7 @@ export class EmbeddedQueue implements RunQueue {
   }
 
   private write(active: Active, what: string, work: () => Promise<void>): void {
-    active.writes = active.writes.then(work).catch((error: unknown) => this.log(what, error));
-  }
-
-  private tell(
-    runId: string,
-    state: RunState,
-    queuedReason: QueuedReason | null = null,
-    failure: RunFailure | null = null,
-  ): void {
-    this.events.next({ type: 'state', runId, state, queuedReason, failure });
-    void this.tellQueue();
-  }
-
-  private tellQueue(): Promise<void> {
-    this.telling = this.telling
-      .then(async () => this.events.next({ type: 'queue', queue: await this.summary() }))
-      .catch((error: unknown) => this.log('counting the queue', error));
-    return this.telling;
+    active.writes = active.writes.then(work).catch((error: unknown) => this.options.log(what, error));
   }
 
   /** Makes better-queue look whether there is room and work. */
@@ -360,7 +322,7 @@ export class EmbeddedQueue implements RunQueue {
   }
 
   private retryLater(error: unknown): void {
-    this.log('taking the next run', error);
+    this.options.log('taking the next run', error);
     setTimeout(() => this.nudge(), 1000).unref();
   }
 
@@ -368,17 +330,4 @@ export class EmbeddedQueue implements RunQueue {
     if (!this.queue) throw new Error('The queue has not been started.');
     return this.queue;
   }
-
-  private log(what: string, error: unknown): void {
-    if (this.options.log) this.options.log(what, error);
-    else process.stderr.write(`Queue: ${what}: ${error instanceof Error ? error.message : String(error)}\n`);
-  }
-}
-
-function checkpointSecondsFromEnvironment(): number {
-  const text = process.env['HALFDEEP_CHECKPOINT_SECONDS'] ?? '20';
-  const seconds = Number(text);
-  if (text.trim() === '' || !(seconds > 0))
-    throw new RangeError(`HALFDEEP_CHECKPOINT_SECONDS must be a number of seconds above 0; “${text}” arrived.`);
-  return seconds;
 }

@@ -1,5 +1,6 @@
 export type * from './run-ledger';
 export type * from './run-queue';
 export type * from './worker-messages';
-export { EmbeddedQueue, type EmbeddedQueueOptions } from './embedded-queue';
+export { EmbeddedQueue } from './embedded-queue';
+export type { EmbeddedQueueOptions } from './queue-options';
 export type { WorkerEntry } from './worker-process';
