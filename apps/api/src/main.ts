@@ -25,19 +25,30 @@ function projectFolder(): string {
 
 const say = (text: string) => process.stdout.write(`${text}\n`);
 
+/** Said in one piece, so that whoever reads the output has all of it once the address is there. */
 function announce({ firstStart, demonstration, settings, publicUrl }: Services, news: FirstStartNews): void {
-  say(`\nHalfdeep is at ${publicUrl()}\n`);
+  const lines = ['', `Halfdeep is at ${publicUrl()}`, ''];
   if (news.signIns.length > 0) {
-    say(firstStart ? 'Demonstration accounts, shown this once:' : 'Demonstration accounts, with the password you set:');
-    for (const { email, password } of news.signIns) say(`  ${email.padEnd(28)} ${password}`);
-    say('');
+    const accounts = news.signIns.map(({ email, password }) => `  ${email.padEnd(28)} ${password}`);
+    lines.push(
+      firstStart ? 'Demonstration accounts, shown this once:' : 'Demonstration accounts, with the password you set:',
+      ...accounts,
+      '',
+    );
   } else if (demonstration) {
-    say('Its demonstration passwords were shown at the first start; to replace them, start once with');
-    say('HALFDEEP_DEMO_PASSWORD set to a new one.\n');
+    lines.push(
+      'Its demonstration passwords were shown at the first start; to replace them, start once with',
+      'HALFDEEP_DEMO_PASSWORD set to a new one.',
+      '',
+    );
   }
-  if (news.firstAdminLink) say(`Make the first admin here, once, within a day:\n  ${news.firstAdminLink}\n`);
+  if (news.firstAdminLink) lines.push('Make the first admin here, once, within a day:', `  ${news.firstAdminLink}`, '');
   if (demonstration && !settings.loopback)
-    say(`The demonstration accounts can be reached from other machines (HALFDEEP_HOST is ${settings.host}).\n`);
+    lines.push(
+      `The demonstration accounts can be reached from other machines (HALFDEEP_HOST is ${settings.host}).`,
+      '',
+    );
+  say(lines.join('\n'));
 }
 
 /** Answers what comes while the desk is being opened. */

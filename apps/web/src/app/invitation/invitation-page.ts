@@ -10,6 +10,7 @@ import {
   invitationRedeemSchema,
   invitationSchema,
   passwordSchema,
+  signInSchema,
 } from '@halfdeep/contracts';
 import { firstValueFrom } from 'rxjs';
 import { AddressToken } from '../core/address-token';
@@ -56,6 +57,11 @@ export class InvitationPage {
   protected readonly until = (iso: string) => formatMoment(iso);
 
   protected readonly form = new FormGroup({
+    // For the first admin alone, whose invitation names no address.
+    email: new FormControl(
+      { value: '', disabled: true },
+      { nonNullable: true, validators: bySchema(signInSchema.shape.email) },
+    ),
     name: new FormControl('', { nonNullable: true, validators: bySchema(invitationRedeemSchema.shape.name) }),
     password: new FormControl('', { nonNullable: true, validators: bySchema(passwordSchema) }),
   });
@@ -74,6 +80,8 @@ export class InvitationPage {
       const body = { token: this.token() };
       const invitation = await firstValueFrom(this.api.post('/api/invitations/look', body, invitationSchema));
       this.form.controls.name.setValue(invitation.name);
+      if (invitation.email === '') this.form.controls.email.enable();
+      else this.form.controls.email.disable();
       this.invitation.set(invitation);
     } catch (error) {
       this.unread.set(toApiProblem(error));
@@ -87,10 +95,11 @@ export class InvitationPage {
     if (this.form.invalid || this.busy() || !invitation) return;
     this.busy.set(true);
     this.problem.set(null);
-    const { name, password } = this.form.getRawValue();
+    const { name, password, email } = this.form.value; // without the address when the invitation names it
+    const body = { token: this.token(), name, password, email };
     try {
-      await firstValueFrom(this.api.send('POST', '/api/invitations/redeem', { token: this.token(), name, password }));
-      await firstValueFrom(this.session.signIn(invitation.email, password));
+      await firstValueFrom(this.api.send('POST', '/api/invitations/redeem', body));
+      await firstValueFrom(this.session.signIn(email ?? invitation.email, password ?? ''));
       await this.router.navigateByUrl('/');
     } catch (error) {
       const problem = toApiProblem(error);
