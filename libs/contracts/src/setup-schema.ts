@@ -1,35 +1,8 @@
 import * as z from 'zod';
-import { LIMITS, type LimitName, type Setup } from '@halfdeep/ocean';
+import { LIMITS, type Setup } from '@halfdeep/ocean';
+import { arrived, choice, fields, kindError, list, name, quantity, yesOrNo } from './setup-words';
 
-/** An empty field arrives as null. */
-function arrived(input: unknown): string {
-  if (input === undefined || input === null) return 'nothing';
-  return typeof input === 'number' ? String(input) : JSON.stringify(input);
-}
-
-/** A number inside a hard limit; the message says what is wrong, what arrived and what would be right. */
-function quantity(name: LimitName, range: { min?: number; max?: number } = {}) {
-  const limit: (typeof LIMITS)[LimitName] & { multipleOf?: number } = LIMITS[name];
-  const min = range.min ?? limit.min;
-  const max = range.max ?? limit.max;
-  const unit = limit.unit ? ` ${limit.unit}` : '';
-  const rule = `${limit.label} must be between ${min} and ${max}${unit}`;
-  const base = z
-    .number({
-      error: (issue) => `${rule}; ${arrived(issue.input)} arrived.`,
-    })
-    .min(min, { error: (issue) => `${rule}; ${String(issue.input)} arrived.` })
-    .max(max, { error: (issue) => `${rule}; ${String(issue.input)} arrived.` });
-  const step = limit.multipleOf;
-  if (step === undefined) return base;
-  return base.multipleOf(step, {
-    error: (issue) => `${limit.label} must be a multiple of ${step}${unit}; ${String(issue.input)} arrived.`,
-  });
-}
-
-const name = z.string().trim().max(60, 'A name has at most 60 characters.');
-
-export const constantsSchema = z.strictObject({
+export const constantsSchema = fields('The part “constants”', {
   earthRadiusM: quantity('earthRadius'),
   rotationRatePerS: quantity('rotationRate'),
   gravityMS2: quantity('gravity'),
@@ -37,252 +10,289 @@ export const constantsSchema = z.strictObject({
   heatCapacityJM3K: quantity('heatCapacity'),
 });
 
-const coastSchema = z.discriminatedUnion('kind', [
-  z.strictObject({ kind: z.literal('rectangular') }),
-  z.strictObject({ kind: z.literal('slanting'), atSouthDeg: quantity('longitude'), atNorthDeg: quantity('longitude') }),
-]);
+const coastSchema = z.discriminatedUnion(
+  'kind',
+  [
+    fields('A rectangular coast', { kind: z.literal('rectangular') }),
+    fields('A slanting coast', {
+      kind: z.literal('slanting'),
+      atSouthDeg: quantity('longitude'),
+      atNorthDeg: quantity('longitude'),
+    }),
+  ],
+  { error: kindError('the western coast', ['rectangular', 'slanting']) },
+);
 
-const islandSchema = z.discriminatedUnion('kind', [
-  z.strictObject({
-    kind: z.literal('box'),
-    name,
-    westDeg: quantity('longitude'),
-    eastDeg: quantity('longitude'),
-    southDeg: quantity('latitude'),
-    northDeg: quantity('latitude'),
-  }),
-  z.strictObject({
-    kind: z.literal('polygon'),
-    name,
-    points: z
-      .array(z.tuple([quantity('longitude'), quantity('latitude')]))
-      .min(3, 'A polygon needs three points or more.')
-      .max(500, 'A polygon has at most 500 points.'),
-  }),
-]);
+const islandSchema = z.discriminatedUnion(
+  'kind',
+  [
+    fields('An island of kind box', {
+      kind: z.literal('box'),
+      name: name(),
+      westDeg: quantity('longitude'),
+      eastDeg: quantity('longitude'),
+      southDeg: quantity('latitude'),
+      northDeg: quantity('latitude'),
+    }),
+    fields('An island of kind polygon', {
+      kind: z.literal('polygon'),
+      name: name(),
+      points: z
+        .array(
+          z.tuple([quantity('longitude'), quantity('latitude')], {
+            error: (issue) => `A point is [longitude, latitude]; ${arrived(issue.input)} arrived.`,
+          }),
+          { error: (issue) => `The points must be a list; ${arrived(issue.input)} arrived.` },
+        )
+        .min(3, 'A polygon needs three points or more.')
+        .max(500, 'A polygon has at most 500 points.'),
+    }),
+  ],
+  { error: kindError('an island', ['box', 'polygon']) },
+);
 
-export const basinSchema = z
-  .strictObject({
-    name,
-    geometry: z.enum(['equatorial', 'midlatitude', 'fplane']),
-    westDeg: quantity('longitude'),
-    eastDeg: quantity('longitude'),
-    southDeg: quantity('latitude'),
-    northDeg: quantity('latitude'),
-    referenceLatitudeDeg: quantity('latitude').nullable(),
-    f0PerS: quantity('coriolis').nullable(),
-    betaPerMS: quantity('beta').nullable(),
-    zonallyPeriodic: z.boolean(),
-    westernCoast: coastSchema,
-    islands: z.array(islandSchema).max(LIMITS.islands.max, `At most ${LIMITS.islands.max} islands.`),
-  })
-  .superRefine((basin, context) => {
-    const extent = basin.eastDeg - basin.westDeg;
-    const { min, max } = LIMITS.zonalExtent;
-    if (!(extent >= min && extent <= max))
-      context.addIssue({
-        code: 'custom',
-        path: ['eastDeg'],
-        message: `The zonal extent must be between ${min} and ${max}°; ${extent}° arrived. The east edge lies east of the west edge.`,
-      });
-    if (!(basin.northDeg > basin.southDeg))
-      context.addIssue({
-        code: 'custom',
-        path: ['northDeg'],
-        message: 'The north edge must lie north of the south edge.',
-      });
-    if (basin.zonallyPeriodic && basin.westernCoast.kind === 'slanting')
-      context.addIssue({
-        code: 'custom',
-        path: ['westernCoast', 'kind'],
-        message: 'A zonally periodic basin has no western coast: choose a rectangular coast or a closed basin.',
-      });
-    basin.islands.forEach((island, k) => {
-      if (island.kind !== 'box') return;
-      if (!(island.eastDeg > island.westDeg))
-        context.addIssue({
-          code: 'custom',
-          path: ['islands', k, 'eastDeg'],
-          message: 'The island’s east edge must lie east of its west edge.',
-        });
-      if (!(island.northDeg > island.southDeg))
-        context.addIssue({
-          code: 'custom',
-          path: ['islands', k, 'northDeg'],
-          message: 'The island’s north edge must lie north of its south edge.',
-        });
+export const basinSchema = fields('The part “basin”', {
+  name: name(),
+  geometry: choice('The geometry', ['equatorial', 'midlatitude', 'fplane']),
+  westDeg: quantity('longitude'),
+  eastDeg: quantity('longitude'),
+  southDeg: quantity('latitude'),
+  northDeg: quantity('latitude'),
+  referenceLatitudeDeg: quantity('latitude').nullable(),
+  f0PerS: quantity('coriolis').nullable(),
+  betaPerMS: quantity('beta').nullable(),
+  zonallyPeriodic: yesOrNo('Zonally periodic'),
+  westernCoast: coastSchema,
+  islands: list('Islands', islandSchema, LIMITS.islands.max),
+}).superRefine((basin, context) => {
+  const extent = basin.eastDeg - basin.westDeg;
+  const { min, max } = LIMITS.zonalExtent;
+  if (!(extent >= min && extent <= max))
+    context.addIssue({
+      code: 'custom',
+      path: ['eastDeg'],
+      message: `The zonal extent must be between ${min} and ${max}°; ${arrived(extent)}° arrived. The east edge lies east of the west edge.`,
     });
+  if (!(basin.northDeg > basin.southDeg))
+    context.addIssue({
+      code: 'custom',
+      path: ['northDeg'],
+      message: `The north edge must lie north of the south edge (${arrived(basin.southDeg)}° N); ${arrived(basin.northDeg)}° N arrived.`,
+    });
+  if (basin.zonallyPeriodic && basin.westernCoast.kind === 'slanting')
+    context.addIssue({
+      code: 'custom',
+      path: ['westernCoast', 'kind'],
+      message: 'A zonally periodic basin has no western coast: choose a rectangular coast or a closed basin.',
+    });
+  basin.islands.forEach((island, k) => {
+    if (island.kind !== 'box') return;
+    if (!(island.eastDeg > island.westDeg))
+      context.addIssue({
+        code: 'custom',
+        path: ['islands', k, 'eastDeg'],
+        message: `The island’s east edge must lie east of its west edge (${arrived(island.westDeg)}° E); ${arrived(island.eastDeg)}° E arrived.`,
+      });
+    if (!(island.northDeg > island.southDeg))
+      context.addIssue({
+        code: 'custom',
+        path: ['islands', k, 'northDeg'],
+        message: `The island’s north edge must lie north of its south edge (${arrived(island.southDeg)}° N); ${arrived(island.northDeg)}° N arrived.`,
+      });
   });
+});
 
-export const layerSchema = z.strictObject({
+export const layerSchema = fields('The part “layer”', {
   reducedGravityMS2: quantity('reducedGravity'),
   restThicknessM: quantity('restThickness'),
   dampingPerS: quantity('damping'),
   temperatureStepK: quantity('temperatureStep'),
 });
 
-const direction = z.enum(['eastward', 'northward']);
-const patternSchema = z.discriminatedUnion('kind', [
-  z.strictObject({ kind: z.literal('uniform'), eastwardNM2: quantity('stress'), northwardNM2: quantity('stress') }),
-  z.strictObject({
-    kind: z.literal('zonalBelt'),
-    direction,
-    amplitudeNM2: quantity('stress'),
-    latitudeDeg: quantity('latitude'),
-    widthDeg: quantity('windLength'),
-  }),
-  z.strictObject({
-    kind: z.literal('gaussianPatch'),
-    direction,
-    amplitudeNM2: quantity('stress'),
-    longitudeDeg: quantity('longitude'),
-    latitudeDeg: quantity('latitude'),
-    widthLongitudeDeg: quantity('windLength'),
-    widthLatitudeDeg: quantity('windLength'),
-  }),
-  z
-    .strictObject({
+const direction = choice('The direction', ['eastward', 'northward']);
+const patternSchema = z.discriminatedUnion(
+  'kind',
+  [
+    fields('A uniform wind', {
+      kind: z.literal('uniform'),
+      eastwardNM2: quantity('stress'),
+      northwardNM2: quantity('stress'),
+    }),
+    fields('A zonal belt', {
+      kind: z.literal('zonalBelt'),
+      direction,
+      amplitudeNM2: quantity('stress'),
+      latitudeDeg: quantity('latitude'),
+      widthDeg: quantity('windLength'),
+    }),
+    fields('A Gaussian patch', {
+      kind: z.literal('gaussianPatch'),
+      direction,
+      amplitudeNM2: quantity('stress'),
+      longitudeDeg: quantity('longitude'),
+      latitudeDeg: quantity('latitude'),
+      widthLongitudeDeg: quantity('windLength'),
+      widthLatitudeDeg: quantity('windLength'),
+    }),
+    fields('A linear shear', {
       kind: z.literal('linearShear'),
       stressNM2: quantity('stress'),
       overDistanceKm: quantity('windDistance'),
       fullWithinDeg: quantity('latitude', { min: 0, max: 90 }),
       zeroBeyondDeg: quantity('latitude', { min: 0, max: 90 }),
-    })
-    .refine((shear) => shear.zeroBeyondDeg > shear.fullWithinDeg, {
+    }).refine((shear) => shear.zeroBeyondDeg > shear.fullWithinDeg, {
       path: ['zeroBeyondDeg'],
-      message: 'The taper must end poleward of where it begins.',
+      message: 'The taper must end poleward of where it begins: “zero beyond” above “full within”.',
     }),
-]);
+  ],
+  { error: kindError('the wind pattern', ['uniform', 'zonalBelt', 'gaussianPatch', 'linearShear']) },
+);
 
-const harmonicSchema = z.strictObject({ amplitude: quantity('seasonFactor'), peakDay: quantity('peakDay') });
-export const seasonSchema = z.strictObject({
+const harmonicSchema = fields('A harmonic', { amplitude: quantity('seasonFactor'), peakDay: quantity('peakDay') });
+export const seasonSchema = fields('A season', {
   mean: quantity('seasonFactor'),
   switchOnDays: quantity('switchOn'),
   annual: harmonicSchema,
   semiannual: harmonicSchema,
 });
 
-export const windSchema = z.strictObject({
-  components: z
-    .array(z.strictObject({ name, pattern: patternSchema, season: seasonSchema }))
-    .max(LIMITS.windComponents.max, `At most ${LIMITS.windComponents.max} wind components.`),
+export const windSchema = fields('The part “wind”', {
+  components: list(
+    'Wind components',
+    fields('A wind component', { name: name(), pattern: patternSchema, season: seasonSchema }),
+    LIMITS.windComponents.max,
+  ),
   seasonalStrength: quantity('seasonalStrength'),
 });
 
-const sha256 = z.string().regex(/^[0-9a-f]{64}$/, 'A SHA-256 has 64 hexadecimal digits.');
+const sha256 = z
+  .string({ error: (issue) => `A SHA-256 must be text; ${arrived(issue.input)} arrived.` })
+  .regex(/^[0-9a-f]{64}$/, 'A SHA-256 has 64 hexadecimal digits.');
 /** The last state of a finished run, to start from. */
-export const startStateSchema = z.strictObject({
+export const startStateSchema = fields('A start from a state', {
   kind: z.literal('state'),
   runId: z.uuid('The run that the state comes from is named by its id.'),
   fingerprint: sha256,
   stateSha256: sha256,
-  startStep: z.number().int().min(0),
+  startStep: z
+    .int({ error: (issue) => `The step of the state must be a whole number; ${arrived(issue.input)} arrived.` })
+    .min(0, { error: (issue) => `The step of the state must be 0 or more; ${arrived(issue.input)} arrived.` }),
   stepsPerDay: quantity('stepsPerDay'),
 });
 
-export const startSchema = z.discriminatedUnion('kind', [
-  z.strictObject({ kind: z.literal('rest') }),
-  z.strictObject({
-    kind: z.literal('bump'),
-    amplitudeM: quantity('startAmplitude'),
-    longitudeDeg: quantity('longitude'),
-    latitudeDeg: quantity('latitude'),
-    widthLongitudeDeg: quantity('startLength'),
-    widthLatitudeDeg: quantity('startLength'),
-  }),
-  z.strictObject({
-    kind: z.literal('step'),
-    amplitudeM: quantity('startAmplitude'),
-    latitudeDeg: quantity('latitude'),
-  }),
-  z.strictObject({
-    kind: z.literal('mode'),
-    mode: z.enum(['kelvin', 'rossby1', 'rossby2', 'mixedWest', 'mixedEast', 'gravity1West', 'gravity1East']),
-    amplitudeM: quantity('startAmplitude'),
-    wavelengthDeg: quantity('startLength'),
-    crestLongitudeDeg: quantity('longitude'),
-  }),
-  startStateSchema,
-]);
+export const startSchema = z.discriminatedUnion(
+  'kind',
+  [
+    fields('A start from rest', { kind: z.literal('rest') }),
+    fields('A start from a bump', {
+      kind: z.literal('bump'),
+      amplitudeM: quantity('startAmplitude'),
+      longitudeDeg: quantity('longitude'),
+      latitudeDeg: quantity('latitude'),
+      widthLongitudeDeg: quantity('startLength'),
+      widthLatitudeDeg: quantity('startLength'),
+    }),
+    fields('A start from a step', {
+      kind: z.literal('step'),
+      amplitudeM: quantity('startAmplitude'),
+      latitudeDeg: quantity('latitude'),
+    }),
+    fields('A start from a wave', {
+      kind: z.literal('mode'),
+      mode: choice('The wave', [
+        'kelvin',
+        'rossby1',
+        'rossby2',
+        'mixedWest',
+        'mixedEast',
+        'gravity1West',
+        'gravity1East',
+      ]),
+      amplitudeM: quantity('startAmplitude'),
+      wavelengthDeg: quantity('startLength'),
+      crestLongitudeDeg: quantity('longitude'),
+    }),
+    startStateSchema,
+  ],
+  { error: kindError('the start', ['rest', 'bump', 'step', 'mode', 'state']) },
+);
 
-export const frictionSchema = z.strictObject({
+export const frictionSchema = fields('The part “friction”', {
   rayleighPerS: quantity('rayleigh'),
   viscosityM2S: quantity('viscosity'),
-  slip: z.enum(['free', 'none']),
+  slip: choice('The slip', ['free', 'none']),
 });
 
-export const numericsSchema = z.strictObject({
-  equations: z.literal('linear'),
+export const numericsSchema = fields('The part “numerics”', {
+  equations: z.literal('linear', {
+    error: (issue) => `The equations must be linear; ${arrived(issue.input)} arrived.`,
+  }),
   spacingLongitudeDeg: quantity('spacing'),
   spacingLatitudeDeg: quantity('spacing'),
   stepsPerDay: quantity('stepsPerDay'),
 });
 
-export const outputSchema = z.strictObject({
-  sections: z
-    .array(
-      z.strictObject({
-        name: name.min(1, 'A section needs a name.'),
-        along: z.enum(['latitude', 'longitude']),
-        atDeg: quantity('longitude'),
-      }),
-    )
-    .max(LIMITS.sections.max, `At most ${LIMITS.sections.max} sections.`),
-  moorings: z
-    .array(
-      z.strictObject({
-        name: name.min(1, 'A mooring needs a name.'),
-        longitudeDeg: quantity('longitude'),
-        latitudeDeg: quantity('latitude'),
-      }),
-    )
-    .max(LIMITS.moorings.max, `At most ${LIMITS.moorings.max} moorings.`),
+export const outputSchema = fields('The part “output”', {
+  sections: list(
+    'Sections',
+    fields('A section', {
+      name: name('A section needs a name.'),
+      along: choice('The direction of a section', ['latitude', 'longitude']),
+      atDeg: quantity('longitude'),
+    }),
+    LIMITS.sections.max,
+  ),
+  moorings: list(
+    'Moorings',
+    fields('A mooring', {
+      name: name('A mooring needs a name.'),
+      longitudeDeg: quantity('longitude'),
+      latitudeDeg: quantity('latitude'),
+    }),
+    LIMITS.moorings.max,
+  ),
   frameIntervalDays: quantity('outputInterval'),
   sectionIntervalDays: quantity('outputInterval'),
   mooringIntervalDays: quantity('outputInterval'),
 });
 
 /** A setup as it crosses the wire. What single fields cannot say (stability, resolution, size) is preflight's. */
-export const setupSchema = z
-  .strictObject({
-    schemaVersion: z.literal(1),
-    constants: constantsSchema,
-    basin: basinSchema,
-    layer: layerSchema,
-    wind: windSchema,
-    start: startSchema,
-    friction: frictionSchema,
-    numerics: numericsSchema,
-    length: z.strictObject({ days: quantity('lengthDays') }),
-    output: outputSchema,
-  })
+export const setupSchema = fields('A setup', {
+  schemaVersion: z.literal(1, {
+    error: (issue) => `The version of the setup format must be 1; ${arrived(issue.input)} arrived.`,
+  }),
+  constants: constantsSchema,
+  basin: basinSchema,
+  layer: layerSchema,
+  wind: windSchema,
+  start: startSchema,
+  friction: frictionSchema,
+  numerics: numericsSchema,
+  length: fields('The part “length”', { days: quantity('lengthDays') }),
+  output: outputSchema,
+})
   .superRefine((setup, context) => {
     const { basin, output } = setup;
-    const longitude = (degrees: number) => degrees >= basin.westDeg && degrees <= basin.eastDeg;
-    const latitude = (degrees: number) => degrees >= basin.southDeg && degrees <= basin.northDeg;
-    const inside = 'must lie inside the basin';
-    output.sections.forEach((section, k) => {
-      const ok = section.along === 'latitude' ? latitude(section.atDeg) : longitude(section.atDeg);
-      if (!ok)
-        context.addIssue({
-          code: 'custom',
-          path: ['output', 'sections', k, 'atDeg'],
-          message: `The section “${section.name}” ${inside}.`,
-        });
-    });
-    output.moorings.forEach((mooring, k) => {
-      if (!longitude(mooring.longitudeDeg))
-        context.addIssue({
-          code: 'custom',
-          path: ['output', 'moorings', k, 'longitudeDeg'],
-          message: `The mooring “${mooring.name}” ${inside}.`,
-        });
-      if (!latitude(mooring.latitudeDeg))
-        context.addIssue({
-          code: 'custom',
-          path: ['output', 'moorings', k, 'latitudeDeg'],
-          message: `The mooring “${mooring.name}” ${inside}.`,
-        });
+    const within = (what: string, path: PropertyKey[], degrees: number, edges: [number, number]) => {
+      // Edges the wrong way round have their own message; every place would be outside of them.
+      if (!(edges[1] > edges[0]) || (degrees >= edges[0] && degrees <= edges[1])) return;
+      const [low, high] = edges.map(arrived);
+      const message = `${what} must lie inside the basin, between ${low} and ${high}°; ${arrived(degrees)}° arrived.`;
+      context.addIssue({ code: 'custom', path, message });
+    };
+    const longitudes: [number, number] = [basin.westDeg, basin.eastDeg];
+    const latitudes: [number, number] = [basin.southDeg, basin.northDeg];
+    output.sections.forEach(({ name, along, atDeg }, k) =>
+      within(
+        `The section “${name}”`,
+        ['output', 'sections', k, 'atDeg'],
+        atDeg,
+        along === 'latitude' ? latitudes : longitudes,
+      ),
+    );
+    output.moorings.forEach(({ name, longitudeDeg, latitudeDeg }, k) => {
+      within(`The mooring “${name}”`, ['output', 'moorings', k, 'longitudeDeg'], longitudeDeg, longitudes);
+      within(`The mooring “${name}”`, ['output', 'moorings', k, 'latitudeDeg'], latitudeDeg, latitudes);
     });
     for (const key of ['frameIntervalDays', 'sectionIntervalDays', 'mooringIntervalDays'] as const)
       if (output[key] > setup.length.days)
@@ -291,14 +301,14 @@ export const setupSchema = z
           path: ['output', key],
           message: `The interval must not be longer than the run (${setup.length.days} d); ${output[key]} d arrived.`,
         });
-    for (const list of ['sections', 'moorings'] as const) {
-      const names = output[list].map((item) => item.name);
+    for (const stream of ['sections', 'moorings'] as const) {
+      const names = output[stream].map((item) => item.name);
       names.forEach((text, k) => {
         if (names.indexOf(text) !== k)
           context.addIssue({
             code: 'custom',
-            path: ['output', list, k, 'name'],
-            message: `Another one is called “${text}” already.`,
+            path: ['output', stream, k, 'name'],
+            message: `Another one is called “${text}” already; use a name of its own.`,
           });
       });
     }

@@ -58,14 +58,14 @@ it('has the very cells of the core’s land mask, for any coast and islands', ()
       }
       const { nx, ny, mask, wetCells } = buildGrid(setup);
       const own = Uint8Array.from({ length: nx * ny }, (_, k) => (land.isWet(k % nx, Math.floor(k / nx)) ? 1 : 0));
-      expect(own).toEqual(mask);
+      expect(own.every((value, k) => value === mask[k]) && own.length === mask.length).toBe(true);
       expect(land.wetCells()).toBe(wetCells);
       compared++;
     }),
     { numRuns: 150 },
   );
   expect(compared).toBeGreaterThan(75);
-});
+}, 60_000);
 
 it('finds water on the lines of sections, and moorings, where the core does', () => {
   fc.assert(
@@ -90,7 +90,7 @@ it('finds water on the lines of sections, and moorings, where the core does', ()
     }),
     { numRuns: 150 },
   );
-});
+}, 60_000);
 
 it('finds the nearest water cell', () => {
   fc.assert(
@@ -112,4 +112,4 @@ it('finds the nearest water cell', () => {
     }),
     { numRuns: 100 },
   );
-});
+}, 60_000);

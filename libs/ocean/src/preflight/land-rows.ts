@@ -5,6 +5,7 @@ import type { Basin, Island } from '../setup';
 
 /** Rows of an oversize grid that are looked at. */
 const SAMPLED_ROWS = 500;
+const SEARCHED_ROWS = 1000;
 
 /** Columns [from, to) of a row. */
 type Span = [number, number];
@@ -20,18 +21,27 @@ interface PlacedIsland {
 
 /**
  * Land and water of a snapped grid, row by row as spans: the same cells as `landMask`, without an array of them.
- * A row costs one pass over the islands that it meets; rows are kept once asked for.
+ * A row costs one pass over the islands that it meets.
  */
 export class LandRows {
   readonly #basin: Basin;
   readonly #layout: GridLayout;
-  readonly #rows = new Map<number, Span[]>();
   readonly #islands: PlacedIsland[];
+  readonly #columns: Axis;
+  readonly #rows: Axis;
   #wet: number | null = null;
 
   constructor(basin: Basin, layout: GridLayout) {
     this.#basin = basin;
     this.#layout = layout;
+    const { zonal, meridional } = layout;
+    // Lines as the grid has them, so that a place between two cells falls to the same one.
+    const row = (j: number) =>
+      meridional.equatorRow === null
+        ? meridional.start + j * meridional.spacing
+        : (j - meridional.equatorRow) * meridional.spacing;
+    this.#columns = axisOf((i) => zonal.start + i * zonal.spacing, layout.nx);
+    this.#rows = axisOf(row, layout.ny);
     this.#islands = basin.islands.map((island) => ({
       ...boundsOf(island),
       crossings: island.kind === 'polygon' ? this.#crossingsOf(island.points) : null,
@@ -60,8 +70,7 @@ export class LandRows {
     const { nx, ny } = this.#layout;
     if (j < 0 || j >= ny) return false;
     const k = this.#basin.zonallyPeriodic ? ((i % nx) + nx) % nx : i;
-    if (k < 0 || k >= nx) return false;
-    return !this.#landOf(j).some(([from, to]) => k >= from && k < to);
+    return k >= 0 && k < nx && !this.#isLand(k, j);
   }
 
   /** True when any v point of the row between cell rows j − 1 and j lies between two water cells. */
@@ -81,18 +90,23 @@ export class LandRows {
 
   /** The cell that holds a place, as moorings snap; null outside. */
   cellAt(longitudeDeg: number, latitudeDeg: number): { i: number; j: number } | null {
-    const { zonal, meridional } = this.#layout;
-    const i = cellOf(zonal, longitudeDeg);
-    const j = cellOf(meridional, latitudeDeg);
+    const i = cellOf(this.#columns, longitudeDeg);
+    const j = cellOf(this.#rows, latitudeDeg);
     return i < 0 || j < 0 ? null : { i, j };
   }
 
-  /** The water cell nearest to a cell, distances in metres of dx and dy; null when all is land. */
+  /** The row of v points, or the column of u points, to which a section snaps. */
+  lineOf(along: 'latitude' | 'longitude', atDeg: number): number {
+    const { first, spacing, cells } = along === 'latitude' ? this.#rows : this.#columns;
+    return Math.min(Math.max(Math.round((atDeg - first) / spacing), 0), cells);
+  }
+
+  /** The water cell nearest to a cell, dx and dy in any one unit; null when there is none in a thousand rows. */
   nearestWater(i: number, j: number, dx: number, dy: number): { i: number; j: number } | null {
     const { nx, ny } = this.#layout;
     let best: { i: number; j: number } | null = null;
     let shortest = Infinity;
-    for (let away = 0; away < ny && away * dy < shortest; away++)
+    for (let away = 0; away < Math.min(ny, SEARCHED_ROWS) && away * dy < shortest; away++)
       for (const row of away === 0 ? [j] : [j - away, j + away]) {
         if (row < 0 || row >= ny) continue;
         for (const [from, to] of complement(this.#landOf(row), nx)) {
@@ -113,9 +127,19 @@ export class LandRows {
     return equatorRow === null ? start + (j + 0.5) * spacing : (j + 0.5 - equatorRow) * spacing;
   }
 
+  /** Land or not of one cell, for walks along a column. */
+  #isLand(i: number, j: number): boolean {
+    if (!this.hasLand) return false;
+    const longitude = this.longitudeOf(i);
+    const latitude = this.latitudeOf(j);
+    if (this.#basin.westernCoast.kind === 'slanting' && longitude < coastLongitude(this.#basin, latitude)) return true;
+    return this.#islands.some(({ west, east, south, north, crossings }) => {
+      if (latitude < south || latitude > north || longitude < west || longitude > east) return false;
+      return crossings === null || (crossings.get(j) ?? []).filter((crossing) => longitude < crossing).length % 2 === 1;
+    });
+  }
+
   #landOf(j: number): Span[] {
-    const known = this.#rows.get(j);
-    if (known) return known;
     const { nx } = this.#layout;
     const latitude = this.latitudeOf(j);
     const spans: Span[] = [];
@@ -129,9 +153,7 @@ export class LandRows {
         for (const [from, to] of twoByTwo(crossings.get(j) ?? []))
           spans.push([Math.max(first, this.#firstNotWestOf(from)), Math.min(last, this.#firstNotWestOf(to))]);
     }
-    const row = merged(spans.map(([from, to]): Span => [Math.max(0, from), Math.min(nx, to)]));
-    this.#rows.set(j, row);
-    return row;
+    return merged(spans.map(([from, to]): Span => [Math.max(0, from), Math.min(nx, to)]));
   }
 
   /** Where the edges of a ring cross the rows of cell centres; each edge looks only at the rows that it spans. */
@@ -195,6 +217,7 @@ function boundsOf(island: Island): Omit<PlacedIsland, 'crossings'> {
 
 /** Sorted, without overlaps, without empty spans. */
 function merged(spans: Span[]): Span[] {
+  if (spans.length === 1) return spans[0][1] > spans[0][0] ? spans : [];
   const out: Span[] = [];
   for (const [from, to] of spans.filter(([a, b]) => b > a).sort((a, b) => a[0] - b[0])) {
     const last = out[out.length - 1];
@@ -216,11 +239,22 @@ function complement(spans: Span[], n: number): Span[] {
   return out;
 }
 
+/** First and last line of points of an axis, their spacing, and the number of cells between them. */
+interface Axis {
+  first: number;
+  last: number;
+  spacing: number;
+  cells: number;
+}
+
+function axisOf(line: (index: number) => number, cells: number): Axis {
+  return { first: line(0), last: line(cells), spacing: line(1) - line(0), cells };
+}
+
 /** Cell that holds a coordinate; half a cell beyond either edge belongs to the edge cell, as for moorings. */
-function cellOf(axis: { start: number; spacing: number; cells: number }, degrees: number): number {
-  const { start, spacing, cells } = axis;
-  const index = Math.floor((degrees - start) / spacing);
-  if (index === -1 && degrees > start - spacing / 2) return 0;
-  if (index === cells && degrees <= start + (cells + 0.5) * spacing) return cells - 1;
+function cellOf({ first, last, spacing, cells }: Axis, degrees: number): number {
+  const index = Math.floor((degrees - first) / spacing);
+  if (index === -1 && degrees > first - spacing / 2) return 0;
+  if (index === cells && degrees <= last + spacing / 2) return cells - 1;
   return index >= 0 && index < cells ? index : -1;
 }

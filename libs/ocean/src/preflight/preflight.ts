@@ -4,7 +4,7 @@ import { costOf } from './cost';
 import { derivedNumbers } from './derived';
 import type { Case, Draft, Rule } from './draft';
 import { LandRows } from './land-rows';
-import { applyRemedy } from './remedies';
+import { applyRemedy, withinLimits } from './remedies';
 import * as resolution from './rules/resolution';
 import * as length from './rules/season-and-length';
 import * as size from './rules/size';
@@ -98,7 +98,7 @@ function firstThatCures(
 ): Remedy | null {
   let second: Remedy | null = null;
   for (const remedy of remedies) {
-    if (remedy.changes.length === 0) continue;
+    if (remedy.changes.length === 0 || !withinLimits(remedy)) continue;
     const after = draftsOf(caseOf(applyRemedy(given.setup, remedy), given.context, given));
     const now = after.find(({ id }) => id === row.id)?.verdict ?? 'pass';
     const worse = after.filter(({ id, verdict }) => RANK[verdict] < RANK[verdictIn(before, id)]);

@@ -23,6 +23,26 @@ function withValue<T>(holder: T, path: readonly string[], value: unknown): T {
   return copy as T;
 }
 
+const RANGES: Record<string, { min: number; max: number }> = {
+  '/numerics/stepsPerDay': LIMITS.stepsPerDay,
+  '/numerics/spacingLongitudeDeg': LIMITS.spacing,
+  '/numerics/spacingLatitudeDeg': LIMITS.spacing,
+  '/friction/viscosityM2S': LIMITS.viscosity,
+  '/friction/rayleighPerS': LIMITS.rayleigh,
+  '/length/days': LIMITS.lengthDays,
+  '/basin/southDeg': LIMITS.latitude,
+  '/basin/northDeg': LIMITS.latitude,
+  '/start/wavelengthDeg': LIMITS.startLength,
+};
+
+/** True when every changed field stays inside its hard limit. */
+export function withinLimits({ changes }: Remedy): boolean {
+  return changes.every(({ pointer, value }) => {
+    const range = RANGES[pointer] as { min: number; max: number } | undefined;
+    return range === undefined || typeof value !== 'number' || (value >= range.min && value <= range.max);
+  });
+}
+
 /** Adds the proposed steps a day to changes that would make the present step too long. */
 export function withFittingSteps(setup: Setup, remedy: Remedy): Remedy {
   const { rates } = scalesOf(applyRemedy(setup, remedy));
@@ -109,9 +129,9 @@ export function roundedDown(value: number): number {
 
 function roundedToTwo(value: number, round: (x: number) => number): number {
   if (value === 0) return 0;
-  const power = Math.floor(Math.log10(Math.abs(value))) - 1;
-  // Divided by a whole power of ten where that is below one: 0.3 comes out as 0.3.
-  return power < 0 ? round(value * 10 ** -power) / 10 ** -power : round(value / 10 ** power) * 10 ** power;
+  // By its decimal text, which reaches down to the smallest numbers and reads back as written.
+  const [mantissa, exponent] = value.toExponential(12).split('e');
+  return Number(`${round(Number((Number(mantissa) * 10).toPrecision(12))) / 10}e${exponent}`);
 }
 
 export function upTo(value: number, max: number): number {

@@ -51,12 +51,12 @@ export function proposedSteps(rates: StepRates): number {
   const byBoth = 2 / (b + Math.sqrt(b * b + 4 * a));
   const longest = Math.min(byGravity, byRotation, byBoth);
   let n = Math.max(4, 4 * Math.ceil(SECONDS_PER_DAY / longest / 4));
-  while (n > 4 && fits(rates, n - 4, longest)) n -= 4;
-  while (!fits(rates, n, longest)) n += 4;
+  // The quotient may be off by a rounding error either way.
+  if (n > 4 && fits(rates, n - 4, longest)) n -= 4;
+  else if (!fits(rates, n, longest)) n += 4;
   return n;
 }
 
-/** The quotient above may be off by a rounding error either way. */
 function fits(rates: StepRates, n: number, longest: number): boolean {
   return SECONDS_PER_DAY / n <= longest * (1 + 1e-12) && stepPasses(rates, n);
 }

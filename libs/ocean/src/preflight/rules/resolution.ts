@@ -1,5 +1,4 @@
 import { readable, readableLatitude } from '../../describe/numbers';
-import { LIMITS } from '../../limits';
 import type { Remedy } from '../../preflight-types';
 import { ratioOfMaximum, ratioOfMinimum, verdictOf, type Case, type Rule } from '../draft';
 import { finerCells, roundedUp, withFittingSteps } from '../remedies';
@@ -90,22 +89,14 @@ export const wallLayer: Rule = ({ setup, scales }) => {
       const viscosity = roundedUp((2 * dx) ** 3 * beta);
       const drag = roundedUp(beta * dx);
       return [
-        ...(viscosity <= LIMITS.viscosity.max
-          ? [
-              withFittingSteps(setup, {
-                label: `Use ${readable(viscosity, 6)} m²/s`,
-                changes: [{ pointer: '/friction/viscosityM2S', value: viscosity }],
-              }),
-            ]
-          : []),
-        ...(drag <= LIMITS.rayleigh.max
-          ? [
-              {
-                label: `Use a drag of ${readable(drag)} 1/s`,
-                changes: [{ pointer: '/friction/rayleighPerS', value: drag }],
-              },
-            ]
-          : []),
+        withFittingSteps(setup, {
+          label: `Use ${readable(viscosity, 6)} m²/s`,
+          changes: [{ pointer: '/friction/viscosityM2S', value: viscosity }],
+        }),
+        {
+          label: `Use a drag of ${readable(drag)} 1/s`,
+          changes: [{ pointer: '/friction/rayleighPerS', value: drag }],
+        },
       ];
     },
   };
@@ -159,8 +150,7 @@ function fartherWalls({ setup, scales }: Pick<Case, 'setup' | 'scales'>): Remedy
       : [{ pointer: '/basin/referenceLatitudeDeg', value: reference }]),
   ];
   const edges = changes.filter(({ pointer }) => !pointer.includes('reference'));
-  const { min, max } = LIMITS.latitude;
-  if (edges.length === 0 || edges.some(({ value }) => value < min || value > max)) return [];
+  if (edges.length === 0) return [];
   const words = edges.map(({ value }) => readableLatitude(value)).join(' and ');
   return [withFittingSteps(setup, { label: `Move to ${words}`, changes })];
 }

@@ -4,6 +4,7 @@ import { LIMITS } from '../../limits';
 import type { Remedy } from '../../preflight-types';
 import type { Setup, WindComponent } from '../../setup';
 import { ratioOfMaximum, ratioOfMinimum, verdictOf, NO_CURE, type Rule } from '../draft';
+import { roundedDown } from '../remedies';
 import { polewardWords } from './resolution';
 
 const THINNING_LIMIT = 0.25;
@@ -40,9 +41,9 @@ export const thinning: Rule = ({ setup, wind: estimate, startThinning: start }) 
   };
 };
 
-/** Scales the wind, the start, or both, to the limit, rounded down to two digits. */
+/** Scales the wind, the start, or both, to the limit; the factor is rounded down to two digits. */
 function weaker(setup: Setup, wind: number, start: number): Remedy[] {
-  const factor = (found: number) => Math.floor((THINNING_LIMIT / found) * 100) / 100;
+  const factor = (found: number) => roundedDown(THINNING_LIMIT / found);
   const scaled = (value: number, by: number) => Number((value * by).toPrecision(12));
   const changes: Remedy['changes'] = [];
   const words: string[] = [];

@@ -1,6 +1,6 @@
 import { readable, readableLatitude, readableLongitude } from '../../describe/numbers';
-import { LIMITS } from '../../limits';
 import type { Remedy } from '../../preflight-types';
+import type { Basin } from '../../setup';
 import { NO_CURE, ratioOfMaximum, type Case, type Rule } from '../draft';
 
 /** A wave mode needs the equatorial plane. */
@@ -46,7 +46,6 @@ export const wholeWaves: Rule = ({ setup, scales }) => {
     cures: () =>
       [nearest, nearest + 1]
         .map((count) => Number((extent / count).toPrecision(12)))
-        .filter((value) => value >= LIMITS.startLength.min && value <= LIMITS.startLength.max)
         .map((value) => ({
           label: `Use ${readable(value, 5)}°`,
           changes: [{ pointer: '/start/wavelengthDeg', value }],
@@ -128,10 +127,9 @@ export const sectionsOnLand: Rule = (of) => {
   };
 };
 
-function sectionHasWater({ setup, scales, land }: Case, k: number): boolean {
+function sectionHasWater({ setup, land }: Case, k: number): boolean {
   const { along, atDeg } = setup.output.sections[k];
-  const { start, spacing, cells } = along === 'latitude' ? scales.layout.meridional : scales.layout.zonal;
-  const line = Math.min(Math.max(Math.round((atDeg - start) / spacing), 0), cells);
+  const line = land.lineOf(along, atDeg);
   return along === 'latitude' ? land.rowHasWater(line) : land.columnHasWater(line);
 }
 
@@ -162,7 +160,7 @@ export const mooringsOnLand: Rule = ({ setup, scales, land }) => {
     cures: (): Remedy[] => {
       const moves = dry.flatMap(({ k, cell }) => {
         const water = cell && land.nearestWater(cell.i, cell.j, scales.dx, scales.dy);
-        return water ? [{ k, at: placeIn(land, water.i, water.j) }] : [];
+        return water ? [{ k, at: placeIn(land, setup.basin, water.i, water.j) }] : [];
       });
       if (moves.length === 0) return [];
       const [first] = moves;
@@ -180,13 +178,16 @@ export const mooringsOnLand: Rule = ({ setup, scales, land }) => {
   };
 };
 
-/** The centre of a cell, with as few decimals as still lie in it. */
-function placeIn(land: Case['land'], i: number, j: number): { longitude: number; latitude: number } {
-  const [x, y] = [land.longitudeOf(i), land.latitudeOf(j)];
+/** A place in a cell and in the basin: its centre, with as few decimals as still lie in it. */
+function placeIn(land: Case['land'], basin: Basin, i: number, j: number): { longitude: number; latitude: number } {
+  const within = (value: number, low: number, high: number) => Math.min(Math.max(value, low), high);
+  const longitude = within(land.longitudeOf(i), basin.westDeg, basin.eastDeg);
+  const latitude = within(land.latitudeOf(j), basin.southDeg, basin.northDeg);
   for (let decimals = 2; decimals < 9; decimals++) {
-    const [longitude, latitude] = [Number(x.toFixed(decimals)), Number(y.toFixed(decimals))];
-    const cell = land.cellAt(longitude, latitude);
-    if (cell?.i === i && cell.j === j) return { longitude, latitude };
+    const [x, y] = [Number(longitude.toFixed(decimals)), Number(latitude.toFixed(decimals))];
+    const cell = land.cellAt(x, y);
+    const inBasin = x >= basin.westDeg && x <= basin.eastDeg && y >= basin.southDeg && y <= basin.northDeg;
+    if (inBasin && cell?.i === i && cell.j === j) return { longitude: x, latitude: y };
   }
-  return { longitude: x, latitude: y };
+  return { longitude, latitude };
 }

@@ -1,0 +1,263 @@
+import { describe, expect, it } from 'vitest';
+import { corvaneSetup, LIMITS, PRESETS, type Setup } from '@halfdeep/ocean';
+import { setupSchema } from './setup-schema';
+
+/** A setup with one thing made wrong; `any`, since wrong types are the point. */
+// eslint-disable-next-line @typescript-eslint/no-explicit-any
+const wrong = (change: (setup: any) => void): unknown => {
+  const setup = corvaneSetup();
+  change(setup);
+  return setup;
+};
+const problems = (input: unknown): string[] => {
+  const parsed = setupSchema.safeParse(input);
+  return parsed.success ? [] : parsed.error.issues.map(({ path, message }) => `/${path.join('/')} ${message}`);
+};
+
+describe('the setup schema', () => {
+  it.each(PRESETS.map(({ id, setup }) => [id, setup] as const))(
+    'accepts %s and gives it back unchanged',
+    (_, setup) => {
+      expect(setupSchema.parse(setup)).toEqual(setup);
+      expect(setupSchema.parse(JSON.parse(JSON.stringify(setup)))).toEqual(setup);
+    },
+  );
+
+  it('accepts every limit and refuses what lies beyond it', () => {
+    const fields: [keyof typeof LIMITS, (setup: Setup, value: number) => void][] = [
+      ['reducedGravity', (setup, value) => (setup.layer.reducedGravityMS2 = value)],
+      ['restThickness', (setup, value) => (setup.layer.restThicknessM = value)],
+      ['damping', (setup, value) => (setup.layer.dampingPerS = value)],
+      ['temperatureStep', (setup, value) => (setup.layer.temperatureStepK = value)],
+      ['rayleigh', (setup, value) => (setup.friction.rayleighPerS = value)],
+      ['viscosity', (setup, value) => (setup.friction.viscosityM2S = value)],
+      ['seasonalStrength', (setup, value) => (setup.wind.seasonalStrength = value)],
+      ['spacing', (setup, value) => (setup.numerics.spacingLatitudeDeg = value)],
+      ['stepsPerDay', (setup, value) => (setup.numerics.stepsPerDay = value)],
+      ['peakDay', (setup, value) => (setup.wind.components[2].season.annual.peakDay = value)],
+      ['density', (setup, value) => (setup.constants.densityKgM3 = value)],
+    ];
+    for (const [name, write] of fields) {
+      const { min, max, label } = LIMITS[name];
+      const at = (value: number) => problems(wrong((setup: Setup) => write(setup, value)));
+      expect([...at(min), ...at(max)]).toEqual([]);
+      const step = Math.max(1e-6, (max - min) / 1000);
+      expect(at(max + step)[0]).toContain(`${label} must be between`);
+      expect(at(min - step)[0]).toContain(`${label} must be between`);
+    }
+  });
+
+  // What is wrong, what arrived, what would be right; and where.
+  it.each([
+    [
+      'NaN',
+      (s) => (s.layer.restThicknessM = NaN),
+      '/layer/restThicknessM Thickness at rest must be between 10 and 5000 m; NaN arrived.',
+    ],
+    [
+      'a text',
+      (s) => (s.layer.restThicknessM = '200'),
+      '/layer/restThicknessM Thickness at rest must be between 10 and 5000 m; "200" arrived.',
+    ],
+    [
+      'an empty field',
+      (s) => (s.layer.restThicknessM = null),
+      '/layer/restThicknessM Thickness at rest must be between 10 and 5000 m; nothing arrived.',
+    ],
+    [
+      'a missing field',
+      (s) => delete s.layer.restThicknessM,
+      '/layer/restThicknessM Thickness at rest must be between 10 and 5000 m; nothing arrived.',
+    ],
+    [
+      'too little',
+      (s) => (s.layer.restThicknessM = 5),
+      '/layer/restThicknessM Thickness at rest must be between 10 and 5000 m; 5 arrived.',
+    ],
+    [
+      'below zero',
+      (s) => (s.friction.viscosityM2S = -1),
+      '/friction/viscosityM2S Laplacian viscosity must be between 0 and 1000000 m²/s; −1 arrived.',
+    ],
+    [
+      'infinity',
+      (s) => (s.friction.viscosityM2S = Infinity),
+      '/friction/viscosityM2S Laplacian viscosity must be between 0 and 1000000 m²/s; Infinity arrived.',
+    ],
+    [
+      'odd steps',
+      (s) => (s.numerics.stepsPerDay = 18),
+      '/numerics/stepsPerDay Steps a day must be a multiple of 4; 18 arrived.',
+    ],
+    [
+      'an unknown plane',
+      (s) => (s.basin.geometry = 'sphere'),
+      '/basin/geometry The geometry must be one of equatorial, midlatitude, fplane; "sphere" arrived.',
+    ],
+    [
+      'an unknown wind',
+      (s) => (s.wind.components[1].pattern.kind = 'gust'),
+      '/wind/components/1/pattern/kind The kind of the wind pattern must be one of uniform, zonalBelt, gaussianPatch, linearShear; "gust" arrived.',
+    ],
+    [
+      'an unknown start',
+      (s) => (s.start = { kind: 'warm' }),
+      '/start/kind The kind of the start must be one of rest, bump, step, mode, state; "warm" arrived.',
+    ],
+    [
+      'a start without kind',
+      (s) => (s.start = {}),
+      '/start/kind The kind of the start must be one of rest, bump, step, mode, state; nothing arrived.',
+    ],
+    [
+      'an unknown field',
+      (s) => (s.friction.colour = 1),
+      '/friction The part “friction” has no field “colour”; it has rayleighPerS, viscosityM2S, slip.',
+    ],
+    [
+      'a missing part',
+      (s) => delete s.friction,
+      '/friction The part “friction” must be an object with rayleighPerS, viscosityM2S, slip; nothing arrived.',
+    ],
+    [
+      'another version',
+      (s) => (s.schemaVersion = 2),
+      '/schemaVersion The version of the setup format must be 1; 2 arrived.',
+    ],
+    [
+      'no truth value',
+      (s) => (s.basin.zonallyPeriodic = 'yes'),
+      '/basin/zonallyPeriodic Zonally periodic must be true or false; "yes" arrived.',
+    ],
+    [
+      'a number for a name',
+      (s) => (s.wind.components[0].name = 7),
+      '/wind/components/0/name A name must be text; 7 arrived.',
+    ],
+    [
+      'a long name',
+      (s) => (s.wind.components[0].name = 'x'.repeat(61)),
+      '/wind/components/0/name A name has at most 60 characters.',
+    ],
+    ['no list', (s) => (s.output.sections = 'N 10'), '/output/sections Sections must be a list; "N 10" arrived.'],
+    [
+      'too many',
+      (s) =>
+        (s.output.sections = Array.from({ length: 21 }, (_, k) => ({ name: `S${k}`, along: 'latitude', atDeg: 0 }))),
+      '/output/sections At most 20 sections; 21 arrived.',
+    ],
+    [
+      'a section without name',
+      (s) => (s.output.sections[0].name = '  '),
+      '/output/sections/0/name A section needs a name.',
+    ],
+    [
+      'a name twice',
+      (s) => (s.output.sections[1].name = 'N 10'),
+      '/output/sections/1/name Another one is called “N 10” already; use a name of its own.',
+    ],
+    [
+      'a section outside',
+      (s) => (s.output.sections[0].atDeg = 40),
+      '/output/sections/0/atDeg The section “N 10” must lie inside the basin, between −17.5 and 17.5°; 40° arrived.',
+    ],
+    [
+      'a mooring outside',
+      (s) => (s.output.moorings[0].longitudeDeg = -1),
+      '/output/moorings/0/longitudeDeg The mooring “West” must lie inside the basin, between 0 and 60°; −1° arrived.',
+    ],
+    [
+      'an interval off 6 hours',
+      (s) => (s.output.frameIntervalDays = 0.3),
+      '/output/frameIntervalDays Output interval must be a multiple of 0.25 d; 0.3 arrived.',
+    ],
+    [
+      'an interval beyond the run',
+      (s) => (s.length.days = 3),
+      '/output/frameIntervalDays The interval must not be longer than the run (3 d); 5 d arrived.',
+    ],
+    [
+      'edges the wrong way round',
+      (s) => (s.basin.northDeg = -20),
+      '/basin/northDeg The north edge must lie north of the south edge (−17.5° N); −20° N arrived.',
+    ],
+    [
+      'too wide',
+      (s) => (s.basin.westDeg = -360),
+      '/basin/eastDeg The zonal extent must be between 0.5 and 360°; 420° arrived. The east edge lies east of the west edge.',
+    ],
+    [
+      'a periodic slanting coast',
+      (s) => (s.basin.zonallyPeriodic = true),
+      '/basin/westernCoast/kind A zonally periodic basin has no western coast: choose a rectangular coast or a closed basin.',
+    ],
+    [
+      'an island inside out',
+      (s) => (s.basin.islands[0].eastDeg = 40),
+      '/basin/islands/0/eastDeg The island’s east edge must lie east of its west edge (40.5° E); 40° E arrived.',
+    ],
+    [
+      'a taper inside out',
+      (s) => (s.wind.components[2].pattern.zeroBeyondDeg = 10),
+      '/wind/components/2/pattern/zeroBeyondDeg The taper must end poleward of where it begins: “zero beyond” above “full within”.',
+    ],
+    [
+      'a polygon of two points',
+      (s) =>
+        (s.basin.islands = [
+          {
+            kind: 'polygon',
+            name: '',
+            points: [
+              [1, 2],
+              [3, 4],
+            ],
+          },
+        ]),
+      '/basin/islands/0/points A polygon needs three points or more.',
+    ],
+    [
+      'a point of one number',
+      (s) => (s.basin.islands = [{ kind: 'polygon', name: '', points: [[1, 2], [3], [5, 6]] }]),
+      '/basin/islands/0/points/1 A point is [longitude, latitude]; [3] arrived.',
+    ],
+    [
+      'a step before the first',
+      (s) =>
+        (s.start = {
+          kind: 'state',
+          runId: '0f0e7a52-32a8-4f0f-9d39-7f6a8f1d1c55',
+          fingerprint: 'a'.repeat(64),
+          stateSha256: 'b'.repeat(64),
+          startStep: -1,
+          stepsPerDay: 16,
+        }),
+      '/start/startStep The step of the state must be 0 or more; −1 arrived.',
+    ],
+    // eslint-disable-next-line @typescript-eslint/no-explicit-any
+  ] satisfies [string, (setup: any) => unknown, string][])('says what is wrong with %s', (_, change, message) => {
+    // prettier-ignore
+    expect(problems(wrong(change))).toEqual([message]);
+  });
+
+  it('names every wrong field at once', () => {
+    const found = problems(
+      wrong((setup: Setup) => {
+        setup.layer.restThicknessM = 1;
+        setup.friction.rayleighPerS = 1;
+        setup.basin.southDeg = -99;
+      }),
+    );
+    expect(found.map((text) => text.split(' ')[0])).toEqual([
+      '/basin/southDeg',
+      '/layer/restThicknessM',
+      '/friction/rayleighPerS',
+    ]);
+  });
+
+  it('trims names', () => {
+    const setup = corvaneSetup();
+    setup.basin.name = '  Corvane Basin ';
+    expect(setupSchema.parse(setup).basin.name).toBe('Corvane Basin');
+  });
+});
