@@ -1,0 +1,141 @@
+import { describe, expect, it } from 'vitest';
+import type { Basin, Setup } from '../setup';
+import { corvaneForCheck, smallSetup } from '../testing/setups';
+import { buildGrid } from './build-grid';
+import { isWet, planeGrid } from './grid';
+
+const base = smallSetup();
+const gridOf = (basin: Partial<Basin>, spacing = 0.5) =>
+  buildGrid({
+    ...base,
+    basin: { ...base.basin, islands: [], ...basin },
+    numerics: { ...base.numerics, spacingLongitudeDeg: spacing, spacingLatitudeDeg: spacing },
+  });
+
+describe('equatorial plane', () => {
+  it('has the equator exactly on a v row, f exactly 0 there and antisymmetric about it', () => {
+    for (const [south, north, spacing] of [
+      [-8, 8, 0.5],
+      [-17.5, 17.5, 0.25],
+      [-3.3, 9.1, 0.37],
+      [-10, 2.05, 0.3],
+      [-0.1, 5, 0.5],
+    ]) {
+      const grid = gridOf({ southDeg: south, northDeg: north }, spacing);
+      const row = grid.equatorRow ?? -1;
+      expect(grid.latFace[row]).toBe(0);
+      expect(grid.f[row]).toBe(0);
+      for (let k = 1; k <= Math.min(row, grid.ny - row); k++) expect(grid.f[row + k]).toBe(-grid.f[row - k]);
+      // Edges move by no more than half a cell, or to the one row that an edge off the equator keeps.
+      const dLat = grid.latFace[1] - grid.latFace[0];
+      expect(Math.abs(grid.latFace[0] - south)).toBeLessThanOrEqual(Math.max(dLat / 2, dLat - Math.abs(south)) + 1e-9);
+      expect(Math.abs(grid.latFace[grid.ny] - north)).toBeLessThanOrEqual(dLat / 2 + 1e-9);
+    }
+  });
+  it('says what it moved, and nothing when all fits', () => {
+    expect(gridOf({ southDeg: -8, northDeg: 8 }).notes).toEqual([]);
+    const { notes, latFace } = gridOf({ southDeg: -8.2, northDeg: 10 });
+    expect(notes).toHaveLength(1);
+    expect(notes[0]).toMatch(/South edge moved by 0.2° to −8°.*equator/);
+    expect(latFace[0]).toBe(-8);
+    expect(gridOf({ southDeg: -7, northDeg: 10.1 }).notes[0]).toMatch(
+      /Spacing in latitude changed from 0.5° to 0.505°/,
+    );
+  });
+  it('takes β = 2Ω/a from the constants, or as set by hand', () => {
+    expect(gridOf({}).beta).toBe((2 * 7.2921e-5) / 6.371e6);
+    expect(gridOf({ betaPerMS: 2e-11 }).beta).toBe(2e-11);
+  });
+  it('fills a basin off the equator from its edges', () => {
+    const grid = gridOf({ southDeg: 3, northDeg: 9 });
+    expect(grid.equatorRow).toBeNull();
+    expect(grid.f[0]).toBeCloseTo(grid.beta * 6.371e6 * (3 / 180) * Math.PI, 15);
+  });
+});
+
+describe('mid-latitude and f-plane', () => {
+  const f30 = 2 * 7.2921e-5 * 0.5;
+  it('take f0 and β at the reference latitude, and shrink x by its cosine', () => {
+    const grid = gridOf({ geometry: 'midlatitude', southDeg: 20, northDeg: 40 });
+    expect(grid.f[grid.ny / 2]).toBeCloseTo(f30, 15);
+    expect(grid.beta).toBeCloseTo(((2 * 7.2921e-5) / 6.371e6) * Math.cos(Math.PI / 6), 24);
+    expect(grid.dxC[0] / grid.dy).toBeCloseTo(Math.cos(Math.PI / 6), 12);
+    const south = gridOf({ geometry: 'midlatitude', southDeg: 20, northDeg: 40, referenceLatitudeDeg: 25 });
+    expect(south.f[south.ny / 2]).toBeGreaterThan(2 * 7.2921e-5 * Math.sin((25 * Math.PI) / 180));
+  });
+  it('an f-plane has one f, which may be set by hand', () => {
+    const own = gridOf({ geometry: 'fplane', southDeg: 20, northDeg: 40 });
+    expect(own.beta).toBe(0);
+    for (const f of own.f) expect(f).toBeCloseTo(f30, 15);
+    expect(gridOf({ geometry: 'fplane', southDeg: 20, northDeg: 40, f0PerS: -1e-4 }).f[3]).toBe(-1e-4);
+  });
+});
+
+describe('land', () => {
+  it('lies west of a slanting coast, by cell centres', () => {
+    const grid = buildGrid(corvaneForCheck());
+    expect([grid.nx, grid.ny, grid.notes]).toEqual([240, 140, []]);
+    for (let j = 0; j < grid.ny; j++) {
+      const coast = (6 * (grid.latCentre[j] + 17.5)) / 35;
+      for (let i = 0; i < 30; i++) expect(grid.mask[j * 240 + i]).toBe(grid.lonCentre[i] < coast ? 0 : 1);
+    }
+    // Tern-like island: 40.5–43.5° E, 6–8° S is 12 × 8 cells.
+    const island = [...grid.mask].filter((wet, k) => wet === 0 && k % 240 > 30).length;
+    expect(island).toBe(96);
+    expect(grid.wetCells).toBe(grid.mask.reduce((sum, wet) => sum + wet, 0));
+  });
+  it('takes polygons by the even-odd rule', () => {
+    const square: [number, number][] = [
+      [5, -2],
+      [9, -2],
+      [9, 2],
+      [5, 2],
+    ];
+    // A ring that winds around the same square and back around a smaller one leaves a lake.
+    const withLake: [number, number][] = [...square, [5, -2], [6, -1], [6, 1], [8, 1], [8, -1], [6, -1]];
+    const at = (ring: [number, number][], lon: number, lat: number) => {
+      const grid = gridOf({ islands: [{ kind: 'polygon', name: '', points: ring }] });
+      return grid.mask[Math.floor((lat + 8) / 0.5) * grid.nx + Math.floor(lon / 0.5)];
+    };
+    expect(at(square, 7.1, 0.1)).toBe(0);
+    expect(at(square, 4.1, 0.1)).toBe(1);
+    expect(at(withLake, 7.1, 0.1)).toBe(1);
+    expect(at(withLake, 5.1, 0.1)).toBe(0);
+  });
+  it('wraps on a periodic grid and not on a closed one', () => {
+    const [periodic, closed] = [true, false].map((zonallyPeriodic) => gridOf({ zonallyPeriodic }));
+    expect([isWet(periodic, -1, 3), isWet(closed, -1, 3)]).toEqual([true, false]);
+    expect(isWet(periodic, 3, -1)).toBe(false);
+  });
+});
+
+describe('refusals name the limit', () => {
+  const refuse = (change: (setup: Setup) => Setup, message: RegExp) =>
+    expect(() => buildGrid(change(structuredClone(base)))).toThrow(message);
+  it.each([
+    [
+      'too many cells',
+      { spacingLongitudeDeg: 0.006, spacingLatitudeDeg: 0.006 },
+      /at most 4000000 cells; this one would have 3333 × /,
+    ],
+    ['too few cells', { spacingLongitudeDeg: 6, spacingLatitudeDeg: 6 }, /at least 16 cells; this one would have 3 × /],
+    ['no spacing', { spacingLongitudeDeg: 0 }, /spacing in longitude must be a positive number of degrees; 0° arrived/],
+    ['not a number', { spacingLatitudeDeg: NaN }, /spacing in latitude .* NaN° arrived/],
+  ])('%s', (_name, numerics, message) => {
+    refuse((setup) => ({ ...setup, numerics: { ...setup.numerics, ...numerics } }), message);
+  });
+  it('edges the wrong way round, spacing in km, and a basin without water', () => {
+    refuse((setup) => ({ ...setup, basin: { ...setup.basin, eastDeg: -5 } }), /extent in longitude .* −?-?5° arrived/);
+    refuse(
+      (setup) => ({
+        ...setup,
+        constants: { ...setup.constants, earthRadiusM: 1e8 },
+        numerics: { ...setup.numerics, spacingLongitudeDeg: 1 },
+      }),
+      /zonal grid spacing must be between 0.5 and 600 km; 1745 km arrived/,
+    );
+    const everywhere = { kind: 'box', name: '', westDeg: -1, eastDeg: 21, southDeg: -9, northDeg: 9 } as const;
+    refuse((setup) => ({ ...setup, basin: { ...setup.basin, islands: [everywhere] } }), /cover every cell/);
+    expect(() => planeGrid({ nx: 0, ny: 3, dx: 1, dy: 1, f: () => 0 })).toThrow(/0, 3, 1, 1 arrived/);
+  });
+});
