@@ -1,4 +1,4 @@
-import { DOCUMENT } from '@angular/common';
+import { DOCUMENT, ViewportScroller } from '@angular/common';
 import {
   ChangeDetectionStrategy,
   Component,
@@ -12,7 +12,7 @@ import { RouterLink } from '@angular/router';
 import type { Verdict } from '@halfdeep/ocean';
 import { VerdictSign } from '../shared/verdict/verdict';
 import { SECTIONS, sectionOf, type SectionId } from './sections/section-ids';
-import { SetupDraft } from './setup-draft';
+import { placesOf, SetupDraft } from './setup-draft';
 
 /** The sections of the form in the margin, inked where one is, with the sign of what is refused or doubtful in each. */
 @Component({
@@ -71,7 +71,7 @@ export class SetupContents {
       }
     };
     for (const pointer of this.draft.problems().keys()) count([pointer], 'refuse');
-    for (const check of this.draft.preflight()?.checks ?? []) count(check.pointers, check.verdict);
+    for (const check of this.draft.preflight()?.checks ?? []) count(placesOf(check), check.verdict);
     return SECTIONS.map(({ id, title }) => {
       const { refuse, caution } = found.get(id) ?? { refuse: 0, caution: 0 };
       const verdict: Verdict = refuse > 0 ? 'refuse' : caution > 0 ? 'caution' : 'pass';
@@ -82,6 +82,10 @@ export class SetupContents {
 
   constructor() {
     const destroyed = inject(DestroyRef);
+    // The head covers the top of the page; the router's jump to a section stops below it.
+    const scroller = inject(ViewportScroller);
+    scroller.setOffset([0, 60]);
+    destroyed.onDestroy(() => scroller.setOffset([0, 0]));
     afterNextRender(() => {
       if (typeof IntersectionObserver === 'undefined') return;
       const observer = new IntersectionObserver(

@@ -134,11 +134,11 @@ export class SetupDraft {
     return this.changesByPointer().get(pointer) ?? null;
   }
 
-  /** The worst check that is about a field, passes left out. */
+  /** The worst check that is told at a field, passes left out. */
   check(pointer: string): Check | null {
     // Preflight sorts refusals before cautions before passes.
     return (
-      this.preflight()?.checks.find((check) => check.verdict !== 'pass' && check.pointers.includes(pointer)) ?? null
+      this.preflight()?.checks.find((check) => check.verdict !== 'pass' && placesOf(check).includes(pointer)) ?? null
     );
   }
 
@@ -149,6 +149,11 @@ export class SetupDraft {
     );
     if (kept.length !== this.fromServer().size) this.fromServer.set(new Map(kept));
   }
+}
+
+/** Where a check is told in the form: at the fields that its remedy writes, else at all that it is about. */
+export function placesOf(check: Check): string[] {
+  return check.remedy ? check.remedy.changes.map(({ pointer }) => pointer) : check.pointers;
 }
 
 /** "Seasonal strength 1.20" for one change, two joined by a comma, "4 changes from Strong" beyond; "Control" without a parent. */

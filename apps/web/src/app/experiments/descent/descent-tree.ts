@@ -10,9 +10,14 @@ import {
   viewChild,
 } from '@angular/core';
 import { Router, RouterLink } from '@angular/router';
+import { toObservable } from '@angular/core/rxjs-interop';
 import type { RunSummary } from '@halfdeep/contracts';
+import { map } from 'rxjs';
 import { StateSign } from '../../shared/state-sign/state-sign';
 import { changesAbove, descentOf, outcomeBelow, shareDone, type DescentNode } from './descent';
+
+const flattened = (nodes: readonly DescentNode[]): DescentNode[] =>
+  nodes.flatMap((node) => [node, ...flattened(node.children)]);
 
 /**
  * The descent of runs as course lines: what was changed stands above each line, what it did below, the run at its end.
@@ -37,7 +42,12 @@ export class DescentTree {
   protected readonly roots = computed(() => descentOf(this.runs()), {
     equal: (a, b) => JSON.stringify(a) === JSON.stringify(b),
   });
-  protected readonly childrenOf = (node: DescentNode) => node.children;
+  /** Every node by id, so that children can be watched: a tree that stays takes new runs in. */
+  private readonly nodes = computed(() => new Map(flattened(this.roots()).map((node) => [node.id, node] as const)));
+  private readonly nodeChanges = toObservable(this.nodes);
+  protected readonly childrenOf = (node: DescentNode) =>
+    this.nodeChanges.pipe(map((nodes) => nodes.get(node.id)?.children ?? []));
+  protected readonly hasChildren = (id: string) => (this.nodes().get(id)?.children.length ?? 0) > 0;
   protected readonly idOf = (node: DescentNode) => node.id;
   protected readonly above = changesAbove;
   protected readonly below = outcomeBelow;
@@ -45,8 +55,8 @@ export class DescentTree {
 
   constructor() {
     afterRenderEffect(() => {
-      this.roots();
-      this.tree().expandAll();
+      // A run without children is not open: the left arrow must lead from it to its parent at once.
+      for (const node of this.nodes().values()) if (node.children.length > 0) this.tree().expand(node);
     });
   }
 

@@ -1,4 +1,5 @@
 import type { Check } from '@halfdeep/ocean';
+import { SPACE } from '../../core/format';
 import { checkNumbers, splitUnit, verdictWords } from './check-words';
 
 const check = (part: Partial<Check>): Check => ({
@@ -17,8 +18,9 @@ const check = (part: Partial<Check>): Check => ({
 
 describe('words of a check', () => {
   it('tells a most from a least by the ratio', () => {
-    expect(checkNumbers(check({}))).toBe('11.0 of 44.0\u202fkm');
-    expect(checkNumbers(check({ value: 2.5, limit: 2, unit: '', ratio: 0.8 }))).toBe('2.50, asks 2.00');
+    expect(checkNumbers(check({}))).toBe(`11.0 of 44.0${SPACE}km`);
+    expect(checkNumbers(check({ value: 2.5, limit: 2, unit: '', ratio: 0.8 }))).toBe('2.50');
+    expect(checkNumbers(check({ unit: 'trapping scales' }))).toBe('11.0 of 44.0');
     expect(checkNumbers(check({ value: 0, limit: 0.4, unit: '', ratio: 0 }))).toBe('0 of 0.400');
   });
   it('counts refusals before cautions, fields that cannot be read among them', () => {
@@ -29,7 +31,7 @@ describe('words of a check', () => {
     expect(verdictWords({ checks: [check({})] })).toBe('every check passes');
   });
   it('parts a number from its unit', () => {
-    expect(splitUnit('18.4\u202fGB')).toEqual({ number: '18.4', unit: 'GB' });
+    expect(splitUnit(`18.4${SPACE}GB`)).toEqual({ number: '18.4', unit: 'GB' });
     expect(splitUnit('3')).toEqual({ number: '3', unit: '' });
   });
 });

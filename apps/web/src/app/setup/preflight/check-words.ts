@@ -1,13 +1,14 @@
 import type { Check, Preflight } from '@halfdeep/ocean';
-import { formatCount, formatNumber, formatQuantity, NARROW } from '../../core/format';
+import { formatCount, formatNumber, formatQuantity, NARROW, SPACE } from '../../core/format';
 
-/** "11 of 44 km" where the limit is a most, "2.5, asks 2" where it is a least. */
+/** Beside a pass: "11.0 of 44.0 km" where the limit is a most, "2.50" where it is a least; long units are left to the reason. */
 export function checkNumbers({ value, limit, unit, ratio }: Check): string {
-  const asksLeast = Math.abs(ratio * value - limit) < Math.abs(ratio * limit - value);
-  const options = { significant: 3 };
   if (!Number.isFinite(value) || !Number.isFinite(limit)) return '';
-  if (asksLeast) return `${formatNumber(value, options)}, asks ${formatQuantity(limit, unit, options)}`;
-  return `${formatNumber(value, options)} of ${formatQuantity(limit, unit, options)}`;
+  const short = /^\S{0,4}$/.test(unit) ? unit : '';
+  const options = { significant: 3 };
+  const asksLeast = Math.abs(ratio * value - limit) < Math.abs(ratio * limit - value);
+  if (asksLeast) return formatQuantity(value, short, options);
+  return `${formatNumber(value, options)} of ${formatQuantity(limit, short, options)}`;
 }
 
 /** The whole in a word: "one refusal, two cautions", "every check passes". */
@@ -22,6 +23,6 @@ export function verdictWords({ checks }: Pick<Preflight, 'checks'>, unread = 0):
 
 /** A formatted quantity in its number and its unit, so that the unit can be smaller. */
 export function splitUnit(text: string): { number: string; unit: string } {
-  const at = text.lastIndexOf(NARROW);
+  const at = Math.max(text.lastIndexOf(NARROW), text.lastIndexOf(SPACE));
   return at < 0 ? { number: text, unit: '' } : { number: text.slice(0, at), unit: text.slice(at + 1) };
 }

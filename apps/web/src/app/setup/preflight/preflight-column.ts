@@ -91,9 +91,9 @@ export class PreflightColumn {
     if (this.unread().length > 0) return 'It can be queued once every field can be read.';
     if (this.verdict() === 'refuse') return 'It can be queued once nothing is refused.';
     if (this.hindrance()) return this.hindrance();
-    if (this.draft.label().trim() === '') return 'It needs a label.';
     if (this.draft.parent() && this.draft.changes().length === 0)
       return `Nothing differs from ${this.draft.parent()?.label} yet.`;
+    if (this.draft.label().trim() === '') return 'It needs a label.';
     if (!this.result() || this.runner.stale()) return 'Preflight is still reading the setup.';
     return this.sending() ? 'It is on its way to the queue.' : '';
   });

@@ -10,7 +10,7 @@ import { SectionFrame } from './section-frame';
   selector: 'app-constants-section',
   imports: [SectionFrame, SetupQuantity],
   template: `
-    <app-section-frame id="constants" title="Constants">
+    <app-section-frame section="constants" heading="Constants">
       <details [open]="open()">
         <summary>
           {{ usual() ? 'The usual constants, written into the setup' : 'Not the usual constants' }}

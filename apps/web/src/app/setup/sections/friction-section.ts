@@ -9,7 +9,7 @@ import { SectionFrame } from './section-frame';
   selector: 'app-friction-section',
   imports: [SectionFrame, SetupChoice, SetupQuantity],
   template: `
-    <app-section-frame id="friction" title="Friction">
+    <app-section-frame section="friction" heading="Friction">
       <div class="abreast">
         <app-setup-quantity at="/friction/rayleighPerS" of="rayleigh" symbol="r" />
         <app-setup-quantity at="/friction/viscosityM2S" of="viscosity" symbol="A" />

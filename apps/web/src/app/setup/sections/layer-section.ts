@@ -7,7 +7,7 @@ import { SectionFrame } from './section-frame';
   selector: 'app-layer-section',
   imports: [SectionFrame, SetupQuantity],
   template: `
-    <app-section-frame id="layer" title="Layer">
+    <app-section-frame section="layer" heading="Layer">
       <div class="abreast">
         <app-setup-quantity at="/layer/restThicknessM" of="restThickness" symbol="H" />
         <app-setup-quantity at="/layer/reducedGravityMS2" of="reducedGravity" symbol="g′" />

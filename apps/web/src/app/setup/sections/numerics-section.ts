@@ -10,7 +10,7 @@ import { SectionFrame } from './section-frame';
   selector: 'app-numerics-section',
   imports: [MatButton, SectionFrame, SetupQuantity],
   template: `
-    <app-section-frame id="numerics" title="Numerics" remark="linear equations on a C-grid">
+    <app-section-frame section="numerics" heading="Numerics" remark="linear equations on a C-grid">
       <div class="abreast">
         <app-setup-quantity at="/numerics/spacingLongitudeDeg" of="spacing" label="Grid spacing in longitude" />
         <app-setup-quantity
@@ -51,8 +51,9 @@ export class NumericsSection {
       ? `Step ${writeDecimal(Math.round(86_400 / steps))} s. ${rule}`
       : rule;
   });
-  /** The proposal, when another number stands in the field. */
+  /** The proposal, when another number stands in the field and no remedy speaks of it. */
   protected readonly proposed = computed(() => {
+    if (this.draft.check('/numerics/stepsPerDay')) return null;
     const proposed = this.draft.preflight()?.proposedStepsPerDay;
     return proposed !== undefined && proposed !== this.draft.at('/numerics/stepsPerDay') ? proposed : null;
   });

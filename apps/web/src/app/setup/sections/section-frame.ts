@@ -9,9 +9,9 @@ import { sectionOf, type SectionId } from './section-ids';
   selector: 'app-section-frame',
   imports: [MatButton],
   template: `
-    <section [id]="id()" [attr.aria-labelledby]="id() + '-head'" tabindex="-1">
+    <section [id]="section()" [attr.aria-labelledby]="section() + '-head'" tabindex="-1">
       <header>
-        <h2 [id]="id() + '-head'">{{ title() }}</h2>
+        <h2 [id]="section() + '-head'">{{ heading() }}</h2>
         @if (remark()) {
           <span>{{ remark() }}</span>
         }
@@ -40,13 +40,18 @@ import { sectionOf, type SectionId } from './section-ids';
 export class SectionFrame {
   private readonly draft = inject(SetupDraft);
   protected readonly actions = inject(RemedyActions);
-  readonly id = input.required<SectionId>();
-  readonly title = input.required<string>();
+  readonly section = input.required<SectionId>();
+  readonly heading = input.required<string>();
   readonly remark = input('');
-  protected readonly remedies = computed(() =>
-    (this.draft.preflight()?.checks ?? []).filter(
-      (check) =>
-        check.verdict !== 'pass' && check.remedy?.changes.some((change) => sectionOf(change.pointer) === this.id()),
-    ),
-  );
+  /** One line for each different remedy: the worst check that asks for it. */
+  protected readonly remedies = computed(() => {
+    const said = new Set<string>();
+    return (this.draft.preflight()?.checks ?? []).filter((check) => {
+      const changes = check.verdict === 'pass' ? [] : (check.remedy?.changes ?? []);
+      const key = JSON.stringify(changes);
+      if (said.has(key) || !changes.some(({ pointer }) => sectionOf(pointer) === this.section())) return false;
+      said.add(key);
+      return true;
+    });
+  });
 }

@@ -13,7 +13,7 @@ import { WindComponentFields } from './wind-component-fields';
   selector: 'app-wind-section',
   imports: [MatButton, SectionFrame, SetupQuantity, WindComponentFields, WindDiagramPlate],
   template: `
-    <app-section-frame id="wind" title="Wind" [remark]="remark()">
+    <app-section-frame section="wind" heading="Wind" [remark]="remark()">
       <div class="duo">
         <div class="fields">
           <app-setup-quantity at="/wind/seasonalStrength" of="seasonalStrength" symbol="s" />

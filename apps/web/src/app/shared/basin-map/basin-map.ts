@@ -3,6 +3,7 @@ import { coastLongitude, type Basin, type Setup } from '@halfdeep/ocean';
 import { formatLatitude, formatLongitude } from '../../core/format';
 import { elementWidth } from '../element-width';
 import { graduation, mapFrame, pxX, pxY, ticks, type MapFrame } from './map-frame';
+import { freePlace, overlaps, type Box } from './sea-name';
 
 let maps = 0;
 
@@ -61,50 +62,78 @@ export class BasinMap {
   protected readonly sections = computed(() => {
     const frame = this.frame();
     const { basin, output } = this.setup();
+    const taken = this.moorings().flatMap(({ box, x, y }) => [box, { x: x - 7, y: y - 6, width: 14, height: 13 }]);
     return output.sections.map(({ name, along, atDeg }) => {
-      if (along === 'longitude') {
-        const x = pxX(frame, atDeg);
-        return {
-          name,
-          x1: x,
-          x2: x,
-          y1: frame.y,
-          y2: frame.y + frame.height,
-          textX: x + 8,
-          textY: frame.y + 14,
-          anchor: 'start',
-        };
-      }
-      const y = pxY(frame, atDeg);
-      return {
-        name,
-        x1: pxX(frame, Math.max(basin.westDeg, coastLongitude(basin, atDeg))),
-        x2: frame.x + frame.width,
-        y1: y,
-        y2: y,
-        textX: frame.x + frame.width - 10,
-        textY: y - 6,
-        anchor: 'end',
-      };
+      const [x, y] = [pxX(frame, atDeg), pxY(frame, atDeg)];
+      const line =
+        along === 'longitude'
+          ? { x1: x, x2: x, y1: frame.y, y2: frame.y + frame.height }
+          : {
+              x1: pxX(frame, Math.max(basin.westDeg, coastLongitude(basin, atDeg))),
+              x2: frame.x + frame.width,
+              y1: y,
+              y2: y,
+            };
+      const width = name.length * 6;
+      const places =
+        along === 'longitude'
+          ? [14, frame.height - 8, 30].flatMap((down) => [
+              { x: x + 8, y: frame.y + down },
+              { x: x - 8 - width, y: frame.y + down },
+            ])
+          : [line.x2 - 10 - width, (line.x1 + line.x2) / 2 - width - 12, line.x1 + 26].flatMap((left) => [
+              { x: left, y: y - 6 },
+              { x: left, y: y + 15 },
+            ]);
+      const box = (place: { x: number; y: number }): Box => ({ x: place.x, y: place.y - 11, width, height: 14 });
+      const free = places.find((place) => !taken.some((other) => overlaps(box(place), other)));
+      const text = free ?? { x: line.x1 + 26, y: line.y1 - 6 };
+      taken.push(box(text));
+      return { name, ...line, text, box: box(text) };
     });
   });
   protected readonly moorings = computed(() => {
     const frame = this.frame();
-    return this.setup().output.moorings.map(({ name, longitudeDeg, latitudeDeg }) => ({
-      name,
-      x: pxX(frame, longitudeDeg),
-      y: pxY(frame, latitudeDeg),
+    return this.setup().output.moorings.map(({ name, longitudeDeg, latitudeDeg }) => {
+      const [x, y] = [pxX(frame, longitudeDeg), pxY(frame, latitudeDeg)];
+      const width = name.length * 6;
       // A label that would leave the frame stands on the other side.
-      anchor: pxX(frame, longitudeDeg) > frame.x + frame.width - 40 ? 'end' : 'start',
-    }));
+      const left = x + 8 + width > frame.x + frame.width ? x - 9 - width : x + 8;
+      return { name, x, y, text: { x: left, y: y - 7 }, box: { x: left, y: y - 18, width, height: 14 } };
+    });
   });
+  /** The name of the water where nothing else is drawn; null when it fits nowhere. */
   protected readonly seaName = computed(() => {
     const frame = this.frame();
     const { name } = this.setup().basin;
-    // About 11 px a letter with its spacing.
-    return name && name.length * 11 < frame.width * 0.7 && frame.height > 80
-      ? { text: name, x: frame.x + frame.width * 0.6, y: frame.y + Math.min(40, frame.height * 0.2) }
-      : null;
+    // About 12 px a letter with its spacing.
+    const place = name ? freePlace(frame, name.length * 12, 20, this.taken()) : null;
+    return place ? { text: name, x: place.x + place.width / 2, y: place.y + 15 } : null;
+  });
+  /** What the name must not touch, px. */
+  private readonly taken = computed<Box[]>(() => {
+    const frame = this.frame();
+    const { basin } = this.setup();
+    const between = (x1: number, y1: number, x2: number, y2: number): Box => ({
+      x: Math.min(x1, x2) - 6,
+      y: Math.min(y1, y2) - 6,
+      width: Math.abs(x2 - x1) + 12,
+      height: Math.abs(y2 - y1) + 12,
+    });
+    const coast = basin.westernCoast;
+    const land = coast.kind === 'slanting' ? Math.max(coast.atSouthDeg, coast.atNorthDeg) : basin.westDeg;
+    return [
+      ...(land > basin.westDeg ? [between(frame.x, frame.y, pxX(frame, land), frame.y + frame.height)] : []),
+      ...basin.islands.map((island) => {
+        const { westDeg, eastDeg, southDeg, northDeg } = islandBox(island);
+        return between(pxX(frame, westDeg), pxY(frame, northDeg), pxX(frame, eastDeg), pxY(frame, southDeg));
+      }),
+      ...this.sections().flatMap(({ x1, y1, x2, y2, box }) => [between(x1, y1, x2, y2), box]),
+      ...this.moorings().flatMap(({ x, y, box }) => [between(x, y, x, y), box]),
+      ...(this.equator() === null
+        ? []
+        : [between(frame.x, this.equator() ?? 0, frame.x + frame.width, this.equator() ?? 0)]),
+    ];
   });
   protected readonly spoken = computed(() => {
     const { basin, output } = this.setup();
@@ -125,6 +154,17 @@ export class BasinMap {
 
 function counted(count: number, noun: string): string {
   return count === 0 ? `no ${noun}s` : count === 1 ? `one ${noun}` : `${count} ${noun}s`;
+}
+
+function islandBox(island: Basin['islands'][number]) {
+  if (island.kind === 'box') return island;
+  const [longitudes, latitudes] = [island.points.map((point) => point[0]), island.points.map((point) => point[1])];
+  return {
+    westDeg: Math.min(...longitudes),
+    eastDeg: Math.max(...longitudes),
+    southDeg: Math.min(...latitudes),
+    northDeg: Math.max(...latitudes),
+  };
 }
 
 function landPath(basin: Basin, frame: MapFrame): string {

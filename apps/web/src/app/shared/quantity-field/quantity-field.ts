@@ -64,6 +64,14 @@ export class QuantityField {
     return value !== null && Number.isFinite(value) ? value : null;
   });
 
+  /** The label in the parts of its notch: words, sloped letter, unit for those who hear it. */
+  protected readonly before = computed(() => this.label() + (this.symbol() ? ', ' : ''));
+  protected readonly after = computed(() => (this.unit() ? `, ${this.spokenUnit() || this.unit()}` : ''));
+  protected readonly valueText = computed(() => {
+    const value = this.valueNow();
+    return value === null ? null : `${writeDecimal(value)} ${this.spokenUnit() || this.unit()}`.trim();
+  });
+
   constructor() {
     effect(() => {
       const value = this.value();
