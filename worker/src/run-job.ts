@@ -1,13 +1,12 @@
 import { stat } from 'node:fs/promises';
 import { setImmediate as breathe } from 'node:timers/promises';
-import { CORE_VERSION, Integration, IntegrationFailure, recordSteps } from '@halfdeep/ocean';
+import { Integration, IntegrationFailure } from '@halfdeep/ocean';
 import { type Progress } from '@halfdeep/contracts';
-import type { WorkerEffort, WorkerJob, WorkerMessage, WorkerOutcome } from '@halfdeep/queue';
+import type { WorkerJob, WorkerMessage, WorkerOutcome } from '@halfdeep/queue';
 import {
   listRunFiles,
   readVerified,
   RunFileError,
-  type RunFileMeta,
   RunFileWriter,
   type RunPaths,
   runPaths,
@@ -17,6 +16,7 @@ import {
 import { isDamagedFile, isDiskFull } from './disk-errors';
 import { describeFailure, replayFailure } from './replay';
 import { RunLock } from './run-lock';
+import { metaOf } from './run-meta';
 import { Speedometer } from './speedometer';
 
 /** Orders are looked at, and the event loop turns, about this often. */
@@ -46,7 +46,6 @@ export class RunJob {
   private lastCheckpoint = performance.now();
   private checkpointCostMs = 0;
   private stepMs = 0;
-  private integrationMs = 0;
   /** The commit or checkpoint that is on its way to the disk while steps go on. */
   private writing: Promise<void> | null = null;
   private writeError: unknown = null;
@@ -82,7 +81,6 @@ export class RunJob {
   }
 
   private async compute(): Promise<WorkerOutcome> {
-    const cpuAtStart = process.cpuUsage();
     await this.takeUp();
     this.speed.mark(this.integration.step, performance.now());
     await this.tell();
@@ -95,7 +93,7 @@ export class RunJob {
       if (error instanceof IntegrationFailure) return await this.explain();
       throw error;
     }
-    return await this.finish(cpuAtStart);
+    return await this.finish();
   }
 
   /** Opens the run file and goes back to the newest checkpoint that is whole, else to the start. */
@@ -145,7 +143,6 @@ export class RunJob {
       const before = performance.now();
       integration.advance(steps);
       const took = performance.now() - before;
-      this.integrationMs += took;
       this.stepMs = this.stepMs === 0 ? took / steps : 0.8 * this.stepMs + (0.2 * took) / steps;
       this.deliver();
     } while (
@@ -221,7 +218,7 @@ export class RunJob {
     return { kind: 'saved', progress: this.progress(), diskBytes: await this.diskBytes() };
   }
 
-  private async finish(cpuAtStart: NodeJS.CpuUsage): Promise<WorkerOutcome> {
+  private async finish(): Promise<WorkerOutcome> {
     await this.written();
     await this.checkpoint();
     const stateSha256 = await writeWhole(this.paths.last, this.integration.lastState());
@@ -232,7 +229,6 @@ export class RunJob {
       lastStep: this.integration.step,
       progress: { ...this.progress(), cellStepsPerSecond: null, secondsLeft: null },
       diskBytes: await this.diskBytes(),
-      effort: this.effort(cpuAtStart),
     };
   }
 
@@ -281,37 +277,4 @@ export class RunJob {
     for (const file of await listRunFiles(this.paths)) bytes += (await stat(file).catch(() => null))?.size ?? 0;
     return bytes;
   }
-
-  private effort(cpuAtStart: NodeJS.CpuUsage): WorkerEffort {
-    const { user, system } = process.cpuUsage(cpuAtStart);
-    return { integrationSeconds: this.integrationMs / 1000, cpuSeconds: (user + system) / 1e6 };
-  }
-}
-
-/** What the run file says about itself. */
-function metaOf(runId: string, integration: Integration): Omit<RunFileMeta, 'schemaVersion'> {
-  const { setup, grid, startStep, totalSteps } = integration;
-  return {
-    runId,
-    coreVersion: CORE_VERSION,
-    setup,
-    nx: grid.nx,
-    ny: grid.ny,
-    axes: {
-      lonCentre: [...grid.lonCentre],
-      latCentre: [...grid.latCentre],
-      lonFace: [...grid.lonFace],
-      latFace: [...grid.latFace],
-    },
-    units: { eta: 'm', u: 'm/s', v: 'm/s' },
-    stepsPerDay: setup.numerics.stepsPerDay,
-    startStep,
-    totalSteps,
-    intervals: recordSteps(setup),
-    columns: {
-      sections: integration.sectionColumns(),
-      moorings: integration.mooringColumns(),
-      budget: integration.budgetColumns(),
-    },
-  };
 }

@@ -28,14 +28,6 @@ export interface WorkerReport {
   diskBytes: number;
 }
 
-/** What the computing itself took, for the share of CPU time that delivering results costs. */
-export interface WorkerEffort {
-  /** Seconds inside `Integration.advance`. */
-  integrationSeconds: number;
-  /** CPU seconds of the process over the same job, all threads. */
-  cpuSeconds: number;
-}
-
 /** How a job ended. A worker that ends without one has died. */
 export type WorkerOutcome =
   | {
@@ -45,7 +37,6 @@ export type WorkerOutcome =
       lastStep: number;
       progress: Progress;
       diskBytes: number;
-      effort: WorkerEffort;
     }
   /** Saved on order; goes on from there. */
   | { kind: 'saved'; progress: Progress; diskBytes: number }

@@ -32,7 +32,6 @@ const finish = () =>
     lastStep: 100,
     progress: progress(100, 100),
     diskBytes: 7,
-    effort: { integrationSeconds: 1, cpuSeconds: 1 },
   });
 const acts = {
   finish,
