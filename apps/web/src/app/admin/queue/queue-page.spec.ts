@@ -3,6 +3,7 @@ import { TestbedHarnessEnvironment } from '@angular/cdk/testing/testbed';
 import { provideHttpClient } from '@angular/common/http';
 import { HttpTestingController, type TestRequest, provideHttpClientTesting } from '@angular/common/http/testing';
 import { type ComponentFixture, TestBed } from '@angular/core/testing';
+import { MATERIAL_ANIMATIONS } from '@angular/material/core';
 import { MatButtonHarness } from '@angular/material/button/testing';
 import { MatDialogHarness } from '@angular/material/dialog/testing';
 import { MatInputHarness } from '@angular/material/input/testing';
@@ -45,6 +46,8 @@ describe('QueuePage', () => {
         provideHttpClientTesting(),
         provideRouter([]),
         provideIcons(),
+        // A dialog that fades away answers late, and the later the busier the machine.
+        { provide: MATERIAL_ANIMATIONS, useValue: { animationsDisabled: true } },
         { provide: EVENT_SOURCE, useValue: () => ({ addEventListener: () => undefined, close: () => undefined }) },
       ],
     });
@@ -108,6 +111,25 @@ describe('QueuePage', () => {
     await up.click();
     expect(waiting()).toEqual(['Weak', 'Thin layer', 'Wind 1.4']);
     expect(patch().request.body).toEqual({ order: [id(3), id(5), id(4)] });
+  });
+
+  it('keeps the focus on the button while its row moves, to the top and no further', async () => {
+    const up = await loader.getHarness(MatButtonHarness.with({ selector: '[aria-label="Move Thin layer up"]' }));
+    await up.focus();
+    for (const order of [
+      [id(3), id(5), id(4)],
+      [id(5), id(3), id(4)],
+    ]) {
+      await up.click();
+      const request = patch();
+      expect(request.request.body).toEqual({ order });
+      const waits = order.map((run) => QUEUE.waiting.find((item) => item.id === run)!);
+      request.flush({ ...QUEUE, waiting: waits });
+      await settle(fixture);
+      expect(await up.isFocused()).toBe(true);
+    }
+    await up.click();
+    server.expectNone({ method: 'PATCH', url: '/api/admin/queue' });
   });
 
   it('puts the order back when the server refuses it', async () => {

@@ -1,6 +1,6 @@
 import { LiveAnnouncer } from '@angular/cdk/a11y';
 import { CdkDrag, type CdkDragDrop, CdkDragHandle, CdkDropList, moveItemInArray } from '@angular/cdk/drag-drop';
-import { ChangeDetectionStrategy, Component, computed, inject, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, Injector, afterNextRender, computed, inject, signal } from '@angular/core';
 import { MatButton, MatIconButton } from '@angular/material/button';
 import { MatIcon } from '@angular/material/icon';
 import { MatSlideToggle } from '@angular/material/slide-toggle';
@@ -46,6 +46,7 @@ export class QueuePage {
   private readonly confirm = inject(Confirm);
   private readonly status = inject(QueueStatus);
   private readonly announcer = inject(LiveAnnouncer);
+  private readonly injectIn = { injector: inject(Injector) };
 
   protected readonly reading = new Reading<AdminQueue>(() => this.api.get('/api/admin/queue', adminQueueSchema));
   protected readonly queue = this.reading.value;
@@ -102,12 +103,23 @@ export class QueuePage {
   protected async move(from: number, to: number): Promise<void> {
     const queue = this.queue();
     const moved = queue?.waiting[from];
-    if (!queue || !moved || from === to || to < 0 || to >= queue.waiting.length) return;
+    if (!queue || !moved || this.busy() || from === to || to < 0 || to >= queue.waiting.length) return;
+    this.keepFocus();
     const waiting = [...queue.waiting];
     moveItemInArray(waiting, from, to);
     this.reading.update((value) => ({ ...value, waiting }));
     const order = waiting.map((run) => run.id);
     await this.patch({ order }, `${moved.label} is number ${to + 1} of ${order.length} now.`);
+  }
+
+  // A row that moves takes its buttons out of the page for a moment, and the focus would be lost with them.
+  private keepFocus(): void {
+    const held = document.activeElement;
+    if (!(held instanceof HTMLElement)) return;
+    afterNextRender(
+      { write: () => held.isConnected && held !== document.activeElement && held.focus() },
+      this.injectIn,
+    );
   }
 
   protected async stop(run: RunSummary): Promise<void> {
@@ -142,7 +154,7 @@ export class QueuePage {
         running: queue.running.length,
         waiting: queue.waiting.length,
       });
-      await this.announcer.announce(done);
+      void this.announcer.announce(done);
     } catch (error) {
       this.refused.set(toApiProblem(error));
       this.reading.again();
