@@ -69,7 +69,8 @@ export class BudgetPlates {
   readonly pen = input.required<'live' | 'lost' | 'none'>();
   readonly links = input.required<(plate: number) => PlotLink>();
 
-  private readonly seconds = computed(() => this.run().setup.output.sectionIntervalDays * SECONDS_PER_DAY);
+  private readonly setup = computed(() => this.run().setup, { equal: sameSetup });
+  private readonly seconds = computed(() => this.setup().output.sectionIntervalDays * SECONDS_PER_DAY);
   private readonly closure = computed(() => energyClosure(this.slice()));
   protected readonly hasRows = computed(() => {
     this.slice().version();
@@ -81,7 +82,7 @@ export class BudgetPlates {
     const slice = this.slice();
     slice.head();
     const factor = GW_PER_PJ_A_SECOND / this.seconds();
-    const damped = this.run().setup.layer.dampingPerS > 0;
+    const damped = this.setup().layer.dampingPerS > 0;
     const sinks = ['rayleighWork', 'viscousWork', ...(damped ? ['dampingWork'] : [])];
     const spec = (name: string, columns: string[], series: CurveSpec['series']): CurveSpec => ({
       name,
@@ -105,7 +106,6 @@ export class BudgetPlates {
   });
 
   /** Mass of the layer at rest is what a residual of mass is held against, Gt. */
-  private readonly setup = computed(() => this.run().setup, { equal: sameSetup });
   private readonly restMass = computed(() => {
     const { constants, layer } = this.setup();
     const { nx, ny, mask, dxC, dy } = buildGrid(this.setup());
@@ -125,13 +125,13 @@ export class BudgetPlates {
       factor,
       series,
     });
-    const damping = this.run().setup.layer.dampingPerS > 0 ? [spec('damping', 'massDamping', 3)] : [];
+    const damping = this.setup().layer.dampingPerS > 0 ? [spec('damping', 'massDamping', 3)] : [];
     return [spec('change', 'massChange', 1), ...damping, spec('residual', 'massResidual', 4)];
   });
   protected readonly massCaption = computed(() => {
     const residual = this.massResidual();
     const rule =
-      this.run().setup.layer.dampingPerS > 0
+      this.setup().layer.dampingPerS > 0
         ? 'Change of mass is what interface damping adds.'
         : 'Without damping no mass is gained or lost: what is drawn is round-off.';
     if (Number.isNaN(residual)) return rule;

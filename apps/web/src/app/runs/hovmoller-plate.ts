@@ -25,7 +25,7 @@ import { hasEquatorialTheory, theoryLines } from '../shared/plate/theory-lines';
 import { YEAR } from '../shared/plate/ticks';
 import { VARIABLE_CHOICES, VARIABLE_VIEWS, isVariable } from '../shared/plate/variables';
 import { plateAbout } from './plate-about';
-import { sameSetup } from './same-setup';
+import { sameGrowth, sameRange, sameSetup } from './same-setup';
 
 type Span = 'whole' | 'last1' | 'last2' | 'last4';
 const SPAN_YEARS: Record<Span, number> = { whole: Infinity, last1: 1, last2: 2, last4: 4 };
@@ -85,13 +85,16 @@ export class HovmollerPlate {
     this.along() === 'latitude' ? ({ x: 'longitude', y: 'time' } as const) : ({ x: 'time', y: 'latitude' } as const),
   );
   /** The end of the axis grows by whole years, so that the plot does not shift while it is being read. */
-  private readonly timeRange = computed<[number, number]>(() => {
-    const years = SPAN_YEARS[this.span()];
-    if (!Number.isFinite(years)) return [this.firstDay(), this.lastDay()];
-    const reached = Math.ceil(Math.max(this.run().progress.day, 1) / YEAR) * YEAR;
-    const end = Math.min(this.lastDay(), reached);
-    return [Math.max(this.firstDay(), end - years * YEAR), end];
-  });
+  private readonly timeRange = computed<[number, number]>(
+    () => {
+      const years = SPAN_YEARS[this.span()];
+      if (!Number.isFinite(years)) return [this.firstDay(), this.lastDay()];
+      const reached = Math.ceil(Math.max(this.run().progress.day, 1) / YEAR) * YEAR;
+      const end = Math.min(this.lastDay(), reached);
+      return [Math.max(this.firstDay(), end - years * YEAR), end];
+    },
+    { equal: sameRange },
+  );
   private readonly placeRange = computed<[number, number]>(() => {
     const { lonFace, latFace } = this.grid();
     const faces = this.along() === 'latitude' ? lonFace : latFace;
@@ -121,16 +124,19 @@ export class HovmollerPlate {
   protected readonly limits = computed(() => chosenLimits(this.fitted().limits, this.scale()));
   protected readonly bar = computed(() => ({ ...VARIABLE_VIEWS[this.variable()], limits: this.limits() }));
 
-  protected readonly growth = computed<Growth>(() => {
-    const { rows } = this.slice();
-    this.slice().version();
-    const axis = this.along() === 'latitude' ? 'y' : 'x';
-    const upTo =
-      this.run().state === 'finished' && rows.count >= this.run().progress.records.frames
-        ? this.lastDay()
-        : rows.day(rows.count - 1);
-    return { axis, upTo: rows.count === 0 ? this.firstDay() : upTo, pen: this.pen() };
-  });
+  protected readonly growth = computed<Growth>(
+    () => {
+      const { rows } = this.slice();
+      this.slice().version();
+      const axis = this.along() === 'latitude' ? 'y' : 'x';
+      const upTo =
+        this.run().state === 'finished' && rows.count >= this.run().progress.records.frames
+          ? this.lastDay()
+          : rows.day(rows.count - 1);
+      return { axis, upTo: rows.count === 0 ? this.firstDay() : upTo, pen: this.pen() };
+    },
+    { equal: sameGrowth },
+  );
   protected readonly theoryPossible = computed(
     () => this.along() === 'latitude' && hasEquatorialTheory(this.setup(), this.at()),
   );
@@ -183,10 +189,13 @@ export class HovmollerPlate {
   protected readonly busy = computed(() => {
     const slice = this.slice();
     const reading = slice.reading();
-    if (slice.error() !== null && this.field() !== null)
-      return `Not read beyond ${formatModelDay(slice.rows.day(slice.rows.count - 1))}; what is drawn is good.`;
     if (!reading || (this.field() !== null && reading.of <= 1)) return '';
     return reading.of > 1 ? `Reading, ${reading.done} of ${reading.of} pieces` : 'Reading';
+  });
+  protected readonly partial = computed(() => {
+    const slice = this.slice();
+    if (slice.error() === null || this.field() === null) return '';
+    return `Not read beyond ${formatModelDay(slice.rows.day(slice.rows.count - 1))}; what is drawn is good.`;
   });
   protected readonly lastGood = computed(() => {
     const { state, progress } = this.run();

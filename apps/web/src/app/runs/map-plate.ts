@@ -19,6 +19,7 @@ import { type Field, FieldPlot } from '../shared/plate/field-plot';
 import { LandOutline } from '../shared/plate/land';
 import { type ColourLimits, fittedLimits, grownLimits, isolineWords, typicalSpan } from '../shared/plate/limits';
 import { mapField } from '../shared/plate/map-field';
+import { type OverlayModel } from '../shared/plate/overlay';
 import { Plate, type PlateSource } from '../shared/plate/plate';
 import { PlotLink } from '../shared/plate/plot-link';
 import { SCALE_CHOICES, type ScaleChoice, chosenLimits } from '../shared/plate/scale-choice';
@@ -43,7 +44,10 @@ export class MapPlate {
   protected readonly scales = SCALE_CHOICES;
   protected readonly link = new PlotLink();
   private readonly plot = viewChild(FieldPlot);
-  private readonly setup = computed(() => this.run().setup, {
+  protected readonly axes = { x: 'longitude', y: 'latitude' } as const;
+  protected readonly noSections: OverlayModel['sections'] = [];
+  protected readonly noMoorings: OverlayModel['moorings'] = [];
+  protected readonly setup = computed(() => this.run().setup, {
     equal: sameSetup,
   });
   private readonly grid = computed(() => buildGrid(this.setup()));
@@ -110,7 +114,12 @@ export class MapPlate {
   protected readonly about = computed(() => plateAbout(this.run()));
   protected readonly state = computed(() => {
     if (this.count() === 0) return 'empty';
-    return this.reader().error() !== null ? 'error' : 'ready';
+    return this.reader().error() !== null && !this.shown() ? 'error' : 'ready';
+  });
+  protected readonly partial = computed(() => {
+    const shown = this.shown();
+    if (this.reader().error() === null || !shown) return '';
+    return `${sentenceStart(formatModelDay(this.dayOf()(this.record())))} was not read; on show is ${formatModelDay(this.dayOf()(shown.record))}.`;
   });
   protected readonly lastGood = computed(() => {
     const shown = this.shown();

@@ -5,6 +5,7 @@ import { type GrowingSlice } from '../core/growing-rows';
 import { type PlotLink } from '../shared/plate/plot-link';
 import { columnIndex } from './energy-closure';
 import { chunks } from './section-plates';
+import { sameSetup } from './same-setup';
 import { type CurveSpec, SeriesPlate } from './series-plate';
 
 const CURVES_A_PLATE = 4;
@@ -73,9 +74,10 @@ export class MooringPlates {
   protected readonly quantity = signal<Quantity>('uCentre');
   protected readonly group = signal(0);
 
+  private readonly setup = computed(() => this.run().setup, { equal: sameSetup });
   private readonly parts = computed(() =>
     chunks(
-      this.run().setup.output.moorings.map((mooring, k) => ({ ...mooring, k })),
+      this.setup().output.moorings.map((mooring, k) => ({ ...mooring, k })),
       CURVES_A_PLATE,
     ),
   );
@@ -87,7 +89,7 @@ export class MooringPlates {
   protected readonly plates = computed(() => {
     const slice = this.slice();
     slice.head();
-    const every = formatQuantity(this.run().setup.output.mooringIntervalDays, 'd');
+    const every = formatQuantity(this.setup().output.mooringIntervalDays, 'd');
     const moorings = this.parts()[Math.min(this.group(), this.groups() - 1)] ?? [];
     const places = moorings
       .map((m) => `${m.name} at ${formatLongitude(m.longitudeDeg)}, ${formatLatitude(m.latitudeDeg)}`)

@@ -98,15 +98,20 @@ export class RunPage {
       const run = this.run();
       if (run) this.title.set(`${run.label} · run`);
     });
+    const showing = new Set<string>();
     const observer = new IntersectionObserver(
       (entries) => {
-        const top = entries.filter((entry) => entry.isIntersecting).at(0);
-        if (top) this.inView.set(top.target.id);
+        for (const { isIntersecting, target } of entries)
+          if (isIntersecting) showing.add(target.id);
+          else showing.delete(target.id);
+        const first = PARTS.find(({ id }) => showing.has(id));
+        if (first) this.inView.set(first.id);
       },
       { rootMargin: '-20% 0px -65% 0px' },
     );
     effect(() => {
       observer.disconnect();
+      showing.clear();
       for (const part of this.partElements()) observer.observe(part.nativeElement);
     });
     inject(DestroyRef).onDestroy(() => observer.disconnect());

@@ -4,6 +4,7 @@ import { formatLatitude, formatLongitude, formatQuantity } from '../core/format'
 import { type GrowingSlice } from '../core/growing-rows';
 import { type PlotLink } from '../shared/plate/plot-link';
 import { columnIndex } from './energy-closure';
+import { sameSetup } from './same-setup';
 import { type CurveSpec, SeriesPlate } from './series-plate';
 
 /** Curves that still can be told apart on one plate. */
@@ -51,10 +52,11 @@ export class SectionPlates {
   /** Link of the n-th plate: all share their time. */
   readonly links = input.required<(plate: number) => PlotLink>();
 
+  private readonly setup = computed(() => this.run().setup, { equal: sameSetup });
   protected readonly plates = computed<SectionPlate[]>(() => {
     const slice = this.slice();
     slice.head();
-    const { sections, sectionIntervalDays } = this.run().setup.output;
+    const { sections, sectionIntervalDays } = this.setup().output;
     const every = formatQuantity(sectionIntervalDays, 'd');
     const numbered = sections.map((section, k) => ({ ...section, k }));
     return (['latitude', 'longitude'] as const).flatMap((along) => {
@@ -79,7 +81,7 @@ export class SectionPlates {
           {
             name: `${towards} heat transport${more}`,
             unit: 'PW',
-            caption: `${towards} positive, means over ${every}: volume transport returned at depth, ${formatQuantity(this.run().setup.layer.temperatureStepK, 'K')} colder.`,
+            caption: `${towards} positive, means over ${every}: volume transport returned at depth, ${formatQuantity(this.setup().layer.temperatureStepK, 'K')} colder.`,
             specs: specs('heat'),
           },
         ];

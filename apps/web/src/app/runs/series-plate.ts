@@ -8,6 +8,7 @@ import { type Growth } from '../shared/plate/overlay';
 import { Plate, type PlateSource } from '../shared/plate/plate';
 import { PlotLink } from '../shared/plate/plot-link';
 import { plateAbout } from './plate-about';
+import { sameGrowth, sameRange } from './same-setup';
 
 /** A curve to draw: columns of the stream added up and multiplied. */
 export interface CurveSpec {
@@ -56,12 +57,17 @@ export class SeriesPlate {
         ),
       }));
   });
-  protected readonly xFull = computed<[number, number]>(() => [startDay(this.run()), this.run().progress.totalDays]);
-  protected readonly growth = computed<Growth>(() => {
-    const { rows, version } = this.slice();
-    version();
-    return { axis: 'x', upTo: rows.count > 0 ? rows.day(rows.count - 1) : this.xFull()[0], pen: this.pen() };
+  protected readonly xFull = computed<[number, number]>(() => [startDay(this.run()), this.run().progress.totalDays], {
+    equal: sameRange,
   });
+  protected readonly growth = computed<Growth>(
+    () => {
+      const { rows, version } = this.slice();
+      version();
+      return { axis: 'x', upTo: rows.count > 0 ? rows.day(rows.count - 1) : this.xFull()[0], pen: this.pen() };
+    },
+    { equal: sameGrowth },
+  );
   protected readonly about = computed(() => plateAbout(this.run()));
   protected readonly state = computed(() => {
     const slice = this.slice();
@@ -70,10 +76,13 @@ export class SeriesPlate {
     return slice.reading() === null ? 'empty' : 'loading';
   });
   protected readonly busy = computed(() => {
-    const [reading, { rows }] = [this.slice().reading(), this.slice()];
-    if (this.slice().error() !== null)
-      return `Not read beyond ${formatModelDay(rows.day(rows.count - 1))}; what is drawn is good.`;
+    const reading = this.slice().reading();
     return reading && reading.of > 1 ? `Reading, ${reading.done} of ${reading.of} pieces` : '';
+  });
+  protected readonly partial = computed(() => {
+    const slice = this.slice();
+    if (slice.error() === null || this.curves().length === 0) return '';
+    return `Not read beyond ${formatModelDay(slice.rows.day(slice.rows.count - 1))}; what is drawn is good.`;
   });
   protected readonly lastGood = computed(
     () =>

@@ -91,6 +91,12 @@ export class CurvePlot extends PlotSurface {
     };
   }
 
+  protected override readInputs(): void {
+    this.curves();
+    this.growth();
+    this.axisUnit();
+  }
+
   protected override emptyHeight(): number {
     return this.wantedHeight();
   }

@@ -87,8 +87,8 @@ export class DataTableDialog {
 
   private describeThinning(): string {
     const parts: string[] = [];
-    if (this.rowStep > 1) parts.push(`every ${this.rowStep}th row`);
-    if (this.columnStep > 1) parts.push(`every ${this.columnStep}th column`);
+    if (this.rowStep > 1) parts.push(`one row in ${this.rowStep}`);
+    if (this.columnStep > 1) parts.push(`one column in ${this.columnStep}`);
     return parts.length ? `Shown here: ${parts.join(' and ')}; the data file holds all.` : '';
   }
 }

@@ -87,6 +87,18 @@ export class FieldPlot extends PlotSurface {
     };
   }
 
+  protected override readInputs(): void {
+    this.field();
+    this.limits();
+    this.growth();
+    this.land();
+    this.theory();
+    this.seaName();
+    this.sections();
+    this.moorings();
+    this.blankIsLand();
+  }
+
   protected override emptyHeight(): number {
     return this.wantedHeight();
   }

@@ -39,6 +39,8 @@ export class Plate {
   readonly error = input<unknown>(null);
   /** "Last good record: day 1 240", shown with an error. */
   readonly lastGood = input('');
+  /** What could not be read of a plot that stays: "Not read beyond day 600; what is drawn is good." */
+  readonly partial = input('');
   readonly source = input<PlateSource | null>(null);
   /** Who and what, for the notes and the file name: "Strong, run of …". */
   readonly about = input<string[]>([]);

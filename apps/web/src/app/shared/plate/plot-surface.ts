@@ -51,6 +51,7 @@ export abstract class PlotSurface {
   private readonly hairs = viewChild.required<ElementRef<SVGSVGElement>>('hairs');
 
   protected readonly width = signal(0);
+  private readonly seen = signal(false);
   protected readonly box = computed(() => (this.width() > 0 ? this.makeBox(this.width()) : null));
   protected readonly height = computed(() => this.box()?.height ?? this.emptyHeight());
   protected readonly inside = signal(false);
@@ -66,6 +67,8 @@ export abstract class PlotSurface {
   protected abstract emptyHeight(): number;
   protected abstract traces(box: PlotBox, palette: Palette): PlotTrace[];
   protected abstract overlay(box: PlotBox): OverlayModel;
+  /** Reads every signal that `traces` and `overlay` depend on, and computes nothing. */
+  protected abstract readInputs(): void;
   /** The nearest place that holds a value, or null. */
   protected abstract snap(at: Place): Place | null;
   protected abstract step(from: Place, dx: number, dy: number): Place;
@@ -92,7 +95,14 @@ export abstract class PlotSurface {
       const element = this.frameRef().nativeElement;
       const observer = new ResizeObserver(() => this.width.set(Math.round(element.clientWidth)));
       observer.observe(element);
-      destroy.onDestroy(() => observer.disconnect());
+      const viewed = new IntersectionObserver((entries) => this.seen.set(entries.at(-1)?.isIntersecting ?? false), {
+        rootMargin: '200px',
+      });
+      viewed.observe(element);
+      destroy.onDestroy(() => {
+        observer.disconnect();
+        viewed.disconnect();
+      });
       this.width.set(Math.round(element.clientWidth));
       void this.load();
     });
@@ -100,9 +110,9 @@ export abstract class PlotSurface {
       const box = this.box();
       this.palettes.theme();
       if (!box) return;
-      this.traces(box, this.palettes.of(this.palettes.theme()));
-      this.overlay(box);
-      untracked(() => this.drawing.ask());
+      this.readInputs();
+      // A plate that nobody sees is drawn when it comes into view.
+      if (this.seen()) untracked(() => this.drawing.ask());
     });
     effect(() => {
       const at = this.link().cursor();
@@ -123,7 +133,7 @@ export abstract class PlotSurface {
     this.problem.set('');
     try {
       this.plotly = await this.loader.load();
-      this.drawing.ask();
+      if (this.seen()) this.drawing.ask();
     } catch (error) {
       this.problem.set(error instanceof Error ? error.message : 'The plotting library could not be fetched.');
     }
