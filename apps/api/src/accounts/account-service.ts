@@ -78,7 +78,7 @@ export class AccountService {
       const still = await Person.findOne({ where: { id: person.id, state: 'active' }, transaction });
       if (still?.passwordHash !== person.passwordHash) throw new UnauthenticatedError(WRONG);
       const opened = await sessions.open(still, caller.address, options.forScript, transaction);
-      const by = { actor: { id: person.id, name: person.name } as Actor, address: caller.address };
+      const by = { actor: person, address: caller.address };
       const detail = options.forScript ? 'for a script' : '';
       await audit.record({ by, action: 'signed in', subject: email, detail }, transaction);
       return opened;
@@ -124,7 +124,7 @@ export class AccountService {
       if (!person || person.state !== 'active') refuseToken('Ask for a new one.');
       await withdrawTokens(person.id, ['reset', 'invitation'], this.now(), transaction);
       await person.update({ passwordHash }, { transaction });
-      const by = { actor: { id: person.id, name: person.name } as Actor, address: caller.address };
+      const by = { actor: person, address: caller.address };
       await audit.record({ by, action: 'set a new password', subject: person.email, detail: 'by link' }, transaction);
       await outbox.put(passwordChangedLetter(person), transaction);
       return sessions.endAllOf(person.id, 'password reset', transaction);
@@ -175,7 +175,7 @@ export class AccountService {
       if (person?.state !== 'invited') refuseToken('Ask an admin for a new one.');
       await withdrawTokens(row.personId, [row.purpose], this.now(), transaction);
       await person.update({ name, passwordHash, state: 'active' }, { transaction });
-      const by = { actor: { id: person.id, name } as Actor, address: caller.address };
+      const by = { actor: { id: person.id, name }, address: caller.address };
       await this.parts.audit.record({ by, action: 'accepted the invitation', subject: person.email }, transaction);
     });
   }

@@ -2,12 +2,12 @@ import { type AuditEntry, type Page, type PageQuery } from '@halfdeep/contracts'
 import { AuditRow } from '@halfdeep/store';
 import { type Transaction } from 'sequelize';
 import { containing } from '../http/list';
-import { type Caller } from '../policy/actor';
+import { type Actor } from '../policy/actor';
 
 /** What happened, for the record. */
 export interface AuditNote {
   /** Null or no actor in it: the system itself, or somebody who is not signed in. */
-  by: Caller | null;
+  by: { actor: Pick<Actor, 'id' | 'name'> | null; address: string } | null;
   /** In the past tense: "changed roles", "lowered the cap". */
   action: string;
   /** To what: a person's address, a run's label. */
