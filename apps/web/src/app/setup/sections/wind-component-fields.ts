@@ -27,7 +27,7 @@ export class WindComponentFields {
     { value: 'uniform', label: 'uniform' },
     { value: 'zonalBelt', label: 'zonal belt' },
     { value: 'gaussianPatch', label: 'Gaussian patch' },
-    { value: 'linearShear', label: 'cross-equatorial shear' },
+    { value: 'linearShear', label: 'equatorial shear' },
   ];
   protected readonly directions: Choice[] = [
     { value: 'eastward', label: 'eastward' },

@@ -57,7 +57,8 @@ export class WindSection {
   protected duplicate(index: number): void {
     const component = this.components()[index];
     if (!component) return;
-    const copy = { ...structuredClone(component), name: freshName(component.name || 'Wind', this.components()) };
+    const stem = component.name.replace(/ \d+$/, '') || 'Wind';
+    const copy = { ...structuredClone(component), name: freshName(stem, this.components()) };
     this.draft.insert('/wind/components', copy, index + 1);
   }
 }

@@ -1,4 +1,4 @@
-import { readDecimal, stepDecimal, writeDecimal } from './decimal-text';
+import { plainDecimal, readDecimal, stepDecimal, writeDecimal } from './decimal-text';
 
 describe('readDecimal', () => {
   it.each([
@@ -70,4 +70,10 @@ describe('stepDecimal', () => {
     expect(stepDecimal('abc', 1)).toBeNull();
     expect(stepDecimal('', 1)).toBeNull();
   });
+});
+
+it('writes a number without a power of ten for attributes', () => {
+  expect(plainDecimal(1e-13)).toBe('0.0000000000001');
+  expect(plainDecimal(-6371000)).toBe('-6371000');
+  expect(plainDecimal(NaN)).toBeNull();
 });

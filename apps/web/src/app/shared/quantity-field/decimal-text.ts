@@ -52,6 +52,12 @@ function dress(simple: string): string {
   return text.replace(/-/g, '\u2212');
 }
 
+/** A number without a power of ten, as attributes want it ("0.00000001"); null for what is no number. */
+export function plainDecimal(value: number | null | undefined): string | null {
+  if (value === null || value === undefined || !Number.isFinite(value)) return null;
+  return value.toLocaleString('en-US', { useGrouping: false, maximumFractionDigits: 20 });
+}
+
 export interface StepRule {
   min?: number;
   max?: number;

@@ -13,7 +13,7 @@ import { FormControl, ReactiveFormsModule } from '@angular/forms';
 import { type ErrorStateMatcher } from '@angular/material/core';
 import { MatFormFieldModule } from '@angular/material/form-field';
 import { MatInputModule } from '@angular/material/input';
-import { readDecimal, stepDecimal, writeDecimal } from './decimal-text';
+import { plainDecimal, readDecimal, stepDecimal, writeDecimal } from './decimal-text';
 
 /**
  * A number with its unit, and one line that says why it matters. The value is null while the field is empty and NaN
@@ -59,6 +59,7 @@ export class QuantityField {
     return text === null ? this.refusal() : `“${text}” is not a number. Write it like 12.5, −3 or 1e−8.`;
   });
   protected readonly matcher: ErrorStateMatcher = { isErrorState: () => this.problem() !== null };
+  protected readonly aria = plainDecimal;
   protected readonly valueNow = computed(() => {
     const value = this.value();
     return value !== null && Number.isFinite(value) ? value : null;
