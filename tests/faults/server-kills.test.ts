@@ -161,7 +161,7 @@ async function expectCalm(ids: string[]): Promise<void> {
 describe('killing the server', () => {
   it('with its workers: the next start goes on with running and waiting work, and nothing committed is lost', async () => {
     const [a, b, c] = await threeRuns();
-    const first = new Server(60);
+    const first = new Server(120);
     await until(() => [a, b].every((id) => (newest(id)?.saved ?? 0) > 0 && newest(id)!.frames > 10));
     const killed = first.end('SIGKILL');
     const before = workers();
@@ -187,7 +187,7 @@ describe('killing the server', () => {
 
   it('alone: its orphans save and end by themselves, and never write beside their successors', async () => {
     const ids = await threeRuns();
-    const first = new Server(60);
+    const first = new Server(120);
     await until(() => workers().length === 2 && workers().every(({ frames }) => frames > 5));
     await first.end('SIGKILL');
     const orphans = workers();
@@ -214,7 +214,7 @@ describe('killing the server', () => {
 
   it('politely: it saves what runs, and the next start goes on from there', async () => {
     const ids = await threeRuns();
-    const first = new Server(60);
+    const first = new Server(120);
     await until(() => workers().length === 2 && workers().every(({ frames }) => frames > 5));
     await first.end('SIGTERM');
     const saved = workers();

@@ -4,7 +4,7 @@ import { adoptStartState, runPaths } from '@halfdeep/store';
 import { Bench, bundle, recordsHash, removeBundle, type Result, resultOf, undisturbed, until } from './harness';
 import { tinySetup } from './tiny-setup';
 
-const setup = tinySetup(730);
+const setup = tinySetup(1460);
 let calm: Result;
 let worker: string;
 let bench: Bench | null = null;
@@ -26,7 +26,7 @@ const resume = async (runId: string) => {
 
 describe('a run that is interrupted on purpose', () => {
   it('stops at once, resumes, and comes to the same as one never stopped', async () => {
-    bench = await Bench.open(worker, { checkpointSeconds: 600 }, 60);
+    bench = await Bench.open(worker, { checkpointSeconds: 600 }, 250);
     const runId = await bench.add(setup);
     for (let stops = 0; stops < 3; stops++) {
       const before = await saved(runId);
@@ -43,7 +43,7 @@ describe('a run that is interrupted on purpose', () => {
   });
 
   it('is checkpointed and requeued when the cap is lowered, and comes to the same later', async () => {
-    bench = await Bench.open(worker, { checkpointSeconds: 600 }, 60);
+    bench = await Bench.open(worker, { checkpointSeconds: 600 }, 250);
     await bench.queue.setCap(2, 'drain');
     const first = await bench.add(setup);
     await until(() => bench!.queue.workers().length === 1);
