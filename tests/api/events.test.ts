@@ -144,7 +144,7 @@ describe('the event stream', () => {
     const heard = await listen(reviewer, [id]);
     await eventually(() => of(heard, 'state').length > 0);
     heard.stop();
-    expect(Object.values(of(heard, 'state')[0].run.can)).toEqual([false, false, false, false, false]);
+    expect(Object.values(of(heard, 'state')[0].run.can)).toEqual(Array<boolean>(6).fill(false));
   });
 
   it('ends with the session', async () => {
@@ -156,8 +156,20 @@ describe('the event stream', () => {
     await guest.get('/api/events').expect(401);
   });
 
-  it('refuses what nobody can watch', async () => {
+  it('refuses what is no run id', async () => {
     await hand.get('/api/events?runs=tides').expect(400);
-    await hand.get('/api/events?runs=00000000-0000-4000-8000-000000000000').expect(404);
+  });
+
+  it('leaves runs out that are gone, and tells of the others', async () => {
+    const gone = await newRun(hand, experiment.id, smallSetup(3));
+    await reach(hand, gone.id, 'finished');
+    await hand.delete(`/api/runs/${gone.id}`).expect(204);
+    const { id } = await newRun(hand, experiment.id, smallSetup(3));
+    const heard = await listen(hand, ['00000000-0000-4000-8000-000000000000', gone.id, id]);
+    await eventually(() => of(heard, 'state').some(({ run }) => run.state === 'finished'));
+    await eventually(() => of(heard, 'queue').length > 0);
+    heard.stop();
+    expect(new Set(of(heard, 'state').map(({ run }) => run.id))).toEqual(new Set([id]));
+    expect(new Set(of(heard, 'records').map(({ runId }) => runId))).toEqual(new Set([id]));
   });
 });

@@ -59,7 +59,7 @@ describe('the way of a run from a question to its fingerprint', () => {
     });
     expect(run.diskBytes).toBeGreaterThan(100_000);
     expect(run.lastState).toMatchObject({ kind: 'state', runId: run.id, startStep: direct.totalSteps });
-    expect(run.can).toEqual({ stop: false, resume: false, extend: true, derive: true, delete: true });
+    expect(run.can).toEqual({ stop: false, resume: false, extend: true, repeat: true, derive: true, delete: true });
   });
 
   it.each(VARIABLES)('serves maps of %s as the core derives them, bit for bit', async (variable) => {

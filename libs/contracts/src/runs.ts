@@ -1,4 +1,5 @@
 import * as z from 'zod';
+import { oneLine } from './one-line';
 import { personRefSchema } from './people';
 import { setupSchema, startStateSchema } from './setup-schema';
 
@@ -87,6 +88,8 @@ export const runSummarySchema = z
       stop: z.boolean(),
       resume: z.boolean(),
       extend: z.boolean(),
+      /** Queue the same setup once more, to see whether the fingerprint comes out the same. */
+      repeat: z.boolean(),
       derive: z.boolean(),
       delete: z.boolean(),
     }),
@@ -109,7 +112,7 @@ export type Run = RunSummary & {
   lastState: z.infer<typeof startStateSchema> | null;
 };
 
-const label = z.string().trim().min(1, 'A run needs a label.').max(80, 'A label has at most 80 characters.');
+const label = oneLine(80, 'A label').min(1, 'A run needs a label.');
 export const newRunSchema = z.strictObject({
   label,
   setup: setupSchema,

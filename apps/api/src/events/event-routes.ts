@@ -4,7 +4,6 @@ import { type Response, Router } from 'express';
 import { filter, interval, last, map, merge, type Observable, share, take, takeUntil, timer } from 'rxjs';
 import * as z from 'zod';
 import { type AccessRevoked } from '../accounts/session-service';
-import { NotFoundError } from '../http/errors';
 import { route } from '../http/route';
 import { type Actor } from '../policy/actor';
 import { type EventHub } from './event-hub';
@@ -49,15 +48,15 @@ export function eventRoutes(services: EventRouteServices): Router {
       action: 'events.watch',
       summary:
         'Server-sent events state, progress, records (of ?runs=a,b) and queue. Begins, with or without Last-Event-ID, ' +
-        'with how everything stands, so that nothing is missed; ends with the session',
+        'with how everything stands, so that nothing is missed; leaves out runs that are gone; ends with the session',
       query,
       media: 'text/event-stream',
     },
     async ({ query: { runs }, actor, res }) => {
+      // A run that was deleted in another tab must not end the stream for everything else that this one watches.
       const there = new Set((await Run.findAll({ where: { id: runs }, attributes: ['id'] })).map((run) => run.id));
-      const missing = runs.filter((id) => !there.has(id));
-      if (missing.length > 0) throw new NotFoundError(`There is no run ${missing.join(', ')}.`);
-      stream(res, services, services.events.watch(actor, runs), actor);
+      const known = runs.filter((id) => there.has(id));
+      stream(res, services, services.events.watch(actor, known), actor);
     },
   );
   return router;

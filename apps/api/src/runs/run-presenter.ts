@@ -55,6 +55,7 @@ export function runRights(run: Pick<Run, 'ownerId' | 'state' | 'failure'>, actor
     stop: can(actor, 'run.stop', subject),
     resume: can(actor, 'run.resume', subject) && resumable(run),
     extend: can(actor, 'run.extend', subject),
+    repeat: can(actor, 'run.repeat', subject),
     derive: can(actor, 'run.queue', subject),
     delete: can(actor, 'run.delete', subject),
   };

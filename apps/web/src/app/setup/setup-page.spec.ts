@@ -60,7 +60,7 @@ const run = (setup: Setup) => ({
   fingerprint: null,
   grid: { nx: 240, ny: 140 },
   diskBytes: null,
-  can: { stop: false, resume: false, extend: true, derive: true, delete: false },
+  can: { stop: false, resume: false, extend: true, repeat: true, derive: true, delete: false },
   setup,
   preflight: {},
   lastState: null,

@@ -33,7 +33,7 @@ export function aRun(over: Partial<RunSummary> = {}): RunSummary {
     fingerprint: null,
     grid: { nx: 300, ny: 175 },
     diskBytes: null,
-    can: { stop: true, resume: false, extend: false, derive: true, delete: true },
+    can: { stop: true, resume: false, extend: false, repeat: false, derive: true, delete: true },
     ...over,
   };
 }
