@@ -115,7 +115,13 @@ describe('who may do what with an experiment and its runs', () => {
   it('offers what it allows: `can` says the same as the routes', async () => {
     const seen = async (hand: Hand, run: Run) => ((await hand.get(`/api/runs/${run.id}`)).body as Run).can;
     const nothing = { stop: false, resume: false, extend: false, repeat: false, derive: false, delete: false };
-    expect(await seen(hands.owner, finished)).toEqual({ ...nothing, extend: true, repeat: true, derive: true, delete: true });
+    expect(await seen(hands.owner, finished)).toEqual({
+      ...nothing,
+      extend: true,
+      repeat: true,
+      derive: true,
+      delete: true,
+    });
     expect(await seen(hands.owner, running)).toEqual({ ...nothing, stop: true, derive: true });
     for (const who of ['modeller', 'reviewer'] as const) {
       expect(await seen(hands[who], finished)).toEqual(nothing);
