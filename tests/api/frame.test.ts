@@ -10,7 +10,7 @@ import request from 'supertest';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { VERSION } from '../../apps/api/src/health/version';
 import { openApiPath } from '../../apps/api/src/http/openapi';
-import { script, somebody, startDeskApi, type DeskApi, type Script } from './desk-harness';
+import { PASSWORD, script, somebody, startDeskApi, type DeskApi, type Script } from './desk-harness';
 
 let api: DeskApi;
 let modeller: Script;
@@ -70,6 +70,38 @@ describe('problem details', () => {
     await modeller.get('/api/runs?pageSize=1000').expect(400);
   });
 
+  it('take an address or a search that is none for the caller’s mistake', async () => {
+    const broken = await modeller.get('/api/experiments/%').expect(400);
+    expect(broken.body.detail).toContain('%');
+    await request(api.server).get('/%').expect(400);
+    const unseen = await modeller.get('/api/runs?q=a%00b').expect(400);
+    expect(unseen.body.errors).toEqual([
+      { pointer: '/q', detail: 'What is searched for is one line, without invisible characters.' },
+    ]);
+    const question = 'Does a \u0000 in the middle do harm?';
+    const made = await modeller.post('/api/experiments', { question, notes: '\u0000' }).expect(422);
+    expect((made.body as { errors: { pointer: string }[] }).errors.map(({ pointer }) => pointer)).toEqual([
+      '/question',
+      '/notes',
+    ]);
+  });
+
+  it('say in words what belongs in a field, what arrived, and never the value of a text', async () => {
+    const body = { email: 'a@desk.example', password: ['hunter'], admin: true };
+    const answer = await request(api.server).post('/api/session').send(body).expect(422);
+    expect(answer.body.errors).toEqual([
+      { pointer: '/password', detail: 'A text belongs here; a list arrived.' },
+      { pointer: '', detail: 'Nothing here is called “admin”.' },
+    ]);
+    expect(answer.body.detail).toContain('So is one more place.');
+    expect(answer.text).not.toContain('hunter');
+    const paged = await modeller.get('/api/runs?page=0&pageSize=101').expect(400);
+    expect((paged.body as { errors: { detail: string }[] }).errors.map(({ detail }) => detail)).toEqual([
+      'This must be at least 1; 0 arrived.',
+      'This must be at most 100; 101 arrived.',
+    ]);
+  });
+
   it('keep what failed inside to the log', async () => {
     const find = Experiment.findByPk.bind(Experiment);
     Experiment.findByPk = () => Promise.reject(new Error('SQLITE_CORRUPT: secret path /srv/x'));
@@ -123,6 +155,16 @@ describe('Idempotency-Key', () => {
     expect(await Experiment.count({ where: body })).toBe(3);
     expect(await RepeatedRequest.count({ where: { key: 'shared' } })).toBe(1); // old ones are swept
     api.clock.now = started;
+  });
+
+  it('keeps nothing of a request that carries a password or brings a token', async () => {
+    const { email } = await somebody(api, 'scripted', 'modeller');
+    const signIn = () =>
+      modeller.post('/api/session?token=1', { email, password: PASSWORD }).set('idempotency-key', 'sign-in');
+    const [one, other] = [await signIn().expect(200), await signIn().expect(200)];
+    expect(one.body.accessToken).toBeTruthy();
+    expect(other.headers['set-cookie']).toHaveLength(3); // signed in, not only told so
+    expect(await RepeatedRequest.count({ where: { key: 'sign-in' } })).toBe(0);
   });
 
   it('does not keep refusals: put right, the same key works', async () => {

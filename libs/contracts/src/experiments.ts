@@ -1,4 +1,5 @@
 import * as z from 'zod';
+import { isPlain } from './one-line';
 import { personRefSchema } from './people';
 import { queueSummarySchema, runSummarySchema } from './runs';
 import { setupSchema } from './setup-schema';
@@ -7,8 +8,12 @@ const question = z
   .string()
   .trim()
   .min(8, 'A question has at least 8 characters.')
-  .max(300, 'A question has at most 300 characters.');
-const notes = z.string().max(20_000, 'Notes have at most 20 000 characters.');
+  .max(300, 'A question has at most 300 characters.')
+  .refine(isPlain, 'A question has no control characters.');
+const notes = z
+  .string()
+  .max(20_000, 'Notes have at most 20 000 characters.')
+  .refine(isPlain, 'Notes have no control characters.');
 export const newExperimentSchema = z.strictObject({ question, notes: notes.default('') });
 export const experimentPatchSchema = z.strictObject({ question: question.optional(), notes: notes.optional() });
 

@@ -1,10 +1,11 @@
 import * as z from 'zod';
+import { oneLine } from './one-line';
 
 export const pageQuerySchema = z.object({
   page: z.coerce.number().int().min(1).default(1),
   pageSize: z.coerce.number().int().min(1).max(100).default(20),
   sort: z.string().max(40).optional(),
-  q: z.string().trim().max(200).optional(),
+  q: oneLine(200, 'What is searched for').optional(),
 });
 export type PageQuery = z.infer<typeof pageQuerySchema>;
 

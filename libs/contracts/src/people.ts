@@ -1,4 +1,5 @@
 import * as z from 'zod';
+import { oneLine } from './one-line';
 
 export const ROLES = ['modeller', 'reviewer', 'admin'] as const;
 export const roleSchema = z.enum(ROLES);
@@ -8,6 +9,9 @@ export const personRefSchema = z.object({ id: z.uuid(), name: z.string() }).meta
 export type PersonRef = z.infer<typeof personRefSchema>;
 
 const email = z.email('An e-mail address looks like name@place.example.').max(200);
+const personName = oneLine(80, 'A name').min(1, 'A name is missing.');
+const PART_OF_A_LINK = 'This is not the whole link: open it as it came in the mail.';
+const linkToken = z.string().min(20, PART_OF_A_LINK).max(200, PART_OF_A_LINK);
 export const MIN_PASSWORD_LENGTH = 12;
 export const passwordSchema = z
   .string()
@@ -42,14 +46,14 @@ export type Session = z.infer<typeof sessionSchema>;
 export const passwordResetRequestSchema = z.strictObject({ email });
 /** POST /api/password-resets/redeem. */
 export const passwordResetRedeemSchema = z.strictObject({
-  token: z.string().min(20).max(200),
+  token: linkToken,
   password: passwordSchema,
 });
 /** POST /api/invitations/look → what the invitation says; POST /api/invitations/redeem accepts it. */
-export const invitationLookSchema = z.strictObject({ token: z.string().min(20).max(200) });
+export const invitationLookSchema = z.strictObject({ token: linkToken });
 export const invitationRedeemSchema = z.strictObject({
-  token: z.string().min(20).max(200),
-  name: z.string().trim().min(1, 'A name is missing.').max(80),
+  token: linkToken,
+  name: personName,
   password: passwordSchema,
   /** The first admin's own, whose invitation names no address; ignored in every other. */
   email: email.optional(),
@@ -82,7 +86,7 @@ export type Person = z.infer<typeof personSchema>;
 /** POST /api/admin/people invites; the mail carries the link. */
 export const inviteSchema = z.strictObject({
   email,
-  name: z.string().trim().min(1, 'A name is missing.').max(80),
+  name: personName,
   roles: z.array(roleSchema).min(1, 'Choose at least one role.'),
 });
 export const personPatchSchema = z.strictObject({

@@ -77,12 +77,12 @@ describe('the setup schema', () => {
     [
       'below zero',
       (s) => (s.friction.viscosityM2S = -1),
-      '/friction/viscosityM2S Laplacian viscosity must be between 0 and 1000000 m²/s; −1 arrived.',
+      '/friction/viscosityM2S Laplacian viscosity must be between 0 and 1\u202f000\u202f000 m²/s; −1 arrived.',
     ],
     [
       'infinity',
       (s) => (s.friction.viscosityM2S = Infinity),
-      '/friction/viscosityM2S Laplacian viscosity must be between 0 and 1000000 m²/s; Infinity arrived.',
+      '/friction/viscosityM2S Laplacian viscosity must be between 0 and 1\u202f000\u202f000 m²/s; Infinity arrived.',
     ],
     [
       'odd steps',

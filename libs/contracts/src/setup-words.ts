@@ -11,9 +11,11 @@ export function arrived(input: unknown): string {
   return text.length > 60 ? `${text.slice(0, 60)}…` : text;
 }
 
-/** A number with a true minus sign. */
+/** A number with a true minus sign, and narrow no-break spaces between thousands from 10 000. */
 function spoken(value: number): string {
-  return String(value).replace('-', '−');
+  const [whole = '', ...rest] = String(value).split(/(?=[.e])/);
+  const grouped = /^-?\d{5,}$/.test(whole) ? whole.replace(/\B(?=(\d{3})+$)/g, '\u202f') : whole;
+  return [grouped, ...rest].join('').replace(/-/g, '−');
 }
 
 /** A number inside a hard limit of `LIMITS`, or a narrower range. */

@@ -12,6 +12,8 @@ const SECRET = [
   'req.headers.authorization',
   'req.headers.cookie',
   'res.headers["set-cookie"]',
+  // What a failing statement carried: hashes, sealed links, addresses.
+  ...['err', 'err.parent', 'err.original'].flatMap((error) => [`${error}.sql`, `${error}.parameters`]),
 ];
 
 /** One JSON line an event, on standard error: standard output is for the operator. Secrets are blanked. */

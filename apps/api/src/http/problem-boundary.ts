@@ -12,6 +12,9 @@ export function sendProblem(res: Response, problem: Problem): void {
 /** Errors that express and its parsers throw carry a status and `expose`: their cause is in the request. */
 function refusalOf(error: unknown): RefusedError | null {
   if (error instanceof RefusedError) return error;
+  // Thrown by express itself for an address like “/%”, and without `expose`.
+  if (error instanceof URIError)
+    return new InputError('The address is not one: a % in it is not followed by two digits.');
   const known = error as { status?: unknown; type?: unknown; expose?: unknown; limit?: number } | null;
   if (known?.expose !== true || typeof known.status !== 'number' || known.status >= 500) return null;
   if (known.type === 'entity.parse.failed') return new InputError('The body is not valid JSON.');

@@ -1,6 +1,6 @@
 import { type Request, type Response, type Router } from 'express';
 import type * as z from 'zod';
-import { authorise, authoriseRole, needsSubject, policyRows } from '../policy/policy';
+import { authorise, authoriseRole, isOpen, needsSubject, policyRows } from '../policy/policy';
 import { type Actor, type Caller, type PolicySubject } from '../policy/actor';
 import { type Action } from '../policy/policy-table';
 import { InputError, UnauthenticatedError } from './errors';
@@ -129,7 +129,9 @@ export function route<
       if (frame.checkAnswers && record.answer) record.answer.parse(JSON.parse(JSON.stringify(answer)));
       return { status: record.status, answer };
     };
-    const key = record.method === 'post' ? req.get('idempotency-key') : undefined;
+    // What is open to anyone carries passwords and answers with tokens: of such requests nothing is kept.
+    const kept = record.method === 'post' && !isOpen(record.action);
+    const key = kept ? req.get('idempotency-key') : undefined;
     const done =
       key !== undefined && caller.actor
         ? await frame.answerOnce.run(
