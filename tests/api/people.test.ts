@@ -152,6 +152,31 @@ describe('an admin', () => {
     expect(answers.map((answer) => answer.status)).toContain(200);
     expect(await PersonRole.count({ where: { role: 'admin' } })).toBeGreaterThanOrEqual(1);
   });
+
+  it('who was demoted while a request of theirs waited cannot take the role back with it', async () => {
+    const [loser, other] = [await somebody(api, 'Loser', 'admin'), await somebody(api, 'Other', 'admin')];
+    const token = await script(api, loser);
+    const write = api.services.desk.write.bind(api.services.desk);
+    let demoted = false;
+    // Between the decision on the request and its turn to write, another admin's change comes first.
+    api.services.desk.write = async (work) => {
+      if (!demoted) {
+        demoted = true;
+        await write((transaction) =>
+          PersonRole.update({ role: 'modeller' }, { where: { personId: loser.id }, transaction }),
+        );
+      }
+      return write(work);
+    };
+    try {
+      const answer = await token.patch(`/api/admin/people/${loser.id}`, { roles: ['modeller', 'admin'] }).expect(403);
+      expect(answer.body.detail).toContain('no longer an admin');
+    } finally {
+      api.services.desk.write = write;
+    }
+    expect(await PersonRole.count({ where: { personId: loser.id, role: 'admin' } })).toBe(0);
+    expect(await PersonRole.count({ where: { personId: other.id, role: 'admin' } })).toBe(1);
+  });
 });
 
 describe('lists', () => {
@@ -172,6 +197,7 @@ describe('lists', () => {
         ({ name }) => name,
       );
     expect(await found('CLEO')).toEqual(['Cleo']);
+    for (const typed of ['Åsa', 'åsa', 'ÅSA', 'ås']) expect(await found(typed)).toEqual(['Åsa']);
     expect(await found('_')).toEqual(['d_ve']); // a character like any other
     expect(await found('%')).toEqual(['50 %']);
     expect(await found(`' OR 1=1 --`)).toEqual([]);

@@ -5,6 +5,7 @@ import { AuditRow, Mail, OneUseToken, Person, RefreshToken, Session } from '@hal
 import request, { type Response } from 'supertest';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { PasswordHasher } from '../../apps/api/src/accounts/password-hasher';
+import { TRADE_GRACE_MS } from '../../apps/api/src/accounts/session-service';
 import {
   browser,
   NEW_PASSWORD,
@@ -163,11 +164,44 @@ describe('browser session', () => {
     const second = await agent.post('/api/session/refresh').send({}).expect(204);
     expect(valueOf(cookie(second, 'halfdeep_refresh'))).not.toBe(stolen);
     await agent.get('/api/me').expect(200);
+    api.clock.now = new Date(api.clock.now.getTime() + TRADE_GRACE_MS + 1);
     await request(api.server).post('/api/session/refresh').set('cookie', stolen).send({}).expect(401);
     await agent.get('/api/me').expect(401); // the owner too: one of the two is a thief
     await agent.post('/api/session/refresh').send({}).expect(401);
     const why = await AuditRow.findOne({ where: { subject: email, action: 'ended a session' } });
     expect(why?.detail).toContain('second time');
+  });
+
+  it('goes on for two tabs that send the same refresh token at once: both get the one successor', async () => {
+    const { email } = await somebody(api, 'two-tabs', 'modeller');
+    const first = await signIn(email).expect(200);
+    const shared = valueOf(cookie(first, 'halfdeep_refresh'));
+    const trade = (token: string) => request(api.server).post('/api/session/refresh').set('cookie', token).send({});
+    const [one, other] = await Promise.all([trade(shared).expect(204), trade(shared).expect(204)]);
+    const successor = valueOf(cookie(one, 'halfdeep_refresh'));
+    expect(successor).not.toBe(shared);
+    expect(valueOf(cookie(other, 'halfdeep_refresh'))).toBe(successor);
+    await request(api.server)
+      .get('/api/me')
+      .set('cookie', valueOf(cookie(other, 'halfdeep_access')))
+      .expect(200);
+    // Once the successor has been used, the token before it is a copy, however early it comes.
+    const third = await trade(successor).expect(204);
+    await trade(shared).expect(401);
+    await trade(valueOf(cookie(third, 'halfdeep_refresh'))).expect(401);
+  });
+
+  it('that has ended is not opened again by a token traded a moment ago', async () => {
+    const { email } = await somebody(api, 'gone', 'modeller');
+    const first = await signIn(email).expect(200);
+    const shared = valueOf(cookie(first, 'halfdeep_refresh'));
+    const trade = () => request(api.server).post('/api/session/refresh').set('cookie', shared).send({});
+    const second = await trade().expect(204);
+    await request(api.server)
+      .delete('/api/session')
+      .set('cookie', valueOf(cookie(second, 'halfdeep_refresh')))
+      .expect(204);
+    await trade().expect(401);
   });
 
   it('ends at once when signing out, although the access token has time left', async () => {

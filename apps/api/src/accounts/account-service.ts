@@ -4,7 +4,7 @@ import { OneUseToken, Person, PersonRole, type DeskDatabase } from '@halfdeep/st
 import { type Logger } from 'pino';
 import { Op, type Transaction } from 'sequelize';
 import { type AuditTrail } from '../audit/audit-trail';
-import { ConflictError, InputError, UnauthenticatedError } from '../http/errors';
+import { ConflictError, InputError, RefusedError, UnauthenticatedError } from '../http/errors';
 import { type Outbox } from '../mail/outbox';
 import { type Actor, type Caller } from '../policy/actor';
 import { passwordChangedLetter, resetLetter } from './account-mails';
@@ -223,5 +223,5 @@ function refuseCommon(password: string): void {
 
 function refuseToken(advice: string): never {
   const detail = `This link is no longer good: it was used, replaced, or is too old. ${advice}`;
-  throw new InputError(detail, [{ pointer: '/token', detail }], 422);
+  throw new RefusedError(422, 'This link does not open anything now', detail, [{ pointer: '/token', detail }]);
 }

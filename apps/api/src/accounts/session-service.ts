@@ -19,6 +19,11 @@ export const SCRIPT_ACCESS_LIFE_S = 60 * 60;
 export const REFRESH_LIFE_MS = 14 * DAY_MS;
 /** And so is a session, however often it is renewed. */
 const SESSION_LIFE_MS = 60 * DAY_MS;
+/**
+ * How long after a trade the traded token still gets what it was traded for: two tabs that wake together send the same
+ * token where they cannot wait for each other (browsers have no locks on plain HTTP), and an answer may be lost on the way.
+ */
+export const TRADE_GRACE_MS = 10_000;
 
 /** A session that has ended; its event streams must end too. */
 export interface AccessRevoked {
@@ -35,14 +40,25 @@ export interface SessionTokens {
   refresh: string;
 }
 
+/** What a refresh token was just traded for. */
+interface Trade {
+  tokens: SessionTokens;
+  /** ms */
+  at: number;
+}
+
 /**
  * Sessions: each a family of refresh tokens of which only the newest is good. Using an older one means that somebody has
- * a copy, and ends the family. Every request asks here whether its session still lives.
+ * a copy, and ends the family; only the last one traded gets its successor once more within `TRADE_GRACE_MS`. A thief who
+ * is that quick gains nothing: of the one successor, too, only the first use is good. Every request asks here whether its
+ * session still lives.
  */
 export class SessionService {
   private readonly revoked = new Subject<AccessRevoked>();
   /** Every session that ends, after that is committed. Event streams of the session close when they hear it. */
   readonly accessRevoked$ = this.revoked.asObservable();
+  /** By the hash of the token that was given. In memory, since the database keeps no token; forgotten after the grace. */
+  private readonly justTraded = new Map<string, Trade>();
 
   constructor(
     private readonly desk: DeskDatabase,
@@ -80,13 +96,19 @@ export class SessionService {
     return { sessionId: session.id, access, accessExpiresAt, refresh };
   }
 
-  /** Trades a refresh token for new tokens. Throws 401; a token that was traded before ends its session. */
+  /**
+   * Trades a refresh token for new tokens. Throws 401; a token that was traded before ends its session, unless that was
+   * a moment ago and the successor is unused: then it gets the same tokens again.
+   */
   async refresh(token: string, caller: Caller): Promise<SessionTokens> {
+    const hash = hashToken(token);
     const traded = await this.desk.write(async (transaction) => {
-      const row = await RefreshToken.findByPk(hashToken(token), { transaction });
+      const row = await RefreshToken.findByPk(hash, { transaction });
       const session = row && (await this.live(row.sessionId, transaction));
       if (!row || !session) return null;
       if (row.rotatedAt) {
+        const tokens = await this.tradedJustNow(hash, transaction);
+        if (tokens) return { tokens };
         await this.audit.record(
           {
             by: { actor: null, address: caller.address },
@@ -101,11 +123,26 @@ export class SessionService {
       if (row.issuedAt.getTime() + REFRESH_LIFE_MS <= this.now().getTime()) return null;
       await row.update({ rotatedAt: this.now() }, { transaction });
       await session.person.update({ lastSeenAt: this.now() }, { transaction });
-      return { tokens: await this.issue(session, ACCESS_LIFE_S, transaction) };
+      const tokens = await this.issue(session, ACCESS_LIFE_S, transaction);
+      this.rememberTrade(hash, tokens);
+      return { tokens };
     });
     if (traded?.tokens) return traded.tokens;
     if (traded?.reused) await this.end(traded.reused.id, 'token reused');
     throw new UnauthenticatedError();
+  }
+
+  private rememberTrade(hash: string, tokens: SessionTokens): void {
+    this.justTraded.set(hash, { tokens, at: this.now().getTime() });
+    setTimeout(() => this.justTraded.delete(hash), TRADE_GRACE_MS).unref();
+  }
+
+  /** What a token was traded for, if that was within the grace and nobody has used the successor yet. */
+  private async tradedJustNow(hash: string, transaction: Transaction): Promise<SessionTokens | null> {
+    const trade = this.justTraded.get(hash);
+    if (!trade || this.now().getTime() - trade.at > TRADE_GRACE_MS) return null;
+    const successor = await RefreshToken.findByPk(hashToken(trade.tokens.refresh), { transaction });
+    return successor && !successor.rotatedAt ? trade.tokens : null;
   }
 
   /** The session with its person and their roles, if it lives and they may sign in. */

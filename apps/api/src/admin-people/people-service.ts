@@ -7,7 +7,7 @@ import { issueToken, withdrawTokens } from '../accounts/one-use-tokens';
 import { rolesOf } from '../accounts/roles-of';
 import { type AccessRevoked, type SessionService } from '../accounts/session-service';
 import { type AuditTrail } from '../audit/audit-trail';
-import { ConflictError, InputError, NotFoundError } from '../http/errors';
+import { ConflictError, ForbiddenError, InputError, NotFoundError } from '../http/errors';
 import { containing } from '../http/list';
 import { type Outbox } from '../mail/outbox';
 import { type Actor, type Caller } from '../policy/actor';
@@ -64,6 +64,7 @@ export class PeopleService {
   async invite(who: { email: string; name: string; roles: Role[] }, by: SignedInCaller): Promise<PersonDto> {
     const email = who.email.toLowerCase();
     const invited = await this.parts.desk.write(async (transaction) => {
+      await refuseFormerAdmin(by, transaction);
       const known = await Person.findOne({ where: { email }, transaction });
       if (known && known.state !== 'invited')
         throw new ConflictError(
@@ -110,6 +111,7 @@ export class PeopleService {
     by: SignedInCaller,
   ): Promise<PersonDto> {
     const { changed, ended } = await this.parts.desk.write(async (transaction) => {
+      await refuseFormerAdmin(by, transaction);
       const person = await find(personId, transaction);
       const over: AccessRevoked[] = [];
       if (roles && !sameRoles(roles, rolesOf(person)))
@@ -180,6 +182,16 @@ async function setRoles(personId: string, roles: readonly Role[], transaction: T
     [...new Set(roles)].map((role) => ({ personId, role })),
     { transaction },
   );
+}
+
+/**
+ * Whoever was an admin when the request arrived may have lost that while it waited for its turn: a right that was just
+ * taken must not be given back by its former holder.
+ */
+async function refuseFormerAdmin({ actor }: SignedInCaller, transaction: Transaction): Promise<void> {
+  const sender = await Person.findByPk(actor.id, { include: ['roleRows'], transaction });
+  if (sender?.state !== 'active' || !rolesOf(sender).includes('admin'))
+    throw new ForbiddenError('You are no longer an admin: that was changed while this request waited.');
 }
 
 /** Somebody must remain who can invite people and open accounts. */

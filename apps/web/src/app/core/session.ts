@@ -84,7 +84,7 @@ export class Session {
     return this.refreshing;
   }
 
-  // A refresh token is good once: a second tab that sent it too would end the session for both.
+  // A refresh token is good once. Where tabs cannot wait for each other, the server forgives a second use within seconds.
   private async tradeInTurn(): Promise<boolean> {
     const asked = Date.now();
     const locks = (navigator as { locks?: LockManager }).locks; // missing on plain HTTP, save for this machine itself
