@@ -1,7 +1,7 @@
 // The server as a process: what it says, what it refuses, how it stops.
 import { spawn, type ChildProcess } from 'node:child_process';
 import { once } from 'node:events';
-import { mkdir, mkdtemp, readdir, rm, writeFile } from 'node:fs/promises';
+import { chmod, mkdir, mkdtemp, readdir, rm, stat, writeFile } from 'node:fs/promises';
 import { createServer, type AddressInfo } from 'node:net';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
@@ -149,5 +149,37 @@ describe('the server', () => {
     const refused = start();
     expect(await refused.exit).toBe(1);
     expect(refused.said()).toContain(`${join(varFolder, 'secrets.json')} does not hold this server's secrets.`);
+  });
+
+  it('makes a folder that is missing, and keeps everything in it from other users', async () => {
+    const folder = join(varFolder, 'not', 'there yet');
+    const first = start({ HALFDEEP_VAR: folder });
+    await address(first);
+    expect((await stat(folder)).mode & 0o777).toBe(0o700);
+    const names = await readdir(folder);
+    expect(names).toEqual(expect.arrayContaining(['desk.sqlite', 'secrets.json']));
+    for (const name of names) expect([name, (await stat(join(folder, name))).mode & 0o077]).toEqual([name, 0]);
+  });
+
+  it('says so when nothing can be kept where it is told to', async () => {
+    const file = join(varFolder, 'file');
+    await writeFile(file, '');
+    const onFile = start({ HALFDEEP_VAR: file });
+    expect(await onFile.exit).toBe(1);
+    expect(onFile.said()).toBe(
+      `Halfdeep does not start.\nNothing can be kept in ${file}: it is a file, not a folder. ` +
+        'Set HALFDEEP_VAR to a folder of your own.\n',
+    );
+    const below = start({ HALFDEEP_VAR: join(file, 'deeper') });
+    expect(await below.exit).toBe(1);
+    expect(below.said()).toContain('a part of its path is a file');
+  });
+
+  it.skipIf(process.getuid?.() === 0)('says so when the folder can only be read', async () => {
+    await chmod(varFolder, 0o500);
+    const refused = start();
+    expect(await refused.exit).toBe(1);
+    expect(refused.said()).toContain(`Nothing can be kept in ${varFolder}: this user may not write there.`);
+    await chmod(varFolder, 0o700);
   });
 });

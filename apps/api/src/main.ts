@@ -1,4 +1,4 @@
-import { existsSync, mkdirSync, readFileSync } from 'node:fs';
+import { existsSync, readFileSync } from 'node:fs';
 import { createServer, type RequestListener, type Server } from 'node:http';
 import { type AddressInfo } from 'node:net';
 import { dirname, join } from 'node:path';
@@ -9,6 +9,7 @@ import { queueDemonstration } from './demo/demonstration';
 import { DEMO_MODELLER, prepareAccounts, type FirstStartNews } from './first-start';
 import { claimFolder } from './one-server';
 import { readSettings, SettingsError, type Settings } from './settings';
+import { prepareVarFolder } from './var-folder';
 
 /** A stop that takes longer than this leaves the open connections to themselves, ms. */
 const PATIENCE_MS = 10_000;
@@ -88,7 +89,9 @@ interface Running {
 async function start(): Promise<Running> {
   const project = projectFolder();
   const settings = readSettings(process.env, project);
-  mkdirSync(settings.varFolder, { recursive: true });
+  // What the server and its workers make is for the server's own user: the desk holds addresses and password hashes.
+  process.umask(0o077);
+  prepareVarFolder(settings.varFolder);
   const giveBack = await claimFolder(settings.varFolder);
   let handler: RequestListener = stillStarting;
   const server = createServer((req, res) => handler(req, res));
