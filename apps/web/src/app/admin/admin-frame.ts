@@ -32,8 +32,8 @@ import { RouterLink, RouterLinkActive, RouterOutlet } from '@angular/router';
       .contents a {
         border-left: 0;
         border-bottom: 3px solid transparent;
-        padding: 4px 10px 4px 0;
-        margin: 0;
+        padding: 4px 0;
+        margin: 0 14px 0 0;
         white-space: nowrap;
       }
       .contents a[aria-current] {

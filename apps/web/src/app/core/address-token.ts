@@ -18,13 +18,17 @@ export class AddressToken {
    * changes no more than the part behind the #, and is taken up too.
    */
   follow(): Signal<string | null> {
-    const token = signal(this.take());
+    // Not told apart by value: the same link opened once more is news, too.
+    const token = signal(this.take(), { equal: () => false });
     this.router.events
       .pipe(
         filter((event) => event instanceof NavigationEnd || event instanceof NavigationSkipped),
         takeUntilDestroyed(),
       )
-      .subscribe(() => token.update((last) => this.take() ?? last));
+      .subscribe(() => {
+        const taken = this.take();
+        if (taken) token.set(taken);
+      });
     return token.asReadonly();
   }
 

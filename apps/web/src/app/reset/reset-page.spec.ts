@@ -80,4 +80,22 @@ describe('ResetPage', () => {
     await (await page.loader.getHarness(MatButtonHarness.with({ text: 'Ask for another link' }))).click();
     expect(page.text()).toContain('Where shall the link go?');
   });
+
+  it('says that the link was used when it is opened again in the tab that used it', async () => {
+    const page = await open(`/reset#${TOKEN}`);
+    await (await page.loader.getHarness(MatInputHarness)).setValue('several words in a row');
+    await (await page.loader.getHarness(MatButtonHarness.with({ text: 'Set the password' }))).click();
+    page.server.expectOne('/api/password-resets/redeem').flush('');
+    await page.settle();
+    await page.harness.navigateByUrl(`/reset#${TOKEN}`);
+    await page.settle();
+    expect(page.text()).toContain('This link was used');
+    expect(page.text()).not.toContain('Choose a password');
+    expect(page.address()).toBe('/reset');
+    await (await page.loader.getHarness(MatButtonHarness.with({ text: 'Ask for another link' }))).click();
+    expect(page.text()).toContain('Where shall the link go?');
+    await page.harness.navigateByUrl(`/reset#${TOKEN.toLowerCase()}`);
+    await page.settle();
+    expect(page.text()).toContain('Choose a password');
+  });
 });

@@ -40,9 +40,11 @@ export class ResetPage {
   protected readonly busy = signal(false);
   protected readonly problem = signal<ApiProblem | null>(null);
   protected readonly shown = signal<readonly string[]>([]);
-  protected readonly done = linkedSignal<string | null, 'asked' | 'changed' | null>({
-    source: this.fromAddress,
-    computation: () => null,
+  /** The token that set a password in this tab: its link may be opened once more, by the mail or by going back. */
+  private spent: string | null = null;
+  protected readonly done = linkedSignal<'asked' | 'changed' | 'spent' | null>(() => {
+    const token = this.fromAddress();
+    return token !== null && token === this.spent ? 'spent' : null;
   });
 
   protected readonly request = new FormGroup({
@@ -57,14 +59,20 @@ export class ResetPage {
   }
 
   protected setPassword(): Promise<void> {
-    const body = { token: this.token(), ...this.renewal.getRawValue() };
-    return this.send(this.renewal, '/api/password-resets/redeem', body, 'changed');
+    const token = this.token();
+    const body = { token, ...this.renewal.getRawValue() };
+    return this.send(this.renewal, '/api/password-resets/redeem', body, 'changed').then(() => {
+      if (this.done() !== 'changed') return;
+      this.spent = token;
+      this.renewal.reset();
+    });
   }
 
   /** A link that is used up or expired leads back to asking for another. */
   protected askAgain(): void {
     this.token.set(null);
     this.problem.set(null);
+    this.done.set(null);
   }
 
   private async send(form: FormGroup, path: string, body: unknown, done: 'asked' | 'changed'): Promise<void> {

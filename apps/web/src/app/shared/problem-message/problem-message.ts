@@ -47,10 +47,17 @@ export class ProblemMessage {
   readonly again = output();
 
   protected readonly others = computed(() =>
-    [...(this.problem()?.fields ?? [])].filter(([pointer]) => !this.shownElsewhere().includes(pointer)),
+    [...(this.problem()?.fields ?? [])].filter(
+      ([pointer, message]) => !this.shownElsewhere().includes(pointer) && !this.saysAlready(message),
+    ),
   );
   protected readonly wait = computed(() => {
     const asked = this.problem()?.retryAfterSeconds ?? null;
     return asked === null ? '' : formatDuration(Math.max(1, this.waitSeconds() ?? asked));
   });
+
+  /** The sentence above the list names the first field's trouble itself. */
+  private saysAlready(message: string): boolean {
+    return this.problem()?.detail?.includes(message.replace(/\.$/, '')) ?? false;
+  }
 }
