@@ -13,6 +13,9 @@ export default defineConfig({
           name: 'unit',
           environment: 'node',
           include: ['libs/**/*.spec.ts', 'apps/api/**/*.spec.ts', 'worker/**/*.spec.ts'],
+          setupFiles: ['tests/fast-check-seed.ts'],
+          // Many files at once on few cores: a test is not wrong because it had to wait.
+          testTimeout: 30_000,
         },
       },
       {

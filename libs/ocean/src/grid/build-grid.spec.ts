@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Basin, Setup } from '../setup';
 import { corvaneForCheck, smallSetup } from '../testing/setups';
@@ -101,6 +102,28 @@ describe('land', () => {
     expect(at(square, 4.1, 0.1)).toBe(1);
     expect(at(withLake, 7.1, 0.1)).toBe(1);
     expect(at(withLake, 5.1, 0.1)).toBe(0);
+  });
+  it('has the cells that a ray to the east leaves through an odd number of edges, for any ring', () => {
+    const corner = fc.tuple(fc.integer({ min: -4, max: 44 }), fc.integer({ min: -20, max: 20 }));
+    let land = 0;
+    fc.assert(
+      fc.property(fc.array(corner, { minLength: 3, maxLength: 12 }), (corners) => {
+        // Quarter degrees: corners and edges through cell centres are among them.
+        const points = corners.map(([x, y]): [number, number] => [x / 2 + 0.25, y / 2 + 0.25]);
+        const inside = (lon: number, lat: number) => {
+          const leaves = points.filter(([x1, y1], k) => {
+            const [x2, y2] = points[(k + 1) % points.length];
+            return y1 > lat !== y2 > lat && lon < x1 + ((lat - y1) / (y2 - y1)) * (x2 - x1);
+          });
+          return leaves.length % 2 === 1;
+        };
+        const { nx, lonCentre, latCentre, mask } = gridOf({ islands: [{ kind: 'polygon', name: '', points }] });
+        const expected = mask.map((_wet, k) => (inside(lonCentre[k % nx], latCentre[Math.floor(k / nx)]) ? 0 : 1));
+        expect(mask).toEqual(expected);
+        land += expected.filter((wet) => wet === 0).length;
+      }),
+    );
+    expect(land).toBeGreaterThan(1000);
   });
   it('wraps on a periodic grid and not on a closed one', () => {
     const [periodic, closed] = [true, false].map((zonallyPeriodic) => gridOf({ zonallyPeriodic }));

@@ -14,13 +14,17 @@ export function landMask(basin: Basin, lonCentre: Float64Array, latCentre: Float
   }
   for (const island of basin.islands) {
     const { westDeg, eastDeg, southDeg, northDeg } = boundingBox(island);
+    const first = lonCentre.findIndex((longitude) => longitude >= westDeg);
+    if (first < 0) continue;
     for (let j = 0; j < ny; j++) {
       const latitude = latCentre[j];
       if (latitude < southDeg || latitude > northDeg) continue;
-      for (let i = 0; i < nx; i++) {
-        const longitude = lonCentre[i];
-        if (longitude < westDeg || longitude > eastDeg) continue;
-        if (island.kind === 'box' || insidePolygon(island.points, longitude, latitude)) mask[j * nx + i] = 0;
+      const crossings = island.kind === 'polygon' ? crossingsOf(island.points, latitude) : null;
+      let passed = 0;
+      for (let i = first; i < nx && lonCentre[i] <= eastDeg; i++) {
+        // Even-odd rule: inside while an odd number of crossings lies farther east.
+        while (crossings && passed < crossings.length && lonCentre[i] >= crossings[passed]) passed++;
+        if (!crossings || (crossings.length - passed) % 2 === 1) mask[j * nx + i] = 0;
       }
     }
   }
@@ -35,16 +39,16 @@ export function coastLongitude(basin: Basin, latitudeDeg: number): number {
   return coast.atSouthDeg + (coast.atNorthDeg - coast.atSouthDeg) * along;
 }
 
-/** Even-odd rule: true when a ray from the point crosses the closed ring an odd number of times. */
-export function insidePolygon(ring: readonly [number, number][], longitude: number, latitude: number): boolean {
-  let inside = false;
+/** Longitudes at which a closed ring crosses a latitude, west to east: one pass over the ring for a whole row of cells. */
+function crossingsOf(ring: readonly [number, number][], latitude: number): number[] {
+  const crossings: number[] = [];
   for (let k = 0, previous = ring.length - 1; k < ring.length; previous = k++) {
     const [x1, y1] = ring[previous];
     const [x2, y2] = ring[k];
     if (y1 > latitude === y2 > latitude) continue;
-    if (longitude < x1 + ((latitude - y1) / (y2 - y1)) * (x2 - x1)) inside = !inside;
+    crossings.push(x1 + ((latitude - y1) / (y2 - y1)) * (x2 - x1));
   }
-  return inside;
+  return crossings.sort((a, b) => a - b);
 }
 
 function boundingBox(island: Island): { westDeg: number; eastDeg: number; southDeg: number; northDeg: number } {

@@ -6,8 +6,16 @@ import { createWork, stepModel } from './step';
 
 const PLANE: PlaneOptions = { nx: 12, ny: 9, dx: 5e4, dy: 4e4, y0: -1.6e5, f: (y) => 2e-5 + 2e-11 * y, beta: 2e-11 };
 
-function busyModel(options: Partial<PlaneOptions> = {}, slip: 'free' | 'none' = 'free'): Model {
+function busyModel(
+  { band = false, ...options }: Partial<PlaneOptions> & { band?: boolean } = {},
+  slip: 'free' | 'none' = 'free',
+): Model {
   const grid = planeGrid({ ...PLANE, isWater: (x, y) => !(x > 2e5 && x < 3e5 && Math.abs(y) < 5e4), ...options });
+  if (band) {
+    // Rows that shorten towards one side, as on a latitude band: a metric factor taken from a wrong row shows.
+    grid.dxC.forEach((dx, j) => (grid.dxC[j] = dx * (1 - 0.06 * (j + 0.5))));
+    grid.dxV.forEach((dx, j) => (grid.dxV[j] = dx * (1 - 0.06 * j)));
+  }
   const forcing = forcingFromFunctions(grid, [{ taux: (_x, y) => 0.05 + y * 1e-8, tauy: (x) => x * 1e-8 }]);
   const model = createModel({
     grid,
@@ -110,6 +118,8 @@ describe('the step', () => {
     ['closed, no slip', {}, 'none'],
     ['periodic, free slip', { periodic: true }, 'free'],
     ['periodic, no slip', { periodic: true }, 'none'],
+    ['rows of unequal length, free slip', { band: true, periodic: true }, 'free'],
+    ['rows of unequal length, no slip', { band: true }, 'none'],
   ] as const)('is the formulas of the specification, cell by cell: %s', (_name, options, slip) => {
     const model = busyModel(options, slip);
     for (let n = 0; n < 5; n++) stepModel(model); // so that the three levels differ
