@@ -139,7 +139,7 @@ export const FIELDS: Record<string, FieldWords> = {
   '/start/fingerprint': words('Fingerprint of that run'),
   '/start/stateSha256': words('Name of the state'),
   '/start/startStep': words('Step of the state'),
-  '/start/stepsPerDay': { label: 'Steps a day of the state', unit: '1/d' },
+  '/start/stepsPerDay': words('Steps a day of the state'),
 
   '/friction': words('Friction'),
   '/friction/rayleighPerS': fromLimit('rayleigh'),
@@ -150,7 +150,8 @@ export const FIELDS: Record<string, FieldWords> = {
   '/numerics/equations': words('Equations', { linear: 'linear' }),
   '/numerics/spacingLongitudeDeg': fromLimit('spacing', 'Grid spacing in longitude', 2),
   '/numerics/spacingLatitudeDeg': fromLimit('spacing', 'Grid spacing in latitude', 2),
-  '/numerics/stepsPerDay': fromLimit('stepsPerDay'),
+  // The unit is in the label.
+  '/numerics/stepsPerDay': words(LIMITS.stepsPerDay.label),
 
   '/length': words('Length'),
   '/length/days': fromLimit('lengthDays'),

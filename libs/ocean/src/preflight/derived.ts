@@ -22,7 +22,8 @@ export function derivedNumbers(of: Case): DerivedNumber[] {
     id,
     label,
     symbol,
-    value: value ?? NaN,
+    // Zero has no sign on screen.
+    value: (value ?? NaN) + 0,
     unit,
   });
   const crossing = (f: number) => (beta > 0 ? (Lx * f * f) / (beta * c * c) : null);
@@ -32,13 +33,13 @@ export function derivedNumbers(of: Case): DerivedNumber[] {
     [
       number('waveSpeed', 'wave speed', 'c', c, 'm/s'),
       equatorial
-        ? number('trappingScale', 'trapping scale √(c/β)', 'L_eq', trapping && trapping / 1000, 'km')
+        ? number('trappingScale', 'trapping scale', '√(c/β)', trapping && trapping / 1000, 'km')
         : number('deformationRadius', 'deformation radius', 'c/|f|', c / fHome / 1000, 'km'),
       number('munkWidth', 'Munk width', '(A/β)^⅓', munk && munk / 1000, 'km'),
       number('stommelWidth', 'Stommel width', 'r/β', stommel && stommel / 1000, 'km'),
       number('kelvinCrossing', 'Kelvin crossing', 'Lx/c', days(Lx / c), 'd'),
       equatorial
-        ? number('rossbyCrossing', 'Rossby crossing, n = 1', '3Lx/c', days((3 * Lx) / c), 'd')
+        ? number('rossbyCrossing', 'Rossby, n = 1', '3Lx/c', days((3 * Lx) / c), 'd')
         : number('rossbyCrossing', 'Rossby crossing', 'Lx f²/(βc²)', nullable(crossing(fHome), days), 'd'),
       number(
         'adjustment',

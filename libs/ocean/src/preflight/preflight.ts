@@ -34,6 +34,7 @@ const RULES: readonly Rule[] = [
   places.wholeWaves,
   places.startStep,
   places.nothingMoves,
+  places.noRotation,
   places.sectionsOnLand,
   places.mooringsOnLand,
   size.diskQuota,

@@ -200,4 +200,20 @@ describe('wind, length and output', () => {
     const calm = changed((setup) => (setup.wind.components = []));
     expect(row(preflight(calm), 'nothing-moves').verdict).toBe('caution');
   });
+  it('says that an f-plane at the equator does not rotate', () => {
+    const plane = (referenceLatitudeDeg: number) =>
+      changed(({ basin }) => {
+        Object.assign(basin, { geometry: 'fplane', referenceLatitudeDeg });
+      });
+    expect(row(preflight(plane(0)), 'no-rotation')).toMatchObject({ verdict: 'caution', remedy: null });
+    expect(preflight(plane(1)).checks.map(({ id }) => id)).not.toContain('no-rotation');
+  });
+  it('refuses an equatorial wave where nothing rotates', () => {
+    const still = changed(({ constants }) => {
+      constants.rotationRatePerS = 0;
+    }, preset('kelvin-channel'));
+    const result = preflight(still);
+    expect(row(result, 'start-mode')).toMatchObject({ verdict: 'refuse', remedy: { label: 'Start from rest' } });
+    expect(row(result, 'no-rotation').verdict).toBe('caution');
+  });
 });

@@ -13,7 +13,7 @@ import { MatDialog } from '@angular/material/dialog';
 import { Router, RouterLink } from '@angular/router';
 import { runSummarySchema, type RunSummary } from '@halfdeep/contracts';
 import { firstValueFrom } from 'rxjs';
-import { Api } from '../core/api';
+import { Api, newIdempotencyKey } from '../core/api';
 import {
   formatBytes,
   formatChange,
@@ -27,7 +27,7 @@ import { ChoiceField, type Choice } from '../shared/choice-field/choice-field';
 import { Confirm } from '../shared/confirm/confirm';
 import { ProblemMessage } from '../shared/problem-message/problem-message';
 import { StateSign } from '../shared/state-sign/state-sign';
-import { outcomeBelow, shareDone } from './descent/descent';
+import { outcomeBelow, secondsTaken, shareDone } from './descent/descent';
 import { ExtendDialog } from '../shared/extend-dialog/extend-dialog';
 
 /** The chosen run of the descent: what it is, what can be done with it, and beside which other it can be laid. */
@@ -60,13 +60,14 @@ export class RunPanel {
     this.run().changes.map(({ label, from, to, unit }) => ({ label, text: formatChange(from, to, unit) })),
   );
   protected readonly facts = computed(() => {
-    const { grid, diskBytes, createdAt, owner, progress, startedAt, endedAt, state } = this.run();
-    const took = startedAt && endedAt ? (Date.parse(endedAt) - Date.parse(startedAt)) / 1000 : NaN;
+    const { grid, diskBytes, createdAt, owner, progress, state } = this.run();
+    // A finished run says it in its words already.
+    const took = state === 'finished' ? null : secondsTaken(this.run());
     return [
       `${formatNumber(grid.nx)} × ${formatNumber(grid.ny)} cells, ${formatModelLength(progress.totalDays)}`,
       `set up by ${owner.name}, ${formatMoment(createdAt)}`,
       ...(state === 'running' && progress.secondsLeft !== null ? [`${formatDuration(progress.secondsLeft)} left`] : []),
-      ...(Number.isFinite(took) ? [`took ${formatDuration(took)}`] : []),
+      ...(took === null ? [] : [`took ${formatDuration(took)}`]),
       ...(diskBytes === null ? [] : [`${formatBytes(diskBytes)} on disk`]),
     ];
   });
@@ -103,6 +104,16 @@ export class RunPanel {
     });
     const made = await firstValueFrom(opened.afterClosed());
     if (made) await this.router.navigate(['/runs', made.id]);
+  }
+
+  /** The same setup once more: it must end in the same state, to the last bit. */
+  protected async repeat(): Promise<void> {
+    await this.act(async () => {
+      const idempotencyKey = newIdempotencyKey();
+      const path = `/api/runs/${this.run().id}/repeat`;
+      const made = await firstValueFrom(this.api.post(path, {}, runSummarySchema, { idempotencyKey }));
+      await this.router.navigate(['/runs', made.id]);
+    });
   }
 
   protected async delete(): Promise<void> {

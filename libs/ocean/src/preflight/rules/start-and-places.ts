@@ -3,9 +3,10 @@ import type { Remedy } from '../../preflight-types';
 import type { Basin } from '../../setup';
 import { NO_CURE, ratioOfMaximum, type Case, type Rule } from '../draft';
 
-/** A wave mode needs the equatorial plane. */
-export const startMode: Rule = ({ setup }) => {
-  if (setup.start.kind !== 'mode' || setup.basin.geometry === 'equatorial') return null;
+/** A wave mode needs the equatorial plane, and that this rotates. */
+export const startMode: Rule = ({ setup, scales }) => {
+  const still = setup.basin.geometry === 'equatorial' && !(scales.beta > 0);
+  if (setup.start.kind !== 'mode' || (setup.basin.geometry === 'equatorial' && !still)) return null;
   return {
     id: 'start-mode',
     label: 'Equatorial wave at the start',
@@ -14,8 +15,10 @@ export const startMode: Rule = ({ setup }) => {
     limit: 0,
     unit: '',
     ratio: 2,
-    reason: 'An equatorial wave can start on the equatorial plane only; choose that plane, or another start.',
-    pointers: ['/start/kind', '/basin/geometry'],
+    reason: still
+      ? 'An equatorial wave needs rotation, and β is 0 here; give β, or choose another start.'
+      : 'An equatorial wave can start on the equatorial plane only; choose that plane, or another start.',
+    pointers: ['/start/kind', still ? '/basin/betaPerMS' : '/basin/geometry'],
     cures: () => [{ label: 'Start from rest', changes: [{ pointer: '/start', value: { kind: 'rest' } }] }],
   };
 };
@@ -94,6 +97,26 @@ export const nothingMoves: Rule = ({ setup, wind }) => {
     ratio: 2,
     reason: 'There is no wind and the layer starts from rest: nothing will move.',
     pointers: ['/wind/components', '/start/kind'],
+    cures: NO_CURE,
+  };
+};
+
+/** A plane without f, for example an f-plane that touches the sphere at the equator. */
+export const noRotation: Rule = ({ setup, scales }) => {
+  if (scales.beta !== 0 || scales.f0 !== 0) return null;
+  const flat = setup.basin.geometry === 'fplane';
+  return {
+    id: 'no-rotation',
+    label: 'Rotation of the plane',
+    verdict: 'caution',
+    value: 0,
+    limit: 0,
+    unit: '1/s',
+    ratio: 2,
+    reason: flat
+      ? 'f₀ is 0: this f-plane does not rotate. Give it a latitude of contact off the equator, or f₀ itself.'
+      : 'f and β are 0 everywhere: this plane does not rotate. Give β, or a rotation rate.',
+    pointers: flat ? ['/basin/referenceLatitudeDeg', '/basin/f0PerS'] : ['/basin/betaPerMS'],
     cures: NO_CURE,
   };
 };

@@ -43,9 +43,11 @@ describe('what stands at a course line', () => {
     expect(of(0)).toEqual(['the same setup']);
   });
   it('tells how far it came', () => {
-    const at = { progress, failure: null, queuePosition: null, queuedReason: null };
+    const at = { progress, failure: null, queuePosition: null, queuedReason: null, startedAt: null, endedAt: null };
     expect(outcomeBelow({ ...at, state: 'running' })).toBe('year 3.50 of 7');
     expect(outcomeBelow({ ...at, state: 'finished' })).toBe('7 years');
+    const times = { startedAt: '2026-03-01T10:00:00Z', endedAt: '2026-03-01T10:00:46Z' };
+    expect(outcomeBelow({ ...at, ...times, state: 'finished' })).toBe('7 years, took 46\u00a0s');
     expect(outcomeBelow({ ...at, state: 'queued', queuePosition: 2, queuedReason: 'cap lowered' })).toBe(
       'place 2 in the queue, cap lowered',
     );

@@ -1,5 +1,5 @@
 import type { RunSummary } from '@halfdeep/contracts';
-import { formatChange, formatModelDay, formatModelLength, formatModelTime } from '../../core/format';
+import { formatChange, formatDuration, formatModelDay, formatModelLength, formatModelTime } from '../../core/format';
 
 /** A run in the descent and the runs that were made from it. The run itself is looked up by id, since it moves. */
 export interface DescentNode {
@@ -34,7 +34,7 @@ export function changesAbove(run: Pick<RunSummary, 'changes' | 'descent'>): stri
 
 /** Written below it: how far the run came, and why no further. */
 export function outcomeBelow(
-  run: Pick<RunSummary, 'state' | 'progress' | 'failure' | 'queuePosition' | 'queuedReason'>,
+  run: Pick<RunSummary, 'state' | 'progress' | 'failure' | 'queuePosition' | 'queuedReason' | 'startedAt' | 'endedAt'>,
 ): string {
   const { day, totalDays } = run.progress;
   switch (run.state) {
@@ -44,8 +44,11 @@ export function outcomeBelow(
     }
     case 'running':
       return formatModelTime(day, totalDays);
-    case 'finished':
-      return formatModelLength(totalDays);
+    case 'finished': {
+      const seconds = secondsTaken(run);
+      const length = formatModelLength(totalDays);
+      return seconds === null ? length : `${length}, took ${formatDuration(seconds)}`;
+    }
     case 'stopped':
       return `stopped at ${formatModelDay(day)}`;
     case 'failed': {
@@ -53,6 +56,11 @@ export function outcomeBelow(
       return `at ${formatModelDay(at)}: ${run.failure?.message ?? 'no cause was kept'}`;
     }
   }
+}
+
+/** From the start to the end of a run, as the clock on the wall has it; null while it is not known. */
+export function secondsTaken({ startedAt, endedAt }: Pick<RunSummary, 'startedAt' | 'endedAt'>): number | null {
+  return startedAt && endedAt ? (Date.parse(endedAt) - Date.parse(startedAt)) / 1000 : null;
 }
 
 /** Share of the run that is done, 0 to 1. */

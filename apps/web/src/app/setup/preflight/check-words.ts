@@ -5,7 +5,9 @@ import { formatCount, formatNumber, formatQuantity, NARROW, SPACE } from '../../
 export function checkNumbers({ value, limit, unit, ratio }: Check): string {
   if (!Number.isFinite(value) || !Number.isFinite(limit)) return '';
   const short = /^\S{0,4}$/.test(unit) ? unit : '';
-  const options = { significant: 3 };
+  if (value === 0 && limit === 0) return '';
+  // Counts are told whole.
+  const options = Number.isInteger(value) && Number.isInteger(limit) && limit >= 1000 ? {} : { significant: 3 };
   const asksLeast = Math.abs(ratio * value - limit) < Math.abs(ratio * limit - value);
   if (asksLeast) return formatQuantity(value, short, options);
   return `${formatNumber(value, options)} of ${formatQuantity(limit, short, options)}`;

@@ -67,7 +67,8 @@ export class ExtendDialog {
   private readonly api = inject(Api);
   private readonly dialog = inject<MatDialogRef<ExtendDialog, RunSummary>>(MatDialogRef);
   protected readonly run = inject<RunSummary>(MAT_DIALOG_DATA);
-  protected readonly days = signal<number | null>(365);
+  /** A year, or as long again where the run is shorter. */
+  protected readonly days = signal<number | null>(Math.min(365, this.run.progress.totalDays));
   protected readonly label = signal(`${this.run.label}, extended`.slice(0, 80));
   protected readonly wrong = signal<ReadonlyMap<string, string>>(new Map());
   protected readonly problem = signal<ApiProblem | null>(null);

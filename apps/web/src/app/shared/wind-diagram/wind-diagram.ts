@@ -123,7 +123,7 @@ export class WindDiagramPlate {
     const blank = this.blank();
     const where = this.varies() ? ` Along ${formatLongitude(this.diagram().longitudeDeg, 1)}.` : '';
     const near = blank ? ` Ekman pumping is not defined within ${blank.text} of the equator.` : '';
-    return `Arrows: stress, after switch-on.${where}${near}`;
+    return `Positive: stress eastward, curl ∂τy/∂x − ∂τx/∂y, pumping upward. Arrows: stress, after switch-on.${where}${near}`;
   });
   protected readonly spoken = computed(() => {
     if (this.calm()) return 'Diagram of the wind by latitude and season: no wind blows.';
@@ -134,7 +134,7 @@ export class WindDiagramPlate {
   private latitudeTicks(height: number) {
     const { southDeg, northDeg } = this.setup().basin;
     const span = northDeg - southDeg;
-    const step = tickStep(height / span, 30);
+    const step = tickStep(height / span, 24);
     const y = (latitude: number) => ((northDeg - latitude) / span) * height;
     const edges = [southDeg, ...ticks(southDeg, northDeg, step / 2), northDeg];
     return {
