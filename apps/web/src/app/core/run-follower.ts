@@ -38,6 +38,15 @@ export function startDay(run: Followed): number {
   return totalSteps > 0 ? (startStep * totalDays) / totalSteps : 0;
 }
 
+/** Model day of the last record that any stream of a run holds; the day it begins on before there is one. */
+export function lastRecordDay(run: Run): number {
+  const { frames, sections, moorings, budget } = run.progress.records;
+  const { frameIntervalDays: frame, sectionIntervalDays: section, mooringIntervalDays: mooring } = run.setup.output;
+  // Frame 0 is the state it begins with; record k of a series closes interval k.
+  const reached = Math.max(0, (frames - 1) * frame, Math.max(sections, budget) * section, moorings * mooring);
+  return startDay(run) + reached;
+}
+
 /** A run and its data, kept up to date for as long as somebody looks. Made by `RunFollowers`; `close` ends it. */
 export class RunFollower {
   private readonly known = signal<Followed | null>(null);

@@ -27,6 +27,9 @@ import { VARIABLE_CHOICES, VARIABLE_VIEWS, isVariable } from '../shared/plate/va
 import { plateAbout } from './plate-about';
 import { sameGrowth, sameRange, sameSetup } from './same-setup';
 
+/** A basin that is flatter still leaves the diagram tall enough to follow a wave in it. */
+const FLATTEST = 0.55;
+const SLIDER_PX = 38;
 type Span = 'whole' | 'last1' | 'last2' | 'last4';
 const SPAN_YEARS: Record<Span, number> = { whole: Infinity, last1: 1, last2: 2, last4: 4 };
 
@@ -95,6 +98,12 @@ export class HovmollerPlate {
     },
     { equal: sameRange },
   );
+  /** What stands below the map's frame beside this one and not below this one: its slider. */
+  protected readonly besideMap = computed(() => {
+    const { lonFace, latFace } = this.grid();
+    const span = (faces: ArrayLike<number>) => (faces[faces.length - 1] ?? 1) - (faces[0] ?? 0);
+    return { ratio: Math.max(span(latFace) / span(lonFace), FLATTEST), below: SLIDER_PX };
+  });
   private readonly placeRange = computed<[number, number]>(() => {
     const { lonFace, latFace } = this.grid();
     const faces = this.along() === 'latitude' ? lonFace : latFace;

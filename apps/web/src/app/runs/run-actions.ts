@@ -16,6 +16,11 @@ export class RunActions {
     return this.api.post(`/api/runs/${id}/resume`, {}, runSummarySchema);
   }
 
+  /** A new run of the same setup: its fingerprint must come out the same. */
+  repeat(id: string): Observable<RunSummary> {
+    return this.api.post(`/api/runs/${id}/repeat`, {}, runSummarySchema, { idempotencyKey: newIdempotencyKey() });
+  }
+
   /** A new run that goes on from the last state of a finished one. */
   extend(id: string, label: string, days: number): Observable<RunSummary> {
     const idempotencyKey = newIdempotencyKey();

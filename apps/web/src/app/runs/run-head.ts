@@ -16,7 +16,7 @@ import {
 } from '../core/format';
 import { type ApiProblem, toApiProblem } from '../core/problem';
 import { RunEvents } from '../core/run-events';
-import { type RunFollower } from '../core/run-follower';
+import { type RunFollower, lastRecordDay } from '../core/run-follower';
 import { Confirm } from '../shared/confirm/confirm';
 import { ProblemMessage } from '../shared/problem-message/problem-message';
 import { RunPicker } from '../shared/run-picker/run-picker';
@@ -25,6 +25,8 @@ import { VerdictSign } from '../shared/verdict/verdict';
 import { energyClosure } from './energy-closure';
 import { ExtendDialog } from './extend-dialog';
 import { ProgressRule } from './progress-rule';
+import { isRepeat } from './repeat';
+import { RepeatLine } from './repeat-line';
 import { RunActions } from './run-actions';
 
 const CHANGES_SHOWN = 4;
@@ -36,7 +38,7 @@ interface Part {
 /** Head of a run: what it is, where it stands, and what may be done with it now. */
 @Component({
   selector: 'app-run-head',
-  imports: [MatButton, ProblemMessage, ProgressRule, RouterLink, StateSign, VerdictSign],
+  imports: [MatButton, ProblemMessage, ProgressRule, RepeatLine, RouterLink, StateSign, VerdictSign],
   templateUrl: './run-head.html',
   styleUrl: './run-head.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -56,6 +58,7 @@ export class RunHead {
   protected readonly busy = signal(false);
   protected readonly problem = signal<ApiProblem | null>(null);
 
+  protected readonly repeats = computed(() => isRepeat(this.run()));
   protected readonly share = computed(() => {
     const { step, startStep, totalSteps } = this.run().progress;
     return totalSteps > startStep ? (step - startStep) / (totalSteps - startStep) : 0;
@@ -123,7 +126,7 @@ export class RunHead {
     const day = (failure.lastGoodStep * progress.totalDays) / progress.totalSteps;
     return `${where}Last good state: ${formatModelDay(day)}${this.run().can.resume ? '; it can be resumed from there' : ''}.`;
   });
-  protected readonly lastRecord = computed(() => formatModelDay(this.run().progress.day));
+  protected readonly lastRecord = computed(() => formatModelDay(lastRecordDay(this.run())));
   /** Changes once a model year while the run goes on: screen readers hear that, not every record. */
   protected readonly yearSpoken = computed(() => {
     const { state, progress, label } = this.run();
@@ -146,6 +149,19 @@ export class RunHead {
     });
     const extended = await firstValueFrom(opened.afterClosed());
     if (extended) await this.router.navigate(['/runs', extended.id]);
+  }
+
+  protected async repeat(): Promise<void> {
+    this.busy.set(true);
+    this.problem.set(null);
+    try {
+      const repeated = await firstValueFrom(this.actions.repeat(this.run().id));
+      await this.router.navigate(['/runs', repeated.id]);
+    } catch (error) {
+      this.problem.set(toApiProblem(error));
+    } finally {
+      this.busy.set(false);
+    }
   }
 
   protected async putBeside(): Promise<void> {

@@ -96,7 +96,7 @@ export class RunSetup {
       .slice(0, 2)
       .map(({ label, from, to, unit }) => `${label} ${formatChange(from, to, unit)}`);
     const more = run.changes.length - shown.length;
-    return `${shown.join(', ')}${more > 0 ? ` and ${more} more` : ''}` || 'nothing changed';
+    return `${shown.join(', ')}${more > 0 ? ` and ${more} more` : ''}` || 'the same setup once more';
   }
 }
 

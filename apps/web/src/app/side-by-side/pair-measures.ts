@@ -81,7 +81,7 @@ const SIGNIFICANT = 3;
         </p>
       }
     } @else {
-      <app-data-state state="loading" heading="both runs, to measure them" />
+      <app-data-state state="loading" [heading]="working()" />
     }
   `,
   styles: `
@@ -103,6 +103,11 @@ export class PairMeasures {
   readonly today = input.required<{ day: number; variable: string; measures: MapMeasures } | null>();
   readonly answer = input.required<ResourceRef<SideBySide | undefined>>();
 
+  /** Every map of both runs is read and measured on the server: that takes seconds, and ends when one leaves. */
+  protected readonly working = computed(
+    () =>
+      `and measuring every map that both have: up to ${formatNumber(Math.min(framesOf(this.a()), framesOf(this.b())))} days`,
+  );
   protected readonly problem = computed(() => (this.answer().error() ? toApiProblem(this.answer().error()) : null));
   protected readonly common = computed(() => {
     const days = this.answer().value()?.commonDays;
@@ -125,3 +130,5 @@ export class PairMeasures {
     return formatNumber(value ?? NaN, { significant: 4 });
   }
 }
+
+const framesOf = (run: Run) => run.progress.records.frames;

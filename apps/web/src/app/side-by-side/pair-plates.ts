@@ -14,10 +14,9 @@ import {
   viewChildren,
 } from '@angular/core';
 import { MatDialog } from '@angular/material/dialog';
-import { RouterLink } from '@angular/router';
-import { type Run, type RunSummary } from '@halfdeep/contracts';
+import { type Run } from '@halfdeep/contracts';
 import { buildGrid } from '@halfdeep/ocean';
-import { formatChange, formatLatitude, formatLongitude, formatModelDay, formatModelYear } from '../core/format';
+import { formatLatitude, formatLongitude, formatModelDay, formatModelYear } from '../core/format';
 import { MapReader } from '../core/map-reader';
 import { toApiProblem } from '../core/problem';
 import { type RunFollower, frameIntervalDays, startDay } from '../core/run-follower';
@@ -26,15 +25,18 @@ import { type PlotTable } from '../shared/plate/csv';
 import { DataTableDialog } from '../shared/plate/data-table-dialog';
 import { FieldPlot } from '../shared/plate/field-plot';
 import { LandOutline } from '../shared/plate/land';
-import { type ColourLimits, fittedLimits, grownLimits, isolineWords, typicalSpan } from '../shared/plate/limits';
 import { PlotLink } from '../shared/plate/plot-link';
 import { FigureSaver, fileName } from '../shared/plate/save-figure';
-import { VARIABLE_CHOICES, VARIABLE_VIEWS, isVariable } from '../shared/plate/variables';
+import { VARIABLE_VIEWS } from '../shared/plate/variables';
 import { DataState } from '../shared/data-state/data-state';
-import { StateSign } from '../shared/state-sign/state-sign';
 import { TimeSlider } from '../shared/time-slider/time-slider';
 import { type PairFields, pairHovmollers, pairMaps, regriddingWords, sameGrid } from './pair-fields';
 import { type FrameTimes, type MapMeasures, commonRecords, mapMeasures } from './pair-math';
+import { PairControls } from './pair-controls';
+import { PairHeads } from './pair-heads';
+import { pairCaption, pairPanels } from './pair-panels';
+import { type PairScales, blankScale, grownScales } from './pair-scales';
+import { pairTable } from './pair-table';
 import { type SharedPlace } from './shared-place';
 
 /** The address follows the slider when it has rested for so long, so that playing does not fill the history. */
@@ -43,7 +45,7 @@ const REST_MS = 400;
 /** A, B and B − A: one colour scale for two, one cursor and one view for three. */
 @Component({
   selector: 'app-pair-plates',
-  imports: [ColourBar, DataState, FieldPlot, RouterLink, StateSign, TimeSlider],
+  imports: [ColourBar, DataState, FieldPlot, PairControls, PairHeads, TimeSlider],
   templateUrl: './pair-plates.html',
   styleUrls: ['../shared/plate/plate-controls.scss', './pair-plates.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -58,11 +60,9 @@ export class PairPlates {
   readonly followerB = input.required<RunFollower>();
   readonly place = input.required<SharedPlace>();
   readonly placeChange = output<SharedPlace>();
-  readonly chooseA = output();
-  readonly chooseB = output();
+  readonly choose = output<'a' | 'b'>();
   readonly measured = output<{ day: number; variable: string; measures: MapMeasures } | null>();
 
-  protected readonly variables = VARIABLE_CHOICES;
   protected readonly link = new PlotLink();
   protected readonly saveProblem = signal('');
   private readonly plots = viewChildren(FieldPlot);
@@ -143,31 +143,15 @@ export class PairPlates {
     const { mode, variable, along } = this.place();
     return [mode, variable, along, this.at(), this.a().id, this.b().id].join(' ');
   });
-  private readonly fitted = linkedSignal<
-    { key: string; fields: PairFields },
-    { key: string; shared: ColourLimits | null; apart: ColourLimits | null }
-  >({
+  private readonly fitted = linkedSignal<{ key: string; fields: PairFields }, PairScales & { key: string }>({
     source: () => ({ key: this.scaleKey(), fields: this.fields() }),
-    computation: ({ key, fields }, before) => {
-      const held = before?.value.key === key ? before.value : null;
-      const { scale, factor } = this.view();
-      const fit = (rows: readonly ArrayLike<number>[], kind: typeof scale) =>
-        fittedLimits(typicalSpan(rows), kind, factor);
-      const both = [...(fields.a?.rows ?? []), ...(fields.b?.rows ?? [])];
-      const gap = fields.difference?.rows ?? [];
-      return {
-        key,
-        shared: both.length ? grownLimits(held?.shared ?? null, fit(both, scale)) : (held?.shared ?? null),
-        apart: gap.length ? grownLimits(held?.apart ?? null, fit(gap, 'diverging')) : (held?.apart ?? null),
-      };
-    },
+    computation: ({ key, fields }, before) => ({
+      key,
+      ...grownScales(before?.value.key === key ? before.value : null, fields, this.view()),
+    }),
   });
-  private readonly shared = computed(
-    () => this.fitted().shared ?? fittedLimits({ min: NaN, max: NaN }, this.view().scale, this.view().factor),
-  );
-  private readonly apart = computed(
-    () => this.fitted().apart ?? fittedLimits({ min: NaN, max: NaN }, 'diverging', this.view().factor),
-  );
+  private readonly shared = computed(() => this.fitted().shared ?? blankScale(this.view()));
+  private readonly apart = computed(() => this.fitted().apart ?? blankScale({ ...this.view(), scale: 'diverging' }));
   protected readonly sharedBar = computed(() => ({ ...this.view(), limits: this.shared() }));
   protected readonly differenceBar = computed(() => ({
     ...this.view(),
@@ -182,10 +166,6 @@ export class PairPlates {
     const { southDeg, northDeg, westDeg, eastDeg } = this.a().setup.basin;
     if (along === 'longitude') return (westDeg + eastDeg) / 2;
     return southDeg < 0 && northDeg > 0 ? 0 : (southDeg + northDeg) / 2;
-  });
-  protected readonly atStep = computed(() => {
-    const { spacingLatitudeDeg, spacingLongitudeDeg } = this.a().setup.numerics;
-    return this.place().along === 'latitude' ? spacingLatitudeDeg : spacingLongitudeDeg;
   });
   protected readonly axes = computed(() => {
     if (this.place().mode === 'map') return { x: 'longitude', y: 'latitude' } as const;
@@ -204,49 +184,17 @@ export class PairPlates {
     this.axes().y === 'time' ? this.timeRange() : ends(this.grids().a.latFace),
   );
 
-  protected readonly panels = computed(() => {
-    const { a, b, difference } = this.fields();
-    const axis = this.place().along === 'latitude' ? ('y' as const) : ('x' as const);
-    const time = (field: PairFields['a']) => (axis === 'y' ? field?.y : field?.x);
-    const growth = (field: PairFields['a']) => {
-      const days = time(field);
-      return { axis, upTo: days?.length ? (days[days.length - 1] ?? 0) : this.timeRange()[0], pen: 'none' as const };
-    };
-    const what = `${this.view().label}, ${this.place().mode === 'map' ? this.dayWords() : this.lineWords()}`;
-    const busy = (field: unknown) => (field ? '' : 'Reading');
-    return [
-      {
-        id: 'a',
-        title: `A, ${this.a().label}`,
-        label: `A, ${this.a().label}: ${what}`,
-        field: a,
-        limits: this.shared(),
-        land: this.lands().a,
-        growth: growth(a),
-        busy: busy(a),
-      },
-      {
-        id: 'b',
-        title: `B, ${this.b().label}`,
-        label: `B, ${this.b().label}: ${what}`,
-        field: b,
-        limits: this.shared(),
-        land: this.lands().b,
-        growth: growth(b),
-        busy: busy(b),
-      },
-      {
-        id: 'gap',
-        title: 'B − A',
-        label: `B minus A: ${what}`,
-        field: difference,
-        limits: this.apart(),
-        land: this.lands().a,
-        growth: growth(difference),
-        busy: busy(a && b),
-      },
-    ];
-  });
+  protected readonly panels = computed(() =>
+    pairPanels({
+      labels: { a: this.a().label, b: this.b().label },
+      fields: this.fields(),
+      what: `${this.view().label}, ${this.place().mode === 'map' ? this.dayWords() : this.lineWords()}`,
+      limits: { shared: this.shared(), apart: this.apart() },
+      lands: this.lands(),
+      timeAxis: this.place().along === 'latitude' ? 'y' : 'x',
+      firstDay: this.timeRange()[0],
+    }),
+  );
 
   protected readonly dayWords = computed(() => {
     const day = this.maps().day ?? this.dayOf()(this.index());
@@ -266,16 +214,14 @@ export class PairPlates {
           : formatLongitude(value, 1);
     return `cursor ${name(this.axes().x, at.x)}, ${name(this.axes().y, at.y)}`;
   });
-  protected readonly caption = computed(() => {
-    const { factor, unit, scale, label } = this.view();
-    const step = (limits: ColourLimits) => isolineWords(limits, factor, unit);
-    const isolines =
-      scale === 'diverging'
-        ? ` Isolines every ${step(this.shared())}, in the difference every ${step(this.apart())}.`
-        : ` Isolines of the difference every ${step(this.apart())}.`;
-    const regridding = regriddingWords(this.a(), this.b(), this.same());
-    return `${label.charAt(0).toUpperCase()}${label.slice(1)}, ${this.place().mode === 'map' ? this.dayWords() : this.lineWords()}. A and B share one colour scale, the difference has its own.${isolines} ${regridding}`.trim();
-  });
+  protected readonly caption = computed(() =>
+    pairCaption(
+      this.view(),
+      this.place().mode === 'map' ? this.dayWords() : this.lineWords(),
+      { shared: this.shared(), apart: this.apart() },
+      regriddingWords(this.a(), this.b(), this.same()),
+    ),
+  );
 
   constructor() {
     effect(() => {
@@ -322,7 +268,7 @@ export class PairPlates {
     this.stopResting();
     this.rest = setTimeout(() => {
       const day = this.records()[this.index()]?.day ?? null;
-      if (day !== this.place().day) this.choose({ day });
+      if (day !== this.place().day) this.look({ day });
     }, REST_MS);
   }
 
@@ -331,42 +277,14 @@ export class PairPlates {
     this.rest = null;
   }
 
-  protected choose(change: Partial<SharedPlace>): void {
+  protected look(change: Partial<SharedPlace>): void {
     this.placeChange.emit({ ...this.place(), ...change });
   }
-  protected chooseVariable(event: Event): void {
-    const { value } = event.target as HTMLSelectElement;
-    if (isVariable(value)) this.choose({ variable: value });
-  }
-  protected chooseAlong(event: Event): void {
-    const along = (event.target as HTMLSelectElement).value === 'longitude' ? 'longitude' : 'latitude';
-    this.choose({ along, at: null });
-  }
-  protected chooseAt(event: Event): void {
-    const field = event.target as HTMLInputElement;
-    const { southDeg, northDeg, westDeg, eastDeg } = this.a().setup.basin;
-    const [low, high] = this.place().along === 'latitude' ? [southDeg, northDeg] : [westDeg, eastDeg];
-    const at = Number.isNaN(field.valueAsNumber) ? this.at() : Math.min(high, Math.max(low, field.valueAsNumber));
-    field.value = String(at);
-    this.choose({ at });
-  }
-
   protected readAgain(): void {
     this.readers().a.again();
     this.readers().b.again();
     this.lines().a.again();
     this.lines().b.again();
-  }
-
-  protected changesOf(run: RunSummary): string {
-    if (run.descent === 'control') return 'the reference of its experiment.';
-    if (run.descent === 'extension') return `goes on from ${run.parentLabel ?? 'a run that is gone'}.`;
-    const from = run.parentRunId === this.a().id && run !== this.a() ? 'A' : (run.parentLabel ?? 'a run that is gone');
-    const shown = run.changes
-      .slice(0, 2)
-      .map(({ label, from: was, to, unit }) => `${label} ${formatChange(was, to, unit)}`);
-    const more = run.changes.length - shown.length;
-    return `from ${from}: ${shown.join(', ')}${more > 0 ? ` and ${more} more` : ''}.`;
   }
 
   // ---- saving ----
@@ -410,33 +328,14 @@ export class PairPlates {
     return fileName(this.a().label, 'beside', this.b().label, this.place().variable);
   }
 
-  /** One row for each point: place, A, B, B − A. */
   private table(): PlotTable {
-    const { a, b, difference } = this.fields();
-    const { unit, factor } = this.view();
-    const axes = this.axes();
-    const title = (kind: string) =>
-      kind === 'time' ? 'model day' : kind === 'latitude' ? 'latitude (° N)' : 'longitude (° E)';
-    const base = difference ?? a;
-    const width = base?.x.length ?? 0;
-    const at = (field: PairFields['a'], j: number, i: number) => (field?.rows[j]?.[i] ?? NaN) * factor;
-    // In space and time the difference may have fewer days than A or B: rows are then found by their day.
-    const same = (field: PairFields['a']) => field?.x.length === width && field.y.length === base?.y.length;
-    return {
-      columns: [title(axes.x), title(axes.y), `A (${unit})`, `B (${unit})`, `B − A (${unit})`],
-      rows: width * (base?.rows.length ?? 0),
-      row: (k) => {
-        const [j, i] = [Math.floor(k / width), k % width];
-        return [
-          base?.x[i] ?? NaN,
-          base?.y[j] ?? NaN,
-          same(a) ? at(a, j, i) : NaN,
-          same(b) ? at(b, j, i) : NaN,
-          at(difference, j, i),
-        ];
-      },
-      notes: [`A: ${this.a().label}, run ${this.a().id}`, `B: ${this.b().label}, run ${this.b().id}`, this.caption()],
-    };
+    const { a, b } = this.fields();
+    const notes = [
+      `A: ${this.a().label}, run ${this.a().id}`,
+      `B: ${this.b().label}, run ${this.b().id}`,
+      this.caption(),
+    ];
+    return pairTable(a, b, notes);
   }
 }
 

@@ -83,12 +83,16 @@ export class SideBySidePage {
   protected readonly answer = rxResource({
     params: () => {
       const [a, b] = [this.a(), this.b()];
-      if (!a || !b || !this.pairReady()) return undefined;
-      return { a, b };
+      const states = this.states();
+      return a && b && states ? { a, b, states } : undefined;
     },
-    stream: ({ params }) => this.api.get('/api/side-by-side', sideBySideSchema, params),
+    stream: ({ params: { a, b } }) => this.api.get('/api/side-by-side', sideBySideSchema, { a, b }),
   });
-  private readonly pairReady = computed(() => this.pair() !== null);
+  /** Measured when both runs are known, and again when one of them has ended; not with every record. */
+  private readonly states = computed(() => {
+    const pair = this.pair();
+    return pair && `${pair.a.state} ${pair.b.state}`;
+  });
   /** From the same library as on the server, so that nobody waits for the measures to see what was changed. */
   protected readonly changes = computed(() => {
     const pair = this.pair();

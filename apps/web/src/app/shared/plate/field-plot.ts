@@ -27,6 +27,8 @@ export interface Field {
   version: number;
 }
 
+/** A long narrow channel is drawn at least so tall, px. */
+const LEAST_MAP = 72;
 const MARGIN = { left: 56, right: 16, top: 14, bottom: 30 };
 /** A row or column of a space-time plot wants at least this much of a px; what is finer is skipped when drawing. */
 const LEAST_PX = 0.6;
@@ -54,6 +56,8 @@ export class FieldPlot extends PlotSurface {
   /** Height of a space-time plot, px; a map takes its height from equal degrees. */
   readonly wantedHeight = input(440);
   readonly tallestMap = input(470);
+  /** Height over width of the map that a space-time plot stands beside, and the px below it: both then end on one line. */
+  readonly besideMap = input<{ ratio: number; below: number } | null>(null);
   /** False: land bands of a space-time plot are not drawn, because NaN means something else there. */
   readonly blankIsLand = input(true);
 
@@ -65,13 +69,15 @@ export class FieldPlot extends PlotSurface {
     const room = Math.max(40, width - MARGIN.left - MARGIN.right);
     let w = room;
     let h = Math.max(40, this.wantedHeight() - MARGIN.top - MARGIN.bottom);
+    const beside = this.besideMap();
+    if (beside) h = Math.min(Math.max(room * beside.ratio, LEAST_MAP) + beside.below, this.tallestMap() + beside.below);
     if (this.equalDegrees) {
       const [xFull, yFull] = [this.xFull(), this.yFull()];
       const ratio = (yFull[1] - yFull[0]) / (xFull[1] - xFull[0]);
       h = room * ratio;
       if (h > this.tallestMap()) [w, h] = [this.tallestMap() / ratio, this.tallestMap()];
       // A long narrow channel keeps a least height: degrees are then no longer equal, but it can be read.
-      h = Math.max(h, 72);
+      h = Math.max(h, LEAST_MAP);
     }
     return {
       width,

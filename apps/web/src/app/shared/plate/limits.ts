@@ -6,9 +6,10 @@ export interface ColourLimits {
   max: number;
 }
 
-const NICE = [1, 1.5, 2, 3, 4, 5, 6, 8, 10];
+/** Half of each and a quarter of each are numbers that people read isolines by. */
+const NICE = [1, 1.2, 1.6, 2, 2.4, 3.2, 4, 6, 8, 10];
 
-/** The least of 1, 1.5, 2, 3, 4, 5, 6, 8 × 10^k that is not below `value`; 1 when value is not above 0. */
+/** The least of 1, 1.2, 1.6, 2, 2.4, 3.2, 4, 6, 8 × 10^k that is not below `value`; 1 when value is not above 0. */
 export function niceCeiling(value: number): number {
   if (!(value > 0) || !Number.isFinite(value)) return 1;
   const decade = 10 ** Math.floor(Math.log10(value));
@@ -77,12 +78,17 @@ export function fittedLimits(
   const span = (seen.max - seen.min) * factor;
   // A scale that nearly reaches zero starts there; otherwise both ends are rounded outward.
   if (seen.min >= 0 && seen.min * factor < 2 * span) return { min: 0, max: niceCeiling(seen.max * factor) / factor };
-  const step = niceCeiling(span || Math.abs(seen.max) * factor) / 4;
-  return {
-    min: (Math.floor((seen.min * factor) / step) * step) / factor,
-    max: (Math.ceil((seen.max * factor) / step) * step) / factor,
-  };
+  // Four steps from a multiple of one of them, so that every tick of the bar is round.
+  let whole = niceCeiling(span || Math.abs(seen.max) * factor);
+  let low = wholeStepsBelow(seen.min * factor, whole / 4);
+  while (low + whole < seen.max * factor) {
+    whole = niceCeiling(whole * 1.01);
+    low = wholeStepsBelow(seen.min * factor, whole / 4);
+  }
+  return { min: low / factor, max: (low + whole) / factor };
 }
+
+const wholeStepsBelow = (value: number, step: number) => Math.floor(value / step + 1e-9) * step;
 
 /** Limits that only ever grow, so that a plot does not pump while it is being read. */
 export function grownLimits(held: ColourLimits | null, fitted: ColourLimits): ColourLimits {

@@ -42,8 +42,8 @@ describe('colour scale', () => {
 describe('limits', () => {
   it.each([
     [20, 20],
-    [20.1, 30],
-    [0.00031, 0.0004],
+    [20.1, 24],
+    [0.00031, 0.00032],
     [9.1, 10],
     [0, 1],
     [-5, 1],
@@ -53,16 +53,24 @@ describe('limits', () => {
     expect(fittedLimits(extremes([[NaN, -3, 7]]), 'diverging', 1)).toEqual({ min: -8, max: 8 });
   });
   it('rounds in the unit that is shown', () => {
-    // 1.7e-6 m/s is 0.147 m/d: the bar ends at 0.15 m/d.
+    // 1.7e-6 m/s is 0.147 m/d: the bar ends at 0.16 m/d.
     const { max } = fittedLimits({ min: 0, max: 1.7e-6 }, 'diverging', 86_400);
-    expect(max * 86_400).toBeCloseTo(0.15, 9);
+    expect(max * 86_400).toBeCloseTo(0.16, 9);
   });
   it('spans a sequential variable that lies far from zero', () => {
     const { min, max } = fittedLimits({ min: 191, max: 219 }, 'sequential', 1);
     expect(min).toBeGreaterThan(180);
     expect(min).toBeLessThanOrEqual(191);
     expect(max).toBeGreaterThanOrEqual(219);
-    expect(max).toBeLessThan(240);
+    expect(max).toBeLessThanOrEqual(240);
+    expect([min, (min + max) / 2, max, (max - min) / 4].map((tick) => tick % 2)).toEqual([0, 0, 0, 0]);
+  });
+  it.each([0.7, 3, 15, 28, 31, 37, 90])('covers a span of %f with four whole steps', (span) => {
+    const { min, max } = fittedLimits({ min: 1000.3, max: 1000.3 + span }, 'sequential', 1);
+    expect(min).toBeLessThanOrEqual(1000.3);
+    expect(max).toBeGreaterThanOrEqual(1000.3 + span);
+    expect(max - min).toBeLessThan(2.7 * span);
+    expect(Math.abs(min / ((max - min) / 4) - Math.round(min / ((max - min) / 4)))).toBeLessThan(1e-6);
   });
   it('is not ruled by a few cells of a jet', () => {
     const row = Float32Array.from({ length: 10_000 }, (_, k) => (k === 17 ? 100 : Math.sin(k)));

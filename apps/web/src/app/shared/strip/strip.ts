@@ -107,6 +107,11 @@ export class Strip {
     const basin = this.basin();
     return basin ? (basin.westDeg + basin.eastDeg) / 2 : null;
   });
+  /** Model day by which preflight expected the run to be spun up; null where no wind has to be forgotten from. */
+  private readonly spunUp = computed(() => {
+    const run = this.follower()?.run();
+    return run?.preflight.checks.find(({ id }) => id === 'length')?.limit ?? null;
+  });
   private readonly slice = computed(() => {
     const [follower, longitude] = [this.follower(), this.longitude()];
     return follower && longitude !== null ? untracked(() => follower.hovmoller('eta', 'longitude', longitude)) : null;
@@ -116,7 +121,11 @@ export class Strip {
     if (slice?.error() || follower?.error())
       return this.miniature() ? 'not read' : 'The strip could not be read; the run itself is safe.';
     if (this.miniature()) return '';
-    return run.state === 'queued' && run.progress.records.frames === 0 ? 'blank until it starts' : '';
+    if (run.progress.records.frames > 0 && (!slice || slice.rows.count === 0)) {
+      slice?.version();
+      return 'Reading';
+    }
+    return run.state === 'queued' ? 'blank until it starts' : '';
   });
   protected readonly label = computed(() => {
     const { label, state, progress } = this.now();
@@ -194,7 +203,8 @@ export class Strip {
       const lost = this.events.connection() === 'lost';
       const growing =
         run.state === 'running' || run.state === 'queued' || run.state === 'stopped' || run.state === 'failed';
-      const last = rows && rows.count > 0 ? rows.day(rows.count - 1) : box.x[0];
+      // While its picture is being read the pen stands where the run is, not at the beginning.
+      const last = rows && rows.count > 0 ? rows.day(rows.count - 1) : run.progress.day;
       const growth: Growth = {
         axis: 'x',
         upTo: run.state === 'finished' ? box.x[1] : last,
@@ -208,7 +218,7 @@ export class Strip {
       const none = { land: null, theory: [], seaName: '', sections: [], moorings: [] };
       const over = this.over().nativeElement;
       drawOverlay(over, { box: { ...box, yTicks }, growth, landBands, ...none }, palette, this.id);
-      if (!this.miniature()) drawLabels(over, box, palette);
+      if (!this.miniature()) drawLabels(over, box, palette, this.spunUp());
     });
   }
 
@@ -284,7 +294,7 @@ function paint(
   context.putImageData(pixels, 0, 0);
 }
 
-function drawLabels(target: SVGElement, box: PlotBox, palette: Palette): void {
+function drawLabels(target: SVGElement, box: PlotBox, palette: Palette, spunUp: number | null): void {
   const text = (x: number, y: number, anchor: string, words: string) =>
     svg('text', { x, y, 'text-anchor': anchor, fill: palette.colour['text-2'], style: `font: ${FONT}` }, words);
   box.yTicks.values.forEach((value, k) => {
@@ -295,4 +305,26 @@ function drawLabels(target: SVGElement, box: PlotBox, palette: Palette): void {
     const anchor = wholeYears && value === box.x[1] ? 'end' : 'middle';
     target.append(text(toPxX(box, value), box.top + box.h + 20, anchor, box.xTicks.labels[k] ?? ''));
   });
+  if (spunUp !== null && spunUp > box.x[0] && spunUp < box.x[1]) {
+    const x = toPxX(box, spunUp);
+    const [y1, y2] = [box.top, box.top + box.h];
+    // A halo on both: the line goes over the picture once the run has come so far.
+    target.append(
+      svg('line', { x1: x, x2: x, y1, y2, stroke: palette.colour.sheet, 'stroke-width': 3, 'stroke-opacity': 0.6 }),
+      svg('line', { x1: x, x2: x, y1, y2, stroke: palette.colour.text, 'stroke-dasharray': '2 3' }),
+    );
+    const words = 'spun up by here';
+    const fits = box.left + box.w - x > 100;
+    if (box.w >= 400) {
+      const label = text(x + (fits ? 6 : -6), y1 + 14, fits ? 'start' : 'end', words);
+      const halo = {
+        fill: palette.colour.text,
+        stroke: palette.colour.sheet,
+        'stroke-width': '3',
+        'paint-order': 'stroke',
+      };
+      for (const [name, value] of Object.entries(halo)) label.setAttribute(name, value);
+      target.append(label);
+    }
+  }
 }
