@@ -2,7 +2,12 @@
 import { createHash } from 'node:crypto';
 import { describe, expect, it } from 'vitest';
 import { sha256Hex } from '../exact/bytes';
+import { exp } from '../exact/elementary';
+import { windForcing } from '../forcing/forcing';
+import { buildGrid } from '../grid/build-grid';
 import type { Setup } from '../setup';
+import { createModel, setState, viewOf } from '../stepper/model';
+import { stepModel } from '../stepper/step';
 import { smallSetup } from '../testing/setups';
 import { IntegrationFailure } from './failure';
 import { Integration } from './integration';
@@ -52,6 +57,53 @@ describe('schedule', () => {
     expect(() => run.advance(1, { checkEvery: 0 })).toThrow(/from 1 to 20; 0 arrived/);
     run.advance(1);
     expect(run.step).toBe(240);
+  });
+});
+
+describe('the model of a run', () => {
+  it('has every number of its setup: it steps like a model made by hand', () => {
+    const of = smallSetup({
+      constants: { ...setup.constants, densityKgM3: 1030 },
+      layer: { ...setup.layer, reducedGravityMS2: 0.025, restThicknessM: 180, dampingPerS: 3e-7 },
+      friction: { rayleighPerS: 4e-7, viscosityM2S: 2500, slip: 'none' },
+      start: {
+        kind: 'bump',
+        amplitudeM: 6,
+        longitudeDeg: 9,
+        latitudeDeg: 1,
+        widthLongitudeDeg: 2,
+        widthLatitudeDeg: 3,
+      },
+    });
+    const run = spunUp(60, of);
+    const grid = buildGrid(of);
+    const byHand = createModel({
+      grid,
+      dt: 7200,
+      reducedGravity: 0.025,
+      restThickness: 180,
+      density: 1030,
+      rayleigh: 4e-7,
+      viscosity: 2500,
+      damping: 3e-7,
+      slip: 'none',
+      forcing: windForcing(of, grid),
+    });
+    const bell = (x: number, centre: number, width: number) => -0.5 * ((x - centre) / width) ** 2;
+    setState(byHand, {
+      eta: (i, j) => 6 * exp(bell(grid.lonCentre[i], 9, 2)) * exp(bell(grid.latCentre[j], 1, 3)),
+    });
+    for (let n = 0; n < 60; n++) stepModel(byHand);
+    for (const variable of ['eta', 'u', 'v'] as const) {
+      const expected = viewOf(grid, variable, byHand[variable].now);
+      const [rows, columns] = expected.shape;
+      const values = Array.from({ length: rows * columns }, (_, k) =>
+        expected.get(Math.floor(k / columns), k % columns),
+      );
+      const size = Math.max(...values.map(Math.abs));
+      expect(size).toBeGreaterThan(0);
+      run.fields()[variable].forEach((value, k) => expect(Math.abs(value - values[k])).toBeLessThan(1e-13 * size));
+    }
   });
 });
 
