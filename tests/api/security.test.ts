@@ -1,7 +1,7 @@
 // The security table of the architecture, line by line; the names of the blocks are its left column.
 import { readFile, stat } from 'node:fs/promises';
 import { join } from 'node:path';
-import { AuditRow, Mail, OneUseToken, Person, RefreshToken, Session } from '@halfdeep/store';
+import { AuditRow, Mail, OneUseToken, Person, RefreshToken, Run, Session } from '@halfdeep/store';
 import request, { type Response } from 'supertest';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { PasswordHasher } from '../../apps/api/src/accounts/password-hasher';
@@ -378,6 +378,22 @@ describe('rights lost', () => {
       expect(await Session.count({ where: { personId: who.id, endedAt: null } })).toBe(0);
     },
   );
+
+  it('end a stream, too, that was being opened at that moment', async () => {
+    const who = await somebody(api, 'in-between', 'modeller');
+    const scripted = await script(api, who);
+    const admin = await script(api, await somebody(api, 'chief', 'admin'));
+    const findAll = Run.findAll.bind(Run);
+    // The route asks for the runs after it was found out who asks, and before it listens.
+    Run.findAll = async () => {
+      Run.findAll = findAll;
+      await admin.patch(`/api/admin/people/${who.id}`, { active: false }).expect(200);
+      return [];
+    };
+    const events = await fetch(`${api.url}/api/events`, { headers: { authorization: `Bearer ${scripted.token}` } });
+    expect(events.status).toBe(200);
+    expect(await events.text()).toBe('retry: 2000\n\n');
+  });
 
   it('by a new password end sessions and event streams at once, are audited, and mailed', async () => {
     const { who, agent, scripted, link, streamEnds } = await everythingOpen('renewed');

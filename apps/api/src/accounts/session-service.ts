@@ -1,6 +1,6 @@
 import { randomUUID } from 'node:crypto';
 import { type Person, RefreshToken, Session, type DeskDatabase } from '@halfdeep/store';
-import { Subject } from 'rxjs';
+import { ReplaySubject } from 'rxjs';
 import { Op, type Transaction } from 'sequelize';
 import { type AuditTrail } from '../audit/audit-trail';
 import { UnauthenticatedError } from '../http/errors';
@@ -19,6 +19,8 @@ export const SCRIPT_ACCESS_LIFE_S = 60 * 60;
 export const REFRESH_LIFE_MS = 14 * DAY_MS;
 /** And so is a session, however often it is renewed. */
 const SESSION_LIFE_MS = 60 * DAY_MS;
+/** Longer than any request takes from finding out who asks to listening for the end of their session. */
+const REVOKED_REMEMBERED_MS = MINUTE_MS;
 /**
  * How long after a trade the traded token still gets what it was traded for: two tabs that wake together send the same
  * token where they cannot wait for each other (browsers have no locks on plain HTTP), and an answer may be lost on the way.
@@ -54,8 +56,11 @@ interface Trade {
  * session still lives.
  */
 export class SessionService {
-  private readonly revoked = new Subject<AccessRevoked>();
-  /** Every session that ends, after that is committed. Event streams of the session close when they hear it. */
+  private readonly revoked = new ReplaySubject<AccessRevoked>(Infinity, REVOKED_REMEMBERED_MS);
+  /**
+   * Every session that ends, after that is committed. Event streams of the session close when they hear it; one that was
+   * being opened at that moment hears what was said shortly before.
+   */
   readonly accessRevoked$ = this.revoked.asObservable();
   /** By the hash of the token that was given. In memory, since the database keeps no token; forgotten after the grace. */
   private readonly justTraded = new Map<string, Trade>();
