@@ -5,23 +5,19 @@ import { smallSetup } from '../../libs/ocean/src/testing/setups';
 // Case n. Budgets of mass and energy close to round-off: the end values are summed from the fields, the terms step by
 // step from ub = (u(n) + u(n + 1))/2 and ηb (identities derived for this project).
 const base = smallSetup({ length: { days: 60 } });
+const bump = { kind: 'bump', longitudeDeg: 8, latitudeDeg: 2, widthLongitudeDeg: 2, widthLatitudeDeg: 2 } as const;
 const periodic = smallSetup({
   length: { days: 60 },
   basin: { ...base.basin, zonallyPeriodic: true },
   layer: { ...base.layer, dampingPerS: 2e-7 },
   friction: { ...base.friction, slip: 'none' },
+  // With a mass of its own: one of 0 would close whatever the damping took.
+  start: { ...bump, amplitudeM: 20 },
 });
 const free = smallSetup({
   length: { days: 60 },
   friction: { rayleighPerS: 0, viscosityM2S: 0, slip: 'free' },
-  start: {
-    kind: 'bump',
-    amplitudeM: 20,
-    longitudeDeg: 8,
-    latitudeDeg: 2,
-    widthLongitudeDeg: 2,
-    widthLatitudeDeg: 2,
-  },
+  start: { ...bump, amplitudeM: 20 },
 });
 
 function closures(setup: Setup): {
@@ -30,6 +26,7 @@ function closures(setup: Setup): {
   volume: number;
   terms: Record<string, number>;
   energies: number[];
+  masses: number[];
 } {
   const run = Integration.start(setup);
   const columns = run.budgetColumns().map(({ name }) => name);
@@ -38,6 +35,7 @@ function closures(setup: Setup): {
   const seconds = (interval * 86_400) / setup.numerics.stepsPerDay;
   const terms: Record<string, number> = Object.fromEntries(columns.map((name) => [name, 0]));
   const energies: number[] = [];
+  const masses: number[] = [];
   let [mass, energy, volume, massSize, work, flow] = [0, 0, 0, 0, 0, 0];
   let volumeBefore = run.takeSections()[sections.indexOf('0.volumeNorth')];
   while (run.step < run.totalSteps) {
@@ -47,6 +45,7 @@ function closures(setup: Setup): {
     mass = Math.max(mass, Math.abs(budget[columns.indexOf('massResidual')]));
     energy = Math.max(energy, Math.abs(budget[columns.indexOf('energyResidual')]));
     energies.push(budget[columns.indexOf('kineticEnergy')] + budget[columns.indexOf('availablePotentialEnergy')]);
+    masses.push(budget[columns.indexOf('massAnomaly')]);
     work += Math.abs(budget[columns.indexOf('windWork')]);
     // Σ |η| A, the size of what mass is a difference of.
     const frame = run.frame();
@@ -60,7 +59,7 @@ function closures(setup: Setup): {
     flow = Math.max(flow, Math.abs(at('0.transport')));
     volumeBefore = at('0.volumeNorth');
   }
-  return { mass: mass / massSize, energy: energy / work, volume: volume / flow, terms, energies };
+  return { mass: mass / massSize, energy: energy / work, volume: volume / flow, terms, energies, masses };
 }
 
 describe('budgets of a basin with an island', () => {
@@ -92,6 +91,14 @@ describe('budgets of a basin with an island', () => {
     energies.slice(1).forEach((energy, k) => expect(energy).toBeLessThan(1.002 * energies[k]));
     expect(energies.at(-1)! / energies[0]).toBeLessThan(1);
     expect(energies.at(-1)! / energies[0]).toBeGreaterThan(0.8);
+  });
+
+  it('with damping the mass falls off as exp(−κt), and the damping is what took it', () => {
+    const { terms, masses } = closures(periodic);
+    const [first, last] = [masses[0], masses.at(-1)!];
+    expect(last / first / Math.exp(-2e-7 * 59 * 86_400)).toBeCloseTo(1, 6);
+    expect(terms['massDamping']).toBeLessThan(-0.5 * first);
+    expect(terms['massChange'] / terms['massDamping']).toBeCloseTo(1, 11);
   });
 
   it('without damping the mass stays what it was, to 1e-13', () => {
