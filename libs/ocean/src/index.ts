@@ -31,6 +31,7 @@ export {
   deriveColumn,
   deriveMap,
   deriveRow,
+  nativesOf,
   neededColumns,
   neededRows,
   type DerivedMap,

@@ -6,10 +6,12 @@ import {
   deriveColumn,
   deriveMap,
   deriveRow,
+  nativesOf,
   neededColumns,
   neededRows,
   VARIABLE_INFO,
   type Grid,
+  type NativeFields,
   type Variable,
 } from '@halfdeep/ocean';
 import {
@@ -71,12 +73,8 @@ export class SliceService {
       if (record < 0 || record >= available)
         throw new NotFoundError(`“${run.label}” holds ${available} frames, counted from 0; frame ${asked} was asked.`);
       const day = reader.dayOf('frames', record);
-      const state = {
-        eta: (await reader.readMap('eta', record)).data,
-        u: (await reader.readMap('u', record)).data,
-        v: (await reader.readMap('v', record)).data,
-        day,
-      };
+      const state: NativeFields = { day };
+      for (const name of nativesOf(variable)) state[name] = (await reader.readMap(name, record)).data;
       const map = deriveMap(variable, this.gridOf(run), run.setup, state);
       const axes = [
         { ...LATITUDE, values: map.latDeg },

@@ -1,14 +1,14 @@
 import { expect, it } from 'vitest';
-import { buildGrid, Integration, stressAt, VARIABLES, type Setup, type Variable } from '../index';
+import { buildGrid, Integration, type Frame, stressAt, VARIABLES, type Setup, type Variable } from '../index';
 import { smallSetup } from '../testing/setups';
-import { deriveColumn, deriveMap, deriveRow, neededColumns, neededRows, type NativeFields } from './derive';
+import { deriveColumn, deriveMap, deriveRow, nativesOf, neededColumns, neededRows, type NativeFields } from './derive';
 import { VARIABLE_INFO } from './variable-info';
 
 const closed = smallSetup();
 const periodic = smallSetup({ basin: { ...closed.basin, zonallyPeriodic: true } });
 const noSlip = smallSetup({ friction: { ...closed.friction, slip: 'none' } });
 
-function spunUp(setup: Setup): { run: Integration; fields: NativeFields } {
+function spunUp(setup: Setup): { run: Integration; fields: Frame } {
   const run = Integration.start(setup);
   run.advance(120);
   return { run, fields: run.frame() };
@@ -93,6 +93,47 @@ it('gives the vorticity of a solid rotation exactly, 2 ω, and q = (f + ζ)/h', 
   expect(Math.abs(zeta / (2 * omega) - 1)).toBeLessThan(1e-4); // float32 fields, differenced
   const pv = deriveMap('pv', grid, setup, fields).data[at];
   expect(Math.abs((pv * 250) / (grid.f[j] + zeta) - 1)).toBeLessThan(1e-6);
+});
+
+it('takes the slip factor and the mean of the water cells at a coast', () => {
+  const flow = 0.2;
+  for (const [slip, factor] of [
+    ['free', 0],
+    ['none', 2],
+  ] as const) {
+    const setup = smallSetup({
+      basin: { ...closed.basin, islands: [] },
+      friction: { ...closed.friction, slip },
+    });
+    const grid = buildGrid(setup);
+    const fields: NativeFields = {
+      eta: new Float32Array(grid.nx * grid.ny).fill(50),
+      u: new Float32Array(grid.ny * (grid.nx + 1)).fill(flow),
+      v: new Float32Array((grid.ny + 1) * grid.nx),
+      day: 0,
+    };
+    // On the southern wall: nothing moves beyond it, and the two cells north of it are all the water there is.
+    const zeta = deriveMap('vorticity', grid, setup, fields).data[9];
+    expect(Math.abs(zeta + (factor * flow) / grid.dy)).toBeLessThan((1e-6 * flow) / grid.dy);
+    const pv = deriveMap('pv', grid, setup, fields).data[9];
+    expect(Math.abs((pv * 250) / (grid.f[0] + zeta) - 1)).toBeLessThan(1e-6);
+  }
+});
+
+it('reads the native fields that a variable is made of, and no others', () => {
+  const { run, fields } = spunUp(noSlip);
+  for (const variable of VARIABLES) {
+    const natives = nativesOf(variable);
+    const some: NativeFields = { day: fields.day };
+    for (const name of natives) some[name] = fields[name];
+    expect(deriveMap(variable, run.grid, noSlip, some)).toEqual(deriveMap(variable, run.grid, noSlip, fields));
+    for (const name of natives)
+      expect(() => deriveMap(variable, run.grid, noSlip, { ...fields, [name]: undefined })).toThrow(
+        new RegExp(`${name} must hold .* none arrived`),
+      );
+  }
+  expect(nativesOf('pv')).toEqual(['eta', 'u', 'v']);
+  expect(nativesOf('taux')).toEqual([]);
 });
 
 it('pumps −τ0 (d/dy)(1/f) under a uniform zonal wind and nothing under τx = a y', () => {

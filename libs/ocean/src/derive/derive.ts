@@ -5,11 +5,14 @@ import { fillBox } from './fill';
 import { axesOf, VARIABLE_INFO } from './variable-info';
 import type { NativeParts } from './window';
 
-/** Native fields of one moment: η [ny][nx], u [ny][nx + 1], v [ny + 1][nx], land NaN, and the model day. */
+/**
+ * Native fields of one moment: η [ny][nx], u [ny][nx + 1], v [ny + 1][nx], land NaN, and the model day. Those that a
+ * variable is not made of may be left out.
+ */
 export interface NativeFields {
-  eta: Float32Array;
-  u: Float32Array;
-  v: Float32Array;
+  eta?: Float32Array;
+  u?: Float32Array;
+  v?: Float32Array;
   day: number;
 }
 
@@ -26,15 +29,16 @@ export interface DerivedMap {
 
 /**
  * A map of any variable from the native fields. u lies on u points, v on v points, vorticity and pv on corners
- * [ny + 1][nx + 1], all others at cell centres. Throws RangeError when a native field has another length than the grid's.
+ * [ny + 1][nx + 1], all others at cell centres. Throws RangeError when a native field that it is made of (`nativesOf`) is
+ * missing or has another length than the grid's.
  */
 export function deriveMap(variable: Variable, grid: Grid, setup: Setup, fields: NativeFields): DerivedMap {
   const parts: NativeParts = { eta: null, u: null, v: null };
-  for (const name of NATIVE_VARIABLES) {
+  for (const name of nativesOf(variable)) {
     const [rows, columns] = shapeOf(grid, name);
     const data = fields[name];
-    if (data.length !== rows * columns)
-      throw new RangeError(`${name} must hold ${rows} × ${columns} values; ${data.length} arrived.`);
+    if (data?.length !== rows * columns)
+      throw new RangeError(`${name} must hold ${rows} × ${columns} values; ${data?.length ?? 'none'} arrived.`);
     parts[name] = { data, j0: 0, j1: rows, i0: 0, i1: columns };
   }
   const { latDeg, lonDeg } = axesOf(variable, grid);
@@ -48,6 +52,12 @@ export function deriveMap(variable: Variable, grid: Grid, setup: Setup, fields: 
     lonDeg: Array.from(lonDeg),
     unit: VARIABLE_INFO[variable].unit,
   };
+}
+
+/** The native fields that a variable is made of; none for the wind. */
+export function nativesOf(variable: Variable): NativeVariable[] {
+  const lines = linesFor(variable, 0, (_native, first, last) => [first, last], 'rows');
+  return NATIVE_VARIABLES.filter((name) => lines[name] !== null);
 }
 
 /** Which line of a variable lies nearest to a place, and which native lines it is made of: [first, last + 1] or null. */
