@@ -7,7 +7,7 @@ test('the desk shows the demonstration happening', async ({ page, browser }) => 
   const running = page.getByRole('article');
   await expect(running).toHaveCount(2);
   await expect(page.getByText('places computing').first()).toBeVisible();
-  const clock = running.first().getByText(/^year \d/);
+  const clock = running.first().getByText(/^year \d\.\d+ of/);
   const before = await clock.textContent();
   await expect(clock).not.toHaveText(before ?? '', { timeout: 30_000 });
   await expect(page.getByRole('list', { name: 'Waiting runs' }).getByRole('listitem')).toHaveCount(1);

@@ -1,10 +1,10 @@
-import { expect, test } from '@playwright/test';
+import { type Page, expect, test } from '@playwright/test';
 import { PASSWORD, addressOf, expectSound, fillSignIn, pageAs, signIn, signOut } from './support';
 
 const NEW_PASSWORD = 'tidal-marmalade-31';
 
 /** Reads the newest mail to an address in the admin's outbox (demonstration on loopback: links are shown) and its link. */
-async function linkIn(admin: import('@playwright/test').Page, to: string): Promise<string> {
+async function linkIn(admin: Page, to: string): Promise<string> {
   await admin.goto('/admin/outbox');
   await admin.getByRole('row').filter({ hasText: to }).first().getByRole('button').click();
   const text = await admin.getByRole('dialog').innerText();
@@ -31,6 +31,7 @@ test('a forgotten password is set anew through the mail, and ends other sessions
   const admin = await pageAs(browser, 'admin');
   await page.goto('/sign-in');
   await page.getByRole('link', { name: 'Forgot the password?' }).click();
+  await expect(page.getByRole('heading', { name: 'Forgotten password' })).toBeVisible();
   await expectSound(page);
   await page.getByLabel('E-mail address').fill(addressOf('reviewer'));
   await page.getByRole('button', { name: 'Send the link' }).click();
@@ -55,6 +56,7 @@ test('a forgotten password is set anew through the mail, and ends other sessions
   await page.goto(await linkIn(admin, addressOf('reviewer')));
   await page.getByLabel('New password').fill(PASSWORD);
   await page.getByRole('button', { name: 'Set the password' }).click();
+  await expect(page.getByText('The new password holds.')).toBeVisible();
   await signIn(page, 'reviewer');
   await other.context().close();
   await admin.context().close();
@@ -71,6 +73,7 @@ test('an invited person accepts, has the role that was given, and is put out whe
   await dialog.getByLabel('Name').fill('Second reviewer');
   await dialog.getByLabel('E-mail address').fill('second-reviewer@halfdeep.example');
   await dialog.getByRole('checkbox', { name: /reviewer/i }).check();
+  await dialog.getByRole('checkbox', { name: /modeller/i }).uncheck();
   await dialog.getByRole('button', { name: /invit/i }).click();
   await expect(admin.getByRole('row').filter({ hasText: 'second-reviewer@' })).toContainText('invited');
   await page.goto(await linkIn(admin, 'second-reviewer@halfdeep.example'));

@@ -1,10 +1,12 @@
 import { expect, test } from '@playwright/test';
-import { expectSound, readRun, signIn } from './support';
+import { expectSound, openPlaces, readRun, signIn } from './support';
 
 test('a modeller asks, sets up with the preflight at hand, queues, watches, stops, resumes and extends', async ({
   page,
+  browser,
 }) => {
-  test.setTimeout(240_000);
+  test.setTimeout(300_000);
+  await openPlaces(browser);
   await signIn(page, 'modeller');
   await page.getByRole('tab', { name: 'Experiments' }).click();
   await expect(page.getByText(/Halcyon wind/).first()).toBeVisible();
@@ -53,6 +55,12 @@ test('a modeller asks, sets up with the preflight at hand, queues, watches, stop
 
   // An island by its coordinates, and a wind component, by their fields.
   await page.getByRole('button', { name: 'Add a box' }).click();
+  const edges = { 'West edge': '25', 'East edge': '27', 'South edge': '3', 'North edge': '5' };
+  for (const [edge, degrees] of Object.entries(edges))
+    await page
+      .getByRole('spinbutton', { name: new RegExp(edge) })
+      .last()
+      .fill(degrees);
   await expect(page.getByRole('button', { name: 'Queue this run' })).toBeEnabled();
   await page.getByRole('button', { name: 'Add a component' }).click();
   await expect(page.getByRole('group', { name: /Wind component/ })).toHaveCount(3);

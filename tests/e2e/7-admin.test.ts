@@ -11,6 +11,7 @@ import {
 } from './support';
 
 test('an admin caps, pauses, orders and reads what happened', async ({ page, browser }) => {
+  await openPlaces(browser);
   test.setTimeout(240_000);
   const modeller = await pageAs(browser, 'modeller');
   const experiment = await experimentByScript(modeller, 'What does the queue do with three runs?');

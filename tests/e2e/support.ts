@@ -56,10 +56,12 @@ export async function expectSound(page: Page): Promise<void> {
   await page.evaluate(() => delete document.documentElement.dataset['theme']);
   for (const width of [390, 1024, 1440]) {
     await page.setViewportSize({ width, height: 900 });
-    const overflow = await page.evaluate(
-      () => document.documentElement.scrollWidth - document.documentElement.clientWidth,
-    );
-    expect(overflow, `sideways scroll at ${width} px`).toBeLessThanOrEqual(0);
+    await expect
+      .poll(() => page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth), {
+        message: `sideways scroll at ${width} px`,
+        timeout: 10_000,
+      })
+      .toBeLessThanOrEqual(0);
   }
 }
 
