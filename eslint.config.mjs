@@ -61,6 +61,7 @@ export default tseslint.config(
         setTimeout: 'readonly',
         clearTimeout: 'readonly',
         fetch: 'readonly',
+        localStorage: 'readonly',
       },
     },
   },

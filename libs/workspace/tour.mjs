@@ -1,15 +1,16 @@
 // Makes the pictures of the README's tour from a running product whose demonstration has finished:
-//   node libs/workspace/tour.mjs http://localhost:4300 PASSWORD
+//   npm run tour -- http://localhost:4300 PASSWORD
+// A name behind that makes just this picture: `desk` is best taken while the demonstration still computes.
 import { join } from 'node:path';
 import { mkdirSync } from 'node:fs';
 import { chromium } from 'playwright';
 import { findChromium } from './chromium.mjs';
 import { root } from './run.mjs';
 
-const [base = 'http://localhost:4300', password] = process.argv.slice(2);
+const [base, password, only] = process.argv.slice(2);
 if (!password) {
   console.error(
-    'Say where the product runs and the demonstration’s password: node libs/workspace/tour.mjs ADDRESS PASSWORD',
+    'Say where the product runs and the demonstration’s password: npm run tour -- ADDRESS PASSWORD [PICTURE]',
   );
   process.exit(2);
 }
@@ -37,6 +38,7 @@ async function pageOf(role, ground) {
 }
 
 async function picture(page, path, name, settle = async () => {}) {
+  if (only && only !== name) return;
   await page.goto(base + path);
   await page.waitForLoadState('networkidle').catch((error) => {
     // The event stream of a live page never ends.
