@@ -42,6 +42,13 @@ describe('deskSentence', () => {
     expect(said(desk)).toBe('Nothing has ended since you last looked. One run is computing.');
   });
 
+  it('names on a first visit the run that ended last, without calling all of them news', () => {
+    const ended = [aRun({ label: 'Weak', state: 'finished' }), aRun({ label: 'Control', state: 'finished' })];
+    const desk = aDesk({ since: null, recent: true, ended });
+    expect(said(desk)).toBe('The last to end was Weak. Nothing is computing.');
+    expect(said({ ...desk, running: [at(60)] })).toBe('The last to end was Weak. One run is computing.');
+  });
+
   it('says on a first visit to an empty desk that nothing computes yet', () => {
     expect(said(aDesk({ since: null }))).toBe('Nothing is computing yet.');
   });

@@ -53,8 +53,14 @@ export function deskSentence(desk: Desk): Phrase[] {
     const count = now.length ? countAlone(desk.waiting.length) : formatCount(desk.waiting.length, 'run');
     now.push(`${count} ${desk.waiting.length === 1 ? 'waits' : 'wait'}`);
   }
+  const [last] = desk.ended;
+  if (desk.since === null && desk.recent && last)
+    sentence(() => {
+      say('The last to end was ');
+      say(last.label, last);
+    });
   if (now.length) sentence(() => say(sentenceStart(now.join(', '))));
-  else if (moved.length || desk.since !== null) sentence(() => say('Nothing is computing'));
+  else if (desk.ended.length || desk.since !== null) sentence(() => say('Nothing is computing'));
   else if (phrases.length === 0) sentence(() => say('Nothing is computing yet'));
   return phrases;
 }

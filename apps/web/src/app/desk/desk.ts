@@ -58,6 +58,7 @@ export class Desk {
   protected readonly ended = computed(() => {
     const desk = this.data.desk();
     if (!desk || desk.ended.length === 0) return { heading: 'Ended', about: 'nothing yet' };
+    if (desk.since === null) return { heading: 'Ended', about: 'the last few' };
     if (desk.recent) return { heading: 'Ended before', about: 'the last few, nothing new since' };
     return { heading: 'Ended', about: 'since your last visit' };
   });

@@ -29,7 +29,10 @@ import { sameGrowth, sameRange, sameSetup } from './same-setup';
 
 /** A basin that is flatter still leaves the diagram tall enough to follow a wave in it. */
 const FLATTEST = 0.55;
-const SLIDER_PX = 38;
+/** The slider, its gap, and nothing else. */
+const SLIDER_PX = 44;
+/** Share of the time axis that must be drawn before theory is drawn over it. */
+const LEAST_THEORY = 0.25;
 type Span = 'whole' | 'last1' | 'last2' | 'last4';
 const SPAN_YEARS: Record<Span, number> = { whole: Infinity, last1: 1, last2: 2, last4: 4 };
 
@@ -153,7 +156,10 @@ export class HovmollerPlate {
     if (!this.theoryPossible() || !this.theoryWanted()) return [];
     const [low, high] = this.link.yZoom() ?? this.timeRange();
     const [west, east] = this.placeRange();
-    return theoryLines(this.setup(), west, east, low, Math.min(high, Math.max(low + 1, this.growth().upTo)));
+    const upTo = Math.min(high, this.growth().upTo);
+    // Lines over blank paper, or squeezed into its first few lines, would only be in the way.
+    if (this.field() === null || upTo - low < LEAST_THEORY * (high - low)) return [];
+    return theoryLines(this.setup(), west, east, low, upTo);
   });
 
   protected readonly name = computed(() => {

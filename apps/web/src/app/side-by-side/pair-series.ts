@@ -45,3 +45,13 @@ export function pairCurves(a: GrowingSlice, b: GrowingSlice, columnA: number, co
     { name: 'B − A', series: 2, x: days, y: gaps },
   ];
 }
+
+/** The part of a curve that lies in a range of days. */
+export function within(curve: Curve, [first, last]: [number, number]): Curve {
+  const kept = Array.from({ length: curve.x.length }, (_, k) => k).filter((k) => {
+    const day = curve.x[k] ?? NaN;
+    return day >= first - 1e-6 && day <= last + 1e-6;
+  });
+  const part = (values: ArrayLike<number>) => kept.map((k) => values[k] ?? NaN);
+  return { ...curve, x: part(curve.x), y: part(curve.y) };
+}
