@@ -160,7 +160,12 @@ describe('the way of a run from a question to its fingerprint', () => {
     await wrong('frames/0', 400, /variable/);
     await wrong('hovmoller?variable=eta', 400, /either latitude or longitude/);
     await wrong('hovmoller?variable=eta&latitude=1&longitude=1', 400, /either latitude or longitude/);
-    await wrong('hovmoller?variable=eta&latitude=', 400, /latitude must be a number/);
+    await wrong('hovmoller?variable=eta&latitude=', 400, /latitude must be a number/i);
+    for (const number of ['NaN', 'Infinity', '-Infinity', '1e400', '1,5', 'null'])
+      for (const name of ['latitude', 'longitude', 'latitude=0&from', 'latitude=0&to'])
+        await wrong(`hovmoller?variable=eta&${name}=${number}`, 400, /must be (a number|between)/i);
+    await wrong('series/sections?from=NaN', 400, /must be a number/i);
+    await wrong('frames/999999999999?variable=eta', 400, /whole number from 0/);
     await wrong('hovmoller?variable=eta&latitude=95', 400, /between -80 and 80/);
     await wrong('series/tides', 400, /sections|moorings|budget/);
   });
