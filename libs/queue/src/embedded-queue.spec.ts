@@ -105,6 +105,46 @@ describe('embedded queue', () => {
     expect(states('b')).toEqual(['queued', 'running', 'queued: cap lowered', 'running']);
   });
 
+  /** Lets `act` happen between the last look at a run before its worker is forked and the fork. */
+  function beforeFork(ledger: MemoryLedger, runId: string, act: () => Promise<unknown>): void {
+    const find = ledger.find;
+    ledger.find = async (asked) => {
+      const seen = structuredClone(await find(asked));
+      if (asked === runId && seen?.state === 'running') {
+        ledger.find = find;
+        await act();
+      }
+      return seen;
+    };
+  }
+
+  it('stops a run whose worker is just being forked', async () => {
+    const ledger = new MemoryLedger();
+    const { queue, add, states } = await queueOn(ledger);
+    beforeFork(ledger, 'a', () => queue.stop('a'));
+    await add('a', 'work');
+    await until(() => states('a').includes('stopped'));
+    await queue.released('a');
+    expect(queue.workers()).toEqual([]);
+    expect(ledger.get('a').state).toBe('stopped');
+    expect(ledger.get('a').progress?.savedStep).toBe(12);
+  });
+
+  it('gives back a run that was claimed just before the cap was lowered', async () => {
+    const ledger = new MemoryLedger({ cap: 2 });
+    const { queue, add, states } = await queueOn(ledger);
+    await add('a', 'work');
+    await until(() => queue.workers().length === 1);
+    beforeFork(ledger, 'b', () => queue.setCap(1, 'checkpoint'));
+    await add('b', 'work');
+    await until(() => states('b').includes('queued: cap lowered'));
+    await queue.released('b');
+    expect(queue.workers().map(({ runId }) => runId)).toEqual(['a']);
+    expect(ledger.get('b').state).toBe('queued');
+    await queue.setCap(2, 'drain');
+    await until(() => queue.workers().length === 2);
+  });
+
   it('takes nothing new while paused, and goes on afterwards', async () => {
     const ledger = new MemoryLedger({ cap: 2, paused: true });
     const { queue, add } = await queueOn(ledger);

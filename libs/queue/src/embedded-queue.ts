@@ -114,7 +114,7 @@ export class EmbeddedQueue implements RunQueue {
     await this.change({ cap, whenLowered });
     (this.opened() as unknown as LiveQueue).concurrent = cap;
     if (whenLowered === 'checkpoint') {
-      const working = [...this.active.entries()].filter(([, active]) => active.intent === null);
+      const working = this.working();
       const youngestFirst = working.sort(([, a], [, b]) => b.worker.startedAt.getTime() - a.worker.startedAt.getTime());
       for (const [runId, active] of youngestFirst.slice(0, Math.max(0, working.length - cap))) {
         if (!(await this.requeue(runId, 'cap lowered'))) continue;
@@ -206,12 +206,25 @@ export class EmbeddedQueue implements RunQueue {
       await this.requeue(runId, 'server stopped');
       return;
     }
+    if (this.working().length >= this.settings.cap) {
+      // Claimed just before the cap was lowered.
+      await this.requeue(runId, 'cap lowered');
+      await this.resumeRequeued(runId);
+      return;
+    }
     const { varDir, checkpointSeconds } = this.options;
     const job = { runId, setup, varDir, checkpointSeconds };
     const worker = new WorkerProcess(job, this.options.worker, (message) => this.hear(runId, message));
     const active: Active = { worker, intent: null, deaths: run.deaths, writes: Promise.resolve() };
     this.active.set(runId, active);
-    this.write(active, 'noting the worker', () => this.ledger.recordWorker(runId, worker.pid ?? null));
+    this.write(active, 'noting the worker', async () => {
+      await this.ledger.recordWorker(runId, worker.pid ?? null);
+      // An order to stop that came while the worker was being forked found nobody to give it to.
+      const state = (await this.ledger.find(runId))?.state;
+      if (state === 'running' || active.intent !== null) return;
+      active.intent = 'stop';
+      worker.save();
+    });
     const end = await worker.ended;
     await active.writes;
     try {
@@ -220,6 +233,11 @@ export class EmbeddedQueue implements RunQueue {
       this.active.delete(runId);
     }
     await this.announce.queue();
+  }
+
+  /** Runs with a worker that has not been ordered to save. */
+  private working(): [string, Active][] {
+    return [...this.active.entries()].filter(([, active]) => active.intent === null);
   }
 
   private hear(runId: string, message: WorkerMessage): void {
