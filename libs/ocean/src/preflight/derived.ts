@@ -45,7 +45,8 @@ export function derivedNumbers(of: Case): DerivedNumber[] {
         'adjustment',
         `adjustment at ${edge}`,
         'Lx f²/(βc²)',
-        nullable(crossing(fMax), (s) => s / SECONDS_PER_YEAR),
+        // Nothing crosses from wall to wall where there is no wall.
+        of.setup.basin.zonallyPeriodic ? null : nullable(crossing(fMax), (s) => s / SECONDS_PER_YEAR),
         'y',
       ),
       number('memory', 'memory of the layer', 'm', days(scales.memory), 'd'),

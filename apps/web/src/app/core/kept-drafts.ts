@@ -6,6 +6,8 @@ export interface KeptDraft {
   savedAt: string;
   /** Null while the label follows the changes. */
   label: string | null;
+  /** The label that stood in the form when it was left, for lists. */
+  shown?: string;
   content: unknown;
 }
 
@@ -44,6 +46,7 @@ export class KeptDrafts {
         return {
           savedAt: kept.savedAt,
           label: typeof kept.label === 'string' ? kept.label : null,
+          shown: typeof kept.shown === 'string' ? kept.shown : '',
           content: kept.content,
         };
     } catch (error) {

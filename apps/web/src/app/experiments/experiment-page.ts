@@ -86,7 +86,11 @@ export class ExperimentPage {
     return this.drafts.of(personId, this.id()).map(({ place, draft }) => {
       const parent = this.live.runs().find(({ id }) => id === place.parentRunId);
       const from = place.parentRunId === null ? 'a control run' : `from ${parent?.label ?? 'a run that is gone'}`;
-      return { place, name: draft.label ?? 'Without a label', about: `${from}, ${formatMoment(draft.savedAt)}` };
+      return {
+        place,
+        name: draft.label || draft.shown || 'Without a label',
+        about: `${from}, ${formatMoment(draft.savedAt)}`,
+      };
     });
   });
   protected readonly presets: Choice[] = [

@@ -39,6 +39,23 @@ describe('SetupDraft', () => {
     expect(draft.changes().map(({ pointer }) => pointer)).toEqual(['/wind/components/0', '/wind/seasonalStrength']);
   });
 
+  it('judges a basin whose places lie outside, and moves them in or takes them away', () => {
+    draft.parent.set(parent);
+    draft.set('/basin/southDeg', 2);
+    expect(draft.setup()).toBeNull();
+    expect(draft.problems().get('/output/sections/1/atDeg')).toContain('must lie inside the basin');
+    expect(draft.readable().basin.southDeg).toBe(2);
+    expect(draft.readable().output.sections.map(({ name }) => name)).toEqual(['N 10', 'Meridian 30']);
+    // They are left out of what is judged, not of what would be sent.
+    expect(draft.changes().map(({ pointer }) => pointer)).toEqual(['/basin/southDeg']);
+    const before = draft.value();
+    draft.moveInside();
+    expect(draft.setup()?.output.sections.map(({ atDeg }) => atDeg)).toEqual([10, 2.5, 2.5, 30]);
+    draft.fill(before);
+    draft.removeOutside();
+    expect(draft.setup()?.output.moorings.map(({ name }) => name)).toEqual(['North']);
+  });
+
   it('proposes a label from the changes until another is written', () => {
     draft.parent.set(parent);
     draft.set('/wind/seasonalStrength', 1.2);

@@ -31,9 +31,29 @@ export class SetupDraft {
   /** The setup when every field reads well, else null. */
   readonly setup = computed<Setup | null>(() => this.parsed().data ?? null);
 
-  /** The last setup that read well: what pictures and preflight show while a field is half typed. */
+  /** Sections and moorings that lie outside the basin, for example since its edges were moved. */
+  readonly outside = computed<OutsidePlace[]>(() =>
+    (this.parsed().error?.issues ?? []).flatMap(({ path: [output, list, index, field] }) => {
+      if (output !== 'output' || (list !== 'sections' && list !== 'moorings') || typeof index !== 'number') return [];
+      const pointer = toPointer([output, list, index, String(field)]);
+      const value = this.at(pointer);
+      return PLACE_FIELDS.has(String(field)) && typeof value === 'number' && Number.isFinite(value)
+        ? [{ list, index, pointer, value }]
+        : [];
+    }),
+  );
+  /** The setup without what lies outside, when nothing else is wrong with it: its basin can be judged already. */
+  private readonly withoutOutside = computed<Setup | null>(() => {
+    const outside = this.outside();
+    if (outside.length === 0) return null;
+    return setupSchema.safeParse(without(this.written(), outside)).data ?? null;
+  });
+  /** What pictures and preflight go by. */
+  readonly judged = computed<Setup | null>(() => this.setup() ?? this.withoutOutside());
+
+  /** The last setup that could be judged: what pictures and preflight show while a field is half typed. */
   readonly readable = linkedSignal<Setup | null, Setup>({
-    source: this.setup,
+    source: this.judged,
     computation: (setup, before) => setup ?? before?.value ?? blankSetup(),
   });
 
@@ -49,7 +69,9 @@ export class SetupDraft {
 
   readonly changes = computed<SetupChange[]>(() => {
     const parent = this.parent();
-    return parent ? diffSetups(parent.setup, this.readable()) : [];
+    // Places outside the basin are changes too, though it cannot be judged with them.
+    const setup = this.withoutOutside() === null ? this.readable() : this.written();
+    return parent ? diffSetups(parent.setup, setup) : [];
   });
 
   private readonly changesByPointer = computed(
@@ -117,6 +139,28 @@ export class SetupDraft {
     );
   }
 
+  /** Every place that lies outside moves to the nearest edge, two cells inside. */
+  moveInside(): void {
+    const { basin, numerics } = this.written();
+    let moved = this.written();
+    for (const { list, index, pointer, value } of this.outside()) {
+      const alongLongitude =
+        pointer.endsWith('/longitudeDeg') ||
+        (list === 'sections' && this.written().output.sections[index]?.along === 'longitude');
+      const [from, to, spacing] = alongLongitude
+        ? [basin.westDeg, basin.eastDeg, numerics.spacingLongitudeDeg]
+        : [basin.southDeg, basin.northDeg, numerics.spacingLatitudeDeg];
+      const margin = Math.min(2 * spacing, (to - from) / 2);
+      const inside = Math.min(Math.max(value, from + margin), to - margin);
+      moved = withValueAt(moved, pointer, Number(inside.toPrecision(10)));
+    }
+    this.written.set(moved);
+  }
+
+  removeOutside(): void {
+    this.written.set(without(this.written(), this.outside()));
+  }
+
   private list(pointer: string): unknown[] {
     const list = this.at(pointer);
     return Array.isArray(list) ? (list as unknown[]) : [];
@@ -149,6 +193,26 @@ export class SetupDraft {
     );
     if (kept.length !== this.fromServer().size) this.fromServer.set(new Map(kept));
   }
+}
+
+/** A place outside the basin: which item of which list, and the field that says so. */
+export interface OutsidePlace {
+  list: 'sections' | 'moorings';
+  index: number;
+  pointer: string;
+  value: number;
+}
+
+const PLACE_FIELDS = new Set(['atDeg', 'longitudeDeg', 'latitudeDeg']);
+
+function without(setup: Setup, outside: readonly OutsidePlace[]): Setup {
+  const kept = <T>(list: OutsidePlace['list'], items: readonly T[]) =>
+    items.filter((_, k) => !outside.some((place) => place.list === list && place.index === k));
+  const { sections, moorings } = setup.output;
+  return {
+    ...setup,
+    output: { ...setup.output, sections: kept('sections', sections), moorings: kept('moorings', moorings) },
+  };
 }
 
 /** Where a check is told in the form: at the fields that its remedy writes, else at all that it is about. */

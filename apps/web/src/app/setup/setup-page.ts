@@ -19,7 +19,7 @@ import { deskSchema, experimentSchema, runSchema, runSummarySchema } from '@half
 import { PRESETS, type Setup } from '@halfdeep/ocean';
 import { firstValueFrom } from 'rxjs';
 import { Api, newIdempotencyKey } from '../core/api';
-import { formatChange, formatCount, formatMoment } from '../core/format';
+import { formatChange, formatCount, formatMoment, sentenceStart } from '../core/format';
 import { KeptDrafts, type DraftPlace } from '../core/kept-drafts';
 import { PageTitle } from '../core/page-title';
 import { type ApiProblem, toApiProblem } from '../core/problem';
@@ -186,7 +186,9 @@ export class SetupPage {
       return;
     }
     const refused =
-      reading.refusedFields > 0 ? ` ${formatCount(reading.refusedFields, 'field')} cannot be read yet.` : '';
+      reading.refusedFields > 0
+        ? ` ${sentenceStart(formatCount(reading.refusedFields, 'field'))} cannot be read yet.`
+        : '';
     this.replace(reading.setup, reading.label, `The form is filled in from “${file.name}”.${refused}`);
   }
 
@@ -309,7 +311,13 @@ export class SetupPage {
   private keep(): void {
     if (!this.ready() || this.sent) return;
     if (this.draft.touched())
-      this.notKept.set(!this.storage.save(this.place(), { label: this.draft.ownLabel(), content: this.draft.value() }));
+      this.notKept.set(
+        !this.storage.save(this.place(), {
+          label: this.draft.ownLabel(),
+          shown: this.draft.label(),
+          content: this.draft.value(),
+        }),
+      );
     else this.storage.remove(this.place());
   }
 }

@@ -1,6 +1,6 @@
 import type { Check } from '@halfdeep/ocean';
 import { SPACE } from '../../core/format';
-import { checkNumbers, splitUnit, verdictWords } from './check-words';
+import { checkNumbers, splitUnit, unbroken, verdictWords } from './check-words';
 
 const check = (part: Partial<Check>): Check => ({
   id: 'x',
@@ -29,6 +29,16 @@ describe('words of a check', () => {
     );
     expect(verdictWords({ checks: [check({})] }, 2)).toBe('two refusals');
     expect(verdictWords({ checks: [check({})] })).toBe('every check passes');
+  });
+  it('tells counts whole, and nothing of two zeros', () => {
+    const cells = { value: 33_600, limit: 4_000_000, ratio: 0.0084, unit: 'cells' };
+    expect(checkNumbers(check(cells))).toBe('33\u202f600 of 4\u202f000\u202f000');
+    expect(checkNumbers(check({ value: 0, limit: 0, ratio: 0, unit: 'd' }))).toBe('');
+  });
+  it('keeps a unit with its number', () => {
+    expect(unbroken('10\u202f800 s must be below 7\u202f690 s; 2 sections stay apart.')).toBe(
+      `10\u202f800${SPACE}s must be below 7\u202f690${SPACE}s; 2 sections stay apart.`,
+    );
   });
   it('parts a number from its unit', () => {
     expect(splitUnit(`18.4${SPACE}GB`)).toEqual({ number: '18.4', unit: 'GB' });

@@ -23,6 +23,11 @@ export function verdictWords({ checks }: Pick<Preflight, 'checks'>, unread = 0):
   return parts.length > 0 ? parts.join(', ') : 'every check passes';
 }
 
+/** A sentence whose numbers are not parted from their units at the end of a line. */
+export function unbroken(text: string): string {
+  return text.replace(/(?<=\d) (?=(?:km|m|s|d|m²\/s|1\/s|N\/m²|GB|MB|kB)(?![\p{L}\d]))/gu, SPACE);
+}
+
 /** A formatted quantity in its number and its unit, so that the unit can be smaller. */
 export function splitUnit(text: string): { number: string; unit: string } {
   const at = Math.max(text.lastIndexOf(NARROW), text.lastIndexOf(SPACE));

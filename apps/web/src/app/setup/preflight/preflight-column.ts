@@ -51,7 +51,7 @@ export class PreflightColumn {
   protected readonly unread = computed(() =>
     [...this.draft.problems()].map(([pointer, reason]) => ({
       pointer,
-      label: sentenceStart(fieldLabel(pointer, this.draft.readable())),
+      label: sentenceStart(fieldLabel(pointer, this.draft.value())),
       reason,
     })),
   );
@@ -69,7 +69,7 @@ export class PreflightColumn {
     const cost = this.result()?.cost;
     if (!cost) return null;
     return {
-      time: splitUnit(formatDuration(cost.seconds, 1)),
+      time: cost.seconds < 1 ? { number: '< 1', unit: 's' } : splitUnit(formatDuration(cost.seconds, 1)),
       disk: splitUnit(formatBytes(cost.diskBytes)),
       free: this.runner.context().freeDiskBytes,
     };

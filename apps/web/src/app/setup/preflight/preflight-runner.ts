@@ -1,6 +1,7 @@
 import { computed, DestroyRef, effect, inject, Injectable, signal, untracked } from '@angular/core';
-import { preflight, type PreflightContext, type Setup } from '@halfdeep/ocean';
+import { preflight, type Preflight, type PreflightContext, type Setup } from '@halfdeep/ocean';
 import { SetupDraft } from '../setup-draft';
+import { unbroken } from './check-words';
 
 /** Longer than this and typing would be felt to stick: then preflight waits until the typing rests. */
 const FELT_MS = 24;
@@ -24,7 +25,7 @@ export class PreflightRunner {
 
   constructor() {
     effect(() => {
-      const setup = this.draft.setup();
+      const setup = this.draft.judged();
       const context = this.context();
       if (setup) untracked(() => this.schedule(setup, context));
     });
@@ -47,7 +48,7 @@ export class PreflightRunner {
   private run(setup: Setup, context: PreflightContext): void {
     const began = performance.now();
     try {
-      this.draft.preflight.set(preflight(setup, context));
+      this.draft.preflight.set(told(preflight(setup, context), this.draft.outside().length > 0));
       this.failure.set(null);
     } catch (error) {
       if (!(error instanceof RangeError)) throw error;
@@ -59,4 +60,14 @@ export class PreflightRunner {
       this.waiting.set(false);
     }
   }
+}
+
+/** Places outside the basin were left out, so what is said of lists of places waits; units stay with their numbers. */
+function told(result: Preflight, placesMissing: boolean): Preflight {
+  return {
+    ...result,
+    checks: result.checks
+      .filter(({ id }) => !placesMissing || (id !== 'sections' && id !== 'moorings'))
+      .map((check) => ({ ...check, reason: unbroken(check.reason) })),
+  };
 }

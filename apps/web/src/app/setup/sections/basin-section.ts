@@ -30,10 +30,10 @@ export class BasinSection {
     { value: 'true', label: 'zonally periodic' },
   ];
   protected readonly basin = computed(() => this.draft.value().basin);
-  protected readonly coasts = computed<Choice[]>(() => [
+  protected readonly coasts: Choice[] = [
     { value: 'rectangular', label: 'along the west edge' },
-    { value: 'slanting', label: 'slanting', disabled: this.basin().zonallyPeriodic },
-  ]);
+    { value: 'slanting', label: 'slanting' },
+  ];
   protected readonly middleDeg = computed(() => {
     const { basin } = this.draft.readable();
     return `middle, ${((basin.southDeg + basin.northDeg) / 2).toFixed(1)}`;

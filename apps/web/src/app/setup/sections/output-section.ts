@@ -1,6 +1,7 @@
 import { ChangeDetectionStrategy, Component, computed, inject } from '@angular/core';
 import { MatButton } from '@angular/material/button';
-import { LIMITS } from '@halfdeep/ocean';
+import { LIMITS, type Setup } from '@halfdeep/ocean';
+import { formatCount, sentenceStart } from '../../core/format';
 import type { Choice } from '../../shared/choice-field/choice-field';
 import { newMooring, newSection } from '../blank-setup';
 import { SetupChoice } from '../fields/setup-choice';
@@ -33,6 +34,11 @@ export class OutputSection {
     return `${text} ${years === 1 ? 'year' : 'years'} of 365 days. Long enough for the season to repeat?`;
   });
 
+  protected readonly outside = computed(() => {
+    const places = new Set(this.draft.outside().map(({ list, index }) => `${list} ${index}`));
+    return places.size === 0 ? '' : `${sentenceStart(formatCount(places.size, 'place'))} outside the basin.`;
+  });
+
   protected listProblem(list: 'sections' | 'moorings'): string | null {
     return this.draft.problems().get(`/output/${list}`) ?? null;
   }
@@ -41,11 +47,16 @@ export class OutputSection {
     return this.draft.change(`/output/${list}/${index}`) !== null;
   }
 
+  /** A basin that can be read, and the lists as they are written. */
+  private basis(): Setup {
+    return { ...this.draft.readable(), output: this.draft.value().output };
+  }
+
   protected addSection(): void {
-    this.draft.insert('/output/sections', newSection(this.draft.readable()));
+    this.draft.insert('/output/sections', newSection(this.basis()));
   }
 
   protected addMooring(): void {
-    this.draft.insert('/output/moorings', newMooring(this.draft.readable()));
+    this.draft.insert('/output/moorings', newMooring(this.basis()));
   }
 }
