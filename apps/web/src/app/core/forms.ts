@@ -26,6 +26,11 @@ export function showFieldProblems(form: FormGroup, problem: ApiProblem): string[
   return shown;
 }
 
+/** After a refusal: the focus goes to the first field that is wrong, so that its sentence is read and it can be mended. */
+export function focusFirstWrong(within: HTMLElement): void {
+  within.querySelector<HTMLElement>(':is(input, textarea, select).ng-invalid')?.focus();
+}
+
 /** The sentence under a field, or an empty one. */
 export function messageOf(control: AbstractControl): string {
   return (control.errors?.['message'] as string | undefined) ?? '';

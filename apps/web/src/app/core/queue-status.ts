@@ -4,6 +4,12 @@ import type { Subscription } from 'rxjs';
 import { RunEvents } from './run-events';
 import { Session } from './session';
 
+/** "2 of 3 places computing"; while work beyond a lowered cap still runs to its end, "2 computing, the cap is 1". */
+export function placesInWords(running: number, cap: number): string {
+  if (running > cap) return `${running} computing, the cap is ${cap}`;
+  return `${running} of ${cap} ${cap === 1 ? 'place' : 'places'} computing`;
+}
+
 /** How many places compute, for the sign in the head: from the event stream, and from whatever reads the queue. */
 @Injectable({ providedIn: 'root' })
 export class QueueStatus {

@@ -90,6 +90,7 @@ describe('Session', () => {
     expect(session.signedIn()).toBe(true);
     ending.flush('');
     await signOut;
+    expect(session.brokenOff()).toBe(false);
     expect(session.signedIn()).toBe(false);
     expect(router.url).toBe('/sign-in');
   });
@@ -128,6 +129,7 @@ describe('refreshOn401', () => {
     await expect(read).rejects.toMatchObject({ status: 401 });
     await settle();
     expect(session.signedIn()).toBe(false);
+    expect(session.brokenOff()).toBe(true);
     expect(router.url).toBe('/sign-in?next=%2Fruns%2F7%3Ftab%3Dmap');
   });
 

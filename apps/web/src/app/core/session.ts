@@ -20,7 +20,11 @@ export class Session {
   private first: Promise<Me | null> | null = null;
   private refreshing: Observable<boolean> | null = null;
 
+  private readonly broken = signal(false);
+
   readonly me = this.person.asReadonly();
+  /** The server ended the session under a page that was open: its reader deserves to know why they are asked to sign in. */
+  readonly brokenOff = this.broken.asReadonly();
   readonly signedIn = computed(() => this.person() !== null);
 
   has(role: Role): boolean {
@@ -55,6 +59,7 @@ export class Session {
       map(({ me }) => {
         this.first = Promise.resolve(me);
         this.person.set(me);
+        this.broken.set(false);
         return me;
       }),
     );
@@ -107,6 +112,7 @@ export class Session {
   ended(): void {
     const hadOne = this.signedIn();
     this.forget();
+    this.broken.set(hadOne);
     if (hadOne) void this.router.navigate(['/sign-in'], { queryParams: { next: this.router.url } });
   }
 

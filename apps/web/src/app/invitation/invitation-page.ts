@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, effect, inject, signal, untracked } from '@angular/core';
+import { ChangeDetectionStrategy, Component, ElementRef, effect, inject, signal, untracked } from '@angular/core';
 import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import { MatError, MatFormField, MatHint, MatLabel } from '@angular/material/form-field';
@@ -16,7 +16,7 @@ import { firstValueFrom } from 'rxjs';
 import { AddressToken } from '../core/address-token';
 import { Api } from '../core/api';
 import { formatMoment } from '../core/format';
-import { bySchema, messageOf, showFieldProblems } from '../core/forms';
+import { bySchema, focusFirstWrong, messageOf, showFieldProblems } from '../core/forms';
 import { type ApiProblem, toApiProblem } from '../core/problem';
 import { Session } from '../core/session';
 import { DataState } from '../shared/data-state/data-state';
@@ -45,6 +45,7 @@ export class InvitationPage {
   private readonly api = inject(Api);
   private readonly session = inject(Session);
   private readonly router = inject(Router);
+  private readonly host = inject<ElementRef<HTMLElement>>(ElementRef);
   protected readonly token = inject(AddressToken).follow();
   protected readonly minLength = MIN_PASSWORD_LENGTH;
   protected readonly messageOf = messageOf;
@@ -92,6 +93,7 @@ export class InvitationPage {
   protected async accept(): Promise<void> {
     const invitation = this.invitation();
     this.form.markAllAsTouched();
+    if (this.form.invalid) focusFirstWrong(this.host.nativeElement);
     if (this.form.invalid || this.busy() || !invitation) return;
     this.busy.set(true);
     this.problem.set(null);

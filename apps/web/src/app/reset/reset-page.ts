@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, inject, linkedSignal, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, ElementRef, inject, linkedSignal, signal } from '@angular/core';
 import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import { MatError, MatFormField, MatHint, MatLabel } from '@angular/material/form-field';
@@ -8,7 +8,7 @@ import { MIN_PASSWORD_LENGTH, passwordResetRequestSchema, passwordSchema } from 
 import { firstValueFrom } from 'rxjs';
 import { AddressToken } from '../core/address-token';
 import { Api } from '../core/api';
-import { bySchema, messageOf, showFieldProblems } from '../core/forms';
+import { bySchema, focusFirstWrong, messageOf, showFieldProblems } from '../core/forms';
 import { type ApiProblem, toApiProblem } from '../core/problem';
 import { ProblemMessage } from '../shared/problem-message/problem-message';
 
@@ -32,6 +32,7 @@ import { ProblemMessage } from '../shared/problem-message/problem-message';
 })
 export class ResetPage {
   private readonly api = inject(Api);
+  private readonly host = inject<ElementRef<HTMLElement>>(ElementRef);
   private readonly fromAddress = inject(AddressToken).follow();
   /** The token in use; a link that is opened later in this tab takes the place of what stood here. */
   protected readonly token = linkedSignal(() => this.fromAddress());
@@ -77,6 +78,7 @@ export class ResetPage {
 
   private async send(form: FormGroup, path: string, body: unknown, done: 'asked' | 'changed'): Promise<void> {
     form.markAllAsTouched();
+    if (form.invalid) focusFirstWrong(this.host.nativeElement);
     if (form.invalid || this.busy()) return;
     this.busy.set(true);
     this.problem.set(null);

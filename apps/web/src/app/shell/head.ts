@@ -8,7 +8,7 @@ import { type ActivatedRouteSnapshot, NavigationEnd, Router, RouterLink } from '
 import { filter, map, startWith } from 'rxjs';
 import { Ground, type GroundName } from '../core/ground';
 import { toApiProblem } from '../core/problem';
-import { QueueStatus } from '../core/queue-status';
+import { QueueStatus, placesInWords } from '../core/queue-status';
 import { Session } from '../core/session';
 import { Confirm } from '../shared/confirm/confirm';
 import { StateSign } from '../shared/state-sign/state-sign';
@@ -67,10 +67,10 @@ export class Head {
   protected readonly computing = computed(() => {
     const queue = this.queue();
     if (!queue) return null;
-    const places = `${queue.running} of ${queue.cap} ${queue.cap === 1 ? 'place' : 'places'} computing`;
+    const places = placesInWords(queue.running, queue.cap);
     return {
       state: queue.running > 0 ? ('running' as const) : ('queued' as const),
-      share: queue.cap > 0 ? queue.running / queue.cap : 0,
+      share: queue.cap > 0 ? Math.min(1, queue.running / queue.cap) : 0,
       text: queue.paused ? `${places}, intake paused` : places,
     };
   });

@@ -54,6 +54,9 @@ describe('SignIn', () => {
       ['An e-mail address looks like name@place.example.'],
       ['The password is missing.'],
     ]);
+    expect(await (await input('E-mail address')).isFocused()).toBe(true);
+    await send('nobody@halfdeep.example', '');
+    expect(await (await input('Password')).isFocused()).toBe(true);
   });
 
   it('goes on to the page that asked for it', async () => {

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, DestroyRef, inject, input, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, ElementRef, DestroyRef, inject, input, signal } from '@angular/core';
 import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
@@ -7,7 +7,7 @@ import { MatInput } from '@angular/material/input';
 import { Router, RouterLink } from '@angular/router';
 import { signInSchema } from '@halfdeep/contracts';
 import { firstValueFrom, map, takeWhile, timer } from 'rxjs';
-import { bySchema, messageOf, showFieldProblems } from '../core/forms';
+import { bySchema, focusFirstWrong, messageOf, showFieldProblems } from '../core/forms';
 import { type ApiProblem, toApiProblem } from '../core/problem';
 import { Session } from '../core/session';
 import { ProblemMessage } from '../shared/problem-message/problem-message';
@@ -21,8 +21,9 @@ import { ProblemMessage } from '../shared/problem-message/problem-message';
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class SignIn {
-  private readonly session = inject(Session);
+  protected readonly session = inject(Session);
   private readonly router = inject(Router);
+  private readonly host = inject<ElementRef<HTMLElement>>(ElementRef);
   private readonly destroyed = inject(DestroyRef);
   /** Address to go on to, from ?next=; only ever inside this application. */
   readonly next = input<string>();
@@ -40,6 +41,7 @@ export class SignIn {
 
   protected async submit(): Promise<void> {
     this.form.markAllAsTouched();
+    if (this.form.invalid) focusFirstWrong(this.host.nativeElement);
     if (this.form.invalid || this.busy() || this.waitSeconds() > 0) return;
     const { email, password } = this.form.getRawValue();
     this.busy.set(true);

@@ -15,8 +15,27 @@ import { MailDialog } from './mail-dialog';
   selector: 'app-outbox-page',
   imports: [DataState, ListSearch, MatButton, MatPaginator, ProblemMessage],
   templateUrl: './outbox-page.html',
-  styles:
-    '.title { margin-bottom: 18px; } app-list-search { margin-bottom: 12px; } .failed { color: var(--hd-refuse); }',
+  styles: `
+    .title {
+      margin-bottom: 18px;
+    }
+    app-list-search {
+      margin-bottom: 12px;
+    }
+    .failed {
+      color: var(--hd-refuse);
+    }
+    @media screen and (max-width: 760px) {
+      tbody th {
+        min-width: 150px;
+        white-space: normal;
+        overflow-wrap: anywhere;
+      }
+      .words {
+        min-width: 110px;
+      }
+    }
+  `,
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class OutboxPage {

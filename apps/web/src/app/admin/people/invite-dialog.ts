@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, inject, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, ElementRef, computed, inject, signal } from '@angular/core';
 import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import {
@@ -13,7 +13,7 @@ import { MatInput } from '@angular/material/input';
 import { type Person, type Role, inviteSchema, personSchema } from '@halfdeep/contracts';
 import { firstValueFrom } from 'rxjs';
 import { Api, newIdempotencyKey } from '../../core/api';
-import { bySchema, messageOf, showFieldProblems } from '../../core/forms';
+import { bySchema, focusFirstWrong, messageOf, showFieldProblems } from '../../core/forms';
 import { type ApiProblem, toApiProblem } from '../../core/problem';
 import { ProblemMessage } from '../../shared/problem-message/problem-message';
 import { RoleBoxes } from './role-boxes';
@@ -65,6 +65,7 @@ import { RoleBoxes } from './role-boxes';
 })
 export class InviteDialog {
   private readonly api = inject(Api);
+  private readonly host = inject<ElementRef<HTMLElement>>(ElementRef);
   private readonly opened = inject<MatDialogRef<InviteDialog, Person>>(MatDialogRef);
   protected readonly form = new FormGroup({
     email: new FormControl('', { nonNullable: true, validators: bySchema(inviteSchema.shape.email) }),
@@ -82,6 +83,7 @@ export class InviteDialog {
 
   protected async send(): Promise<void> {
     this.form.markAllAsTouched();
+    if (this.form.invalid) focusFirstWrong(this.host.nativeElement);
     if (this.form.invalid || this.rolesMessage() || this.busy()) return;
     this.busy.set(true);
     this.problem.set(null);

@@ -52,9 +52,9 @@ export class PeoplePage {
   }
 
   /** A new link by mail; the older one stops working. */
-  protected inviteAgain(person: Person): Promise<void> {
+  protected async inviteAgain(person: Person): Promise<void> {
     const { email, name, roles } = person;
-    return this.change(person, 'POST', { email, name, roles }, `A new invitation goes to ${email}.`);
+    await this.change(person, 'POST', { email, name, roles }, `A new invitation goes to ${email}.`);
   }
 
   protected async changeRoles(person: Person): Promise<void> {
@@ -76,23 +76,43 @@ export class PeoplePage {
     if (sure) await this.change(person, 'PATCH', { active: false }, `${person.name} is deactivated.`);
   }
 
-  protected async reactivate(person: Person): Promise<void> {
+  protected async withdraw(person: Person): Promise<void> {
     const sure = await this.confirm.ask({
-      title: `Let ${person.name} in again?`,
-      text: `They can sign in again as ${person.roles.join(' and ')}, with the password they had.`,
-      yes: 'Reactivate',
+      title: `Withdraw the invitation of ${person.name}?`,
+      text: `The link that went to ${person.email} stops working. They can be invited again later.`,
+      yes: 'Withdraw',
+      ends: true,
     });
-    if (sure) await this.change(person, 'PATCH', { active: true }, `${person.name} can sign in again.`);
+    if (sure) await this.change(person, 'PATCH', { active: false }, `The invitation of ${person.name} is withdrawn.`);
   }
 
-  private async change(person: Person, method: 'POST' | 'PATCH', body: object, done: string): Promise<void> {
+  protected async reactivate(person: Person): Promise<void> {
+    const as = person.roles.join(' and ');
+    // Whoever was never here has no password yet.
+    const invite = person.lastSeenAt === null;
+    const sure = await this.confirm.ask({
+      title: `Let ${person.name} in again?`,
+      text: invite
+        ? `If they have not accepted an invitation yet, a new one goes to ${person.email}; otherwise they can sign in as ${as}.`
+        : `They can sign in again as ${as}, with the password they had.`,
+      yes: 'Reactivate',
+    });
+    if (!sure) return;
+    const changed = await this.change(person, 'PATCH', { active: true }, `${person.name} can sign in again.`);
+    if (changed?.state === 'invited') this.done.set(`A new invitation goes to ${person.email}.`);
+  }
+
+  /** The person as changed; null when that was refused, or when nothing but a mail came of it. */
+  private async change(person: Person, method: 'POST' | 'PATCH', body: object, done: string): Promise<Person | null> {
+    let changed: Person | null = null;
     this.refused.set(null);
     this.busyWith.set(person.id);
     try {
       if (method === 'POST') await firstValueFrom(this.api.send('POST', '/api/admin/people', body));
       else {
-        const changed = await firstValueFrom(this.api.patch(`/api/admin/people/${person.id}`, body, personSchema));
-        this.people.replace(changed, (item) => item.id === changed.id);
+        const answer = await firstValueFrom(this.api.patch(`/api/admin/people/${person.id}`, body, personSchema));
+        this.people.replace(answer, (item) => item.id === answer.id);
+        changed = answer;
       }
       this.done.set(done);
     } catch (error) {
@@ -100,5 +120,6 @@ export class PeoplePage {
     } finally {
       this.busyWith.set(null);
     }
+    return changed;
   }
 }

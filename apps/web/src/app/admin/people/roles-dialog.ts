@@ -33,6 +33,7 @@ import { RoleBoxes } from './role-boxes';
       </button>
     </mat-dialog-actions>
   `,
+  styles: 'app-problem-message { display: block; margin-bottom: 12px; } app-problem-message:empty { margin: 0; }',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class RolesDialog {

@@ -90,6 +90,16 @@ describe('QueuePage', () => {
     expect(patch().request.body).toEqual({ cap: 1, whenLowered: 'checkpoint' });
   });
 
+  it('says that more computes than the cap while running work goes on to its end', async () => {
+    await (await loader.getHarness(MatInputHarness.with({ label: 'Runs at once' }))).setValue('1');
+    await press('Set the cap');
+    const request = patch();
+    expect(request.request.body).toEqual({ cap: 1, whenLowered: 'drain' });
+    request.flush({ ...QUEUE, cap: 1 });
+    await settle(fixture);
+    expect(text()).toContain('2 computing, the cap is 1, three runs wait.');
+  });
+
   it.each(['0', '5', '1.5', ''])('refuses the cap "%s" with the range', async (cap) => {
     await (await loader.getHarness(MatInputHarness.with({ label: 'Runs at once' }))).setValue(cap);
     expect(text()).toContain('A whole number from 1 to 4');

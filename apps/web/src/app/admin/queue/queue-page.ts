@@ -10,7 +10,7 @@ import { firstValueFrom } from 'rxjs';
 import { Api } from '../../core/api';
 import { formatCount, formatDuration, formatModelTime, sentenceStart } from '../../core/format';
 import { type ApiProblem, toApiProblem } from '../../core/problem';
-import { QueueStatus } from '../../core/queue-status';
+import { QueueStatus, placesInWords } from '../../core/queue-status';
 import { Reading, watchRuns } from '../../core/reading';
 import { Confirm } from '../../shared/confirm/confirm';
 import { DataState } from '../../shared/data-state/data-state';
@@ -58,7 +58,7 @@ export class QueuePage {
   protected readonly headline = computed(() => {
     const queue = this.queue();
     if (!queue) return '';
-    const computing = `${queue.running.length} of ${queue.cap} ${queue.cap === 1 ? 'place' : 'places'} computing`;
+    const computing = placesInWords(queue.running.length, queue.cap);
     const wait = queue.waiting.length;
     const waiting = wait === 0 ? 'nothing waits' : `${formatCount(wait, 'run')} ${wait === 1 ? 'waits' : 'wait'}`;
     return `${sentenceStart(computing)}, ${waiting}${queue.paused ? ', intake paused' : ''}.`;

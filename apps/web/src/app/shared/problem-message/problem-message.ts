@@ -15,8 +15,8 @@ import { VerdictSign } from '../verdict/verdict';
     @if (problem(); as problem) {
       <div class="message" role="alert">
         <app-verdict verdict="refuse" [text]="problem.title" />
-        @if (problem.detail && problem.detail !== problem.title) {
-          <p>{{ problem.detail }}</p>
+        @if (detail(); as detail) {
+          <p>{{ detail }}</p>
         }
         @if (others().length) {
           <ul>
@@ -46,6 +46,14 @@ export class ProblemMessage {
   readonly waitSeconds = input<number | null>(null);
   readonly again = output();
 
+  /** The sentence, unless the title or a field on screen says the very same. */
+  protected readonly detail = computed(() => {
+    const problem = this.problem();
+    const beside = this.shownElsewhere().map((pointer) => problem?.fields.get(pointer));
+    return problem?.detail && problem.detail !== problem.title && !beside.includes(problem.detail)
+      ? problem.detail
+      : '';
+  });
   protected readonly others = computed(() =>
     [...(this.problem()?.fields ?? [])].filter(
       ([pointer, message]) => !this.shownElsewhere().includes(pointer) && !this.saysAlready(message),
