@@ -10,7 +10,7 @@ import {
 } from '@angular/core';
 import { type Run } from '@halfdeep/contracts';
 import { type Variable, buildGrid } from '@halfdeep/ocean';
-import { formatLatitude, formatLongitude, formatModelDay, formatQuantity } from '../core/format';
+import { formatLatitude, formatLongitude, formatModelDay, formatQuantity, sentenceStart } from '../core/format';
 import { type RunFollower, frameIntervalDays, startDay } from '../core/run-follower';
 import { type LineAlong } from '../core/slices';
 import { ColourBar } from '../shared/plate/colour-bar';
@@ -199,7 +199,7 @@ export class HovmollerPlate {
   );
   protected readonly stateAbout = computed(
     () =>
-      `${VARIABLE_VIEWS[this.variable()].label} in space and time, a line every ${formatQuantity(frameIntervalDays(this.run()), 'd')}.`,
+      `${sentenceStart(VARIABLE_VIEWS[this.variable()].label)} in space and time, a line every ${formatQuantity(frameIntervalDays(this.run()), 'd')}.`,
   );
   protected readonly busy = computed(() => {
     const slice = this.slice();

@@ -105,8 +105,7 @@ export class PairMeasures {
 
   /** Every map of both runs is read and measured on the server: that takes seconds, and ends when one leaves. */
   protected readonly working = computed(
-    () =>
-      `and measuring every map that both have: up to ${formatNumber(Math.min(framesOf(this.a()), framesOf(this.b())))} days`,
+    () => `and measuring up to ${formatNumber(Math.min(framesOf(this.a()), framesOf(this.b())))} maps of each`,
   );
   protected readonly problem = computed(() => (this.answer().error() ? toApiProblem(this.answer().error()) : null));
   protected readonly common = computed(() => {

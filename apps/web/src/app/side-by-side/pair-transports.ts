@@ -97,8 +97,8 @@ const QUANTITIES = [
             </tr>
             <tr>
               <td>mean</td>
-              <td>{{ shown(season.a.mean) }}</td>
-              <td>{{ shown(season.b.mean) }}</td>
+              <td>{{ asFineAs(season.a.mean, season.a.amplitude) }}</td>
+              <td>{{ asFineAs(season.b.mean, season.b.amplitude) }}</td>
               <td></td>
             </tr>
           </tbody>
@@ -198,6 +198,12 @@ export class PairTransports {
 
   protected shown(value: number): string {
     return formatQuantity(value, this.quantity().unit, { significant: 3 });
+  }
+  /** With the decimals that three digits of `scale` have: a mean that is nothing beside the season reads as nothing. */
+  protected asFineAs(value: number, scale: number): string {
+    const decimals = Math.min(6, Math.max(0, 2 - Math.floor(Math.log10(scale || 1))));
+    const rounded = Math.round(value * 10 ** decimals) / 10 ** decimals;
+    return formatQuantity(rounded === 0 ? 0 : rounded, this.quantity().unit, { decimals });
   }
   protected ratio(value: number): string {
     return formatNumber(value, { significant: 4 });

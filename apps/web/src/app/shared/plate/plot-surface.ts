@@ -142,12 +142,15 @@ export abstract class PlotSurface {
   private draw(): void {
     const box = untracked(this.box);
     const plotly = this.plotly;
-    if (!box || !plotly) return;
+    if (!box) return;
     untracked(() => {
       const palette = this.palettes.of(this.palettes.theme());
-      const traces = this.traces(box, palette);
-      void plotly.react(this.target().nativeElement, traces, this.layout(box, palette), PLOT_CONFIG);
-      this.drawn = true;
+      // The frame stands at once, while the plotting library is still on its way.
+      if (plotly) {
+        const traces = this.traces(box, palette);
+        void plotly.react(this.target().nativeElement, traces, this.layout(box, palette), PLOT_CONFIG);
+        this.drawn = true;
+      }
       this.drawIsolines(box, palette);
       const over = this.over().nativeElement;
       drawOverlay(over, this.overlay(box), palette, this.id);

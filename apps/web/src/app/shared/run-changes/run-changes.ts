@@ -17,15 +17,15 @@ const SHOWN = 2;
         goes on from {{ run().parentLabel ?? 'a deleted run' }}
       }
       @default {
-        @if (withParent() && run().parentLabel) {
+        @if (run().changes.length === 0) {
+          repeats {{ run().parentLabel ?? 'a deleted run' }}
+        } @else if (withParent() && run().parentLabel) {
           from {{ run().parentLabel }}:
         }
         @for (change of shown(); track change.pointer) {
           <b
             >{{ change.label }} <span class="n">{{ change.values }}</span></b
           >{{ $last ? '' : ', ' }}
-        } @empty {
-          nothing changed
         }
         @if (hidden() > 0) {
           and {{ hidden() }} more

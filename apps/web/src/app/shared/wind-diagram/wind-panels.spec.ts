@@ -8,7 +8,7 @@ describe('panels of the wind', () => {
     expect(panelOf('', 'm/d', field(NaN, 4e-6), 86_400)).toMatchObject({ limitText: '0.40' });
     const curl = poweredPanelOf('curl', 'N/m³', field(-2.2e-8, 1e-8));
     expect(curl.unit).toBe('10⁻⁸ N/m³');
-    expect(curl.limit).toBeCloseTo(3e-8, 15);
+    expect(curl.limit).toBeCloseTo(2.4e-8, 15);
   });
   it('paints north at the top, zero in the middle of the scale and nothing where there is no value', () => {
     const table = Float64Array.from({ length: 768 }, (_, k) => Math.floor(k / 3));
