@@ -29,6 +29,8 @@ export class LandRows {
   readonly #islands: PlacedIsland[];
   readonly #columns: Axis;
   readonly #rows: Axis;
+  /** Land of the rows looked at so far: many moorings on land look at the same rows for the nearest water. */
+  readonly #land = new Map<number, readonly Span[]>();
   #wet: number | null = null;
 
   constructor(basin: Basin, layout: GridLayout) {
@@ -139,7 +141,13 @@ export class LandRows {
     });
   }
 
-  #landOf(j: number): Span[] {
+  #landOf(j: number): readonly Span[] {
+    const known = this.#land.get(j) ?? this.#findLand(j);
+    this.#land.set(j, known);
+    return known;
+  }
+
+  #findLand(j: number): Span[] {
     const { nx } = this.#layout;
     const latitude = this.latitudeOf(j);
     const spans: Span[] = [];
@@ -228,7 +236,7 @@ function merged(spans: Span[]): Span[] {
 }
 
 /** What sorted spans leave of [0, n). */
-function complement(spans: Span[], n: number): Span[] {
+function complement(spans: readonly Span[], n: number): Span[] {
   const out: Span[] = [];
   let from = 0;
   for (const [land, end] of spans) {
