@@ -53,8 +53,9 @@ export function derivedNumbers(of: Case): DerivedNumber[] {
       number('inertialPeriod', `inertial period${home}`, '2π/|f|', days((2 * Math.PI) / fHome), 'd'),
       number('equatorialTime', 'equatorial time', 'T', equatorial ? days(1 / Math.sqrt(beta * c)) : null, 'd'),
       number('beta', 'gradient of f', 'β', beta > 0 ? beta : null, '1/(m s)'),
-      number('fSouth', 'f at the south wall', 'f', scales.fSouth, '1/s'),
-      number('fNorth', 'f at the north wall', 'f', scales.fNorth, '1/s'),
+      number('f', 'Coriolis parameter', 'f', beta > 0 ? null : f0, '1/s'),
+      number('fSouth', 'f at the south wall', '', beta > 0 ? scales.fSouth : null, '1/s'),
+      number('fNorth', 'f at the north wall', '', beta > 0 ? scales.fNorth : null, '1/s'),
       number('wallRadius', `deformation radius at ${edge}`, 'c/|f|', beta > 0 ? c / fMax / 1000 : null, 'km'),
       number(
         'rossbySpeed',

@@ -67,7 +67,7 @@ export class RunPanel {
       `${formatNumber(grid.nx)} × ${formatNumber(grid.ny)} cells, ${formatModelLength(progress.totalDays)}`,
       `set up by ${owner.name}, ${formatMoment(createdAt)}`,
       ...(state === 'running' && progress.secondsLeft !== null ? [`${formatDuration(progress.secondsLeft)} left`] : []),
-      ...(took === null ? [] : [`took ${formatDuration(took)}`]),
+      ...(took === null ? [] : [`${formatDuration(took)} from start to end`]),
       ...(diskBytes === null ? [] : [`${formatBytes(diskBytes)} on disk`]),
     ];
   });

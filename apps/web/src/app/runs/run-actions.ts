@@ -21,12 +21,6 @@ export class RunActions {
     return this.api.post(`/api/runs/${id}/repeat`, {}, runSummarySchema, { idempotencyKey: newIdempotencyKey() });
   }
 
-  /** A new run that goes on from the last state of a finished one. */
-  extend(id: string, label: string, days: number): Observable<RunSummary> {
-    const idempotencyKey = newIdempotencyKey();
-    return this.api.post(`/api/runs/${id}/extend`, { label, days }, runSummarySchema, { idempotencyKey });
-  }
-
   delete(id: string): Observable<void> {
     return this.api.send('DELETE', `/api/runs/${id}`);
   }

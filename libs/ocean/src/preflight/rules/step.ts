@@ -38,7 +38,7 @@ export const stepAgainstRotation: Rule = ({ setup, scales }) => {
   const ratio = ratioOfMaximum(F, STEP_LIMITS.coriolisCaution);
   const refused = F > STEP_LIMITS.coriolis;
   const highest = readable((refused ? STEP_LIMITS.coriolis : STEP_LIMITS.coriolisCaution) / scales.rates.coriolis, 4);
-  const found = `|f| dt is ${readable(F)} at the poleward edge`;
+  const found = `|f| dt is ${readable(F)}${scales.beta > 0 ? ' at the poleward edge' : ''}`;
   return {
     id: 'step-rotation',
     label: 'Step against rotation',

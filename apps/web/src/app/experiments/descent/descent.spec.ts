@@ -47,7 +47,7 @@ describe('what stands at a course line', () => {
     expect(outcomeBelow({ ...at, state: 'running' })).toBe('year 3.50 of 7');
     expect(outcomeBelow({ ...at, state: 'finished' })).toBe('7 years');
     const times = { startedAt: '2026-03-01T10:00:00Z', endedAt: '2026-03-01T10:00:46Z' };
-    expect(outcomeBelow({ ...at, ...times, state: 'finished' })).toBe('7 years, took 46\u00a0s');
+    expect(outcomeBelow({ ...at, ...times, state: 'finished' })).toBe('7 years, 46\u00a0s from start to end');
     expect(outcomeBelow({ ...at, state: 'queued', queuePosition: 2, queuedReason: 'cap lowered' })).toBe(
       'place 2 in the queue, cap lowered',
     );

@@ -47,7 +47,7 @@ export function outcomeBelow(
     case 'finished': {
       const seconds = secondsTaken(run);
       const length = formatModelLength(totalDays);
-      return seconds === null ? length : `${length}, took ${formatDuration(seconds)}`;
+      return seconds === null ? length : `${length}, ${formatDuration(seconds)} from start to end`;
     }
     case 'stopped':
       return `stopped at ${formatModelDay(day)}`;

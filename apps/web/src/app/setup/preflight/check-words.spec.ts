@@ -33,6 +33,10 @@ describe('words of a check', () => {
   it('tells counts whole, and nothing of two zeros', () => {
     const cells = { value: 33_600, limit: 4_000_000, ratio: 0.0084, unit: 'cells' };
     expect(checkNumbers(check(cells))).toBe('33\u202f600 of 4\u202f000\u202f000');
+    expect(checkNumbers(check({ value: 4, limit: 4, ratio: 0, unit: 'sections' }))).toBe('4 of 4');
+    expect(checkNumbers(check({ value: 9.44e-4, limit: 40.8, ratio: 2e-5, unit: 'GB' }))).toBe(
+      `944${SPACE}kB of 40.8${SPACE}GB`,
+    );
     expect(checkNumbers(check({ value: 0, limit: 0, ratio: 0, unit: 'd' }))).toBe('');
   });
   it('keeps a unit with its number', () => {

@@ -1,13 +1,17 @@
 import type { Check, Preflight } from '@halfdeep/ocean';
-import { formatCount, formatNumber, formatQuantity, NARROW, SPACE } from '../../core/format';
+import { formatBytes, formatCount, formatNumber, formatQuantity, NARROW, SPACE } from '../../core/format';
+
+const COUNTED = new Set(['sections', 'moorings']);
 
 /** Beside a pass: "11.0 of 44.0 km" where the limit is a most, "2.50" where it is a least; long units are left to the reason. */
 export function checkNumbers({ value, limit, unit, ratio }: Check): string {
   if (!Number.isFinite(value) || !Number.isFinite(limit)) return '';
   const short = /^\S{0,4}$/.test(unit) ? unit : '';
   if (value === 0 && limit === 0) return '';
+  if (unit === 'GB') return `${formatBytes(value * 1e9)} of ${formatBytes(limit * 1e9)}`;
   // Counts are told whole.
-  const options = Number.isInteger(value) && Number.isInteger(limit) && limit >= 1000 ? {} : { significant: 3 };
+  const counts = Number.isInteger(value) && Number.isInteger(limit) && (limit >= 1000 || COUNTED.has(unit));
+  const options = counts ? {} : { significant: 3 };
   const asksLeast = Math.abs(ratio * value - limit) < Math.abs(ratio * limit - value);
   if (asksLeast) return formatQuantity(value, short, options);
   return `${formatNumber(value, options)} of ${formatQuantity(limit, short, options)}`;

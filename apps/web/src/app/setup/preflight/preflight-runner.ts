@@ -1,14 +1,12 @@
 import { computed, DestroyRef, effect, inject, Injectable, signal, untracked } from '@angular/core';
-import { preflight, type Preflight, type PreflightContext, type Setup } from '@halfdeep/ocean';
+import type { Preflight, PreflightContext, Setup } from '@halfdeep/ocean';
 import { SetupDraft } from '../setup-draft';
 import { unbroken } from './check-words';
-
-/** Longer than this and typing would be felt to stick: then preflight waits until the typing rests. */
-const FELT_MS = 24;
+import { judge, type PreflightAnswer, type PreflightOutcome, type PreflightQuestion } from './judge';
 
 /**
- * Runs preflight of libs/ocean on the setup being written: once an animation frame while it is quick, once the typing
- * rests where the grid is large. The same function decides again on the server.
+ * Runs preflight of libs/ocean on the setup being written, in a thread of its own: while one answer is computed only the
+ * newest question waits, so that typing never does. The same function decides again on the server.
  */
 @Injectable()
 export class PreflightRunner {
@@ -20,7 +18,10 @@ export class PreflightRunner {
   private readonly waiting = signal(false);
   /** True while what is shown is older than what is typed. */
   readonly stale = computed(() => this.waiting() || this.draft.setup() === null);
-  private lastCostMs = 0;
+  private readonly thread = this.openThread();
+  private asked = 0;
+  private busy = false;
+  private next: PreflightQuestion | null = null;
   private cancel: () => void = () => undefined;
 
   constructor() {
@@ -29,36 +30,54 @@ export class PreflightRunner {
       const context = this.context();
       if (setup) untracked(() => this.schedule(setup, context));
     });
-    inject(DestroyRef).onDestroy(() => this.cancel());
+    inject(DestroyRef).onDestroy(() => {
+      this.cancel();
+      this.thread?.terminate();
+    });
   }
 
   private schedule(setup: Setup, context: PreflightContext): void {
-    this.cancel();
     this.waiting.set(true);
-    const work = () => this.run(setup, context);
-    if (this.lastCostMs > FELT_MS) {
-      const timer = setTimeout(work, Math.min(600, 150 + this.lastCostMs));
-      this.cancel = () => clearTimeout(timer);
-    } else {
-      const frame = requestAnimationFrame(work);
-      this.cancel = () => cancelAnimationFrame(frame);
+    if (this.thread) {
+      this.next = { number: ++this.asked, setup, context };
+      this.ask(this.thread);
+      return;
     }
+    // Where there are no threads: once an animation frame.
+    this.cancel();
+    const frame = requestAnimationFrame(() => this.show(judge(setup, context)));
+    this.cancel = () => cancelAnimationFrame(frame);
   }
 
-  private run(setup: Setup, context: PreflightContext): void {
-    const began = performance.now();
-    try {
-      this.draft.preflight.set(told(preflight(setup, context), this.draft.outside().length > 0));
-      this.failure.set(null);
-    } catch (error) {
-      if (!(error instanceof RangeError)) throw error;
-      // A grid that cannot be built: the message names the limit.
-      this.draft.preflight.set(null);
-      this.failure.set(error.message);
-    } finally {
-      this.lastCostMs = performance.now() - began;
-      this.waiting.set(false);
-    }
+  private ask(thread: Worker): void {
+    if (this.busy || !this.next) return;
+    this.busy = true;
+    thread.postMessage(this.next);
+    this.next = null;
+  }
+
+  private openThread(): Worker | null {
+    if (typeof Worker === 'undefined') return null;
+    const thread = new Worker(new URL('./preflight.worker', import.meta.url), { type: 'module' });
+    thread.addEventListener('message', ({ data }: MessageEvent<PreflightAnswer>) => {
+      this.busy = false;
+      this.ask(thread);
+      // An answer to a question that has been overtaken is shown all the same, but stays stale.
+      this.show(data);
+      if (data.number !== this.asked) this.waiting.set(true);
+    });
+    thread.addEventListener('error', ({ message }) => {
+      this.busy = false;
+      this.show({ failure: `Preflight broke off: ${message || 'its thread did not start'}. Reload the page.` });
+    });
+    return thread;
+  }
+
+  private show(outcome: PreflightOutcome): void {
+    const good = 'result' in outcome;
+    this.draft.preflight.set(good ? told(outcome.result, this.draft.outside().length > 0) : null);
+    this.failure.set(good ? null : outcome.failure);
+    this.waiting.set(false);
   }
 }
 

@@ -37,7 +37,7 @@ import { TextField } from '../text-field/text-field';
         <div class="fields">
           <p>A new run goes on from the last state; the two equal one long run to the last bit.</p>
           <app-quantity-field
-            label="Go on for"
+            label="Days beyond the end"
             unit="d"
             spokenUnit="days"
             [min]="0.25"
