@@ -3,7 +3,7 @@ import { readFile, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { AuditRow, Mail, OneUseToken, Person, RefreshToken, Run, Session } from '@halfdeep/store';
 import request, { type Response } from 'supertest';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { PasswordHasher } from '../../apps/api/src/accounts/password-hasher';
 import { TRADE_GRACE_MS } from '../../apps/api/src/accounts/session-service';
 import {
@@ -383,16 +383,15 @@ describe('rights lost', () => {
     const who = await somebody(api, 'in-between', 'modeller');
     const scripted = await script(api, who);
     const admin = await script(api, await somebody(api, 'chief', 'admin'));
-    const findAll = Run.findAll.bind(Run);
     // The route asks for the runs after it was found out who asks, and before it listens.
-    Run.findAll = async () => {
-      Run.findAll = findAll;
+    const runs = vi.spyOn(Run, 'findAll').mockImplementationOnce(async () => {
       await admin.patch(`/api/admin/people/${who.id}`, { active: false }).expect(200);
       return [];
-    };
+    });
     const events = await fetch(`${api.url}/api/events`, { headers: { authorization: `Bearer ${scripted.token}` } });
     expect(events.status).toBe(200);
     expect(await events.text()).toBe('retry: 2000\n\n');
+    runs.mockRestore();
   });
 
   it('by a new password end sessions and event streams at once, are audited, and mailed', async () => {

@@ -1,9 +1,10 @@
 import { mkdtemp, mkdir, rm } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { CORE_VERSION, Integration, recordSteps } from '@halfdeep/ocean';
+import { Integration, recordSteps } from '@halfdeep/ocean';
 import { RunFileWriter, runPaths } from '@halfdeep/store';
 import { corvaneForCheck } from '../../libs/ocean/src/testing/setups';
+import { metaOf } from '../../worker/src/run-meta';
 import { timed } from './cpu';
 
 /** CPU seconds of a run: stepping, handing records to the run file, and checkpoints; and the share that is not stepping. */
@@ -43,30 +44,7 @@ export async function benchDelivery(): Promise<DeliveryShare> {
     await mkdir(join(folder, 'runs'));
     const run = Integration.start(setup);
     const intervals = recordSteps(setup);
-    const { grid } = run;
-    const writer = await RunFileWriter.open(runPaths(folder, 'bench'), {
-      runId: 'bench',
-      coreVersion: CORE_VERSION,
-      setup,
-      nx: grid.nx,
-      ny: grid.ny,
-      axes: {
-        lonCentre: [...grid.lonCentre],
-        latCentre: [...grid.latCentre],
-        lonFace: [...grid.lonFace],
-        latFace: [...grid.latFace],
-      },
-      units: { eta: 'm', u: 'm/s', v: 'm/s' },
-      stepsPerDay: setup.numerics.stepsPerDay,
-      startStep: run.startStep,
-      totalSteps: run.totalSteps,
-      intervals,
-      columns: {
-        sections: run.sectionColumns(),
-        moorings: run.mooringColumns(),
-        budget: run.budgetColumns(),
-      },
-    });
+    const writer = await RunFileWriter.open(runPaths(folder, 'bench'), metaOf('bench', run));
     try {
       writer.addFrame(run.frame());
       const slice = Math.min(...Object.values(intervals));
