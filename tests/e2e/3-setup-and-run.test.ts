@@ -47,7 +47,7 @@ test('a modeller asks, sets up with the preflight at hand, queues, watches, stop
   expect(Number(await steps.inputValue())).toBeGreaterThan(8);
 
   // What is typed survives a reload.
-  await page.getByRole('spinbutton', { name: /^Length/ }).fill('18250');
+  await page.getByRole('spinbutton', { name: /^Length/ }).fill('7300');
   await page.getByLabel('Label of the run').fill('Long control');
   await page.reload();
   await expect(page.getByLabel('Label of the run')).toHaveValue('Long control');
@@ -108,5 +108,5 @@ test('a modeller asks, sets up with the preflight at hand, queues, watches, stop
   await expect
     .poll(async () => (await readRun(page, extension)).state, { timeout: 60_000, intervals: [500] })
     .toBe('finished');
-  expect((await readRun(page, extension)).progress.day).toBe(18250 + 365);
+  expect((await readRun(page, extension)).progress.day).toBe(7300 + 365);
 });

@@ -12,7 +12,7 @@ import {
 
 test('an admin caps, pauses, orders and reads what happened', async ({ page, browser }) => {
   await openPlaces(browser);
-  test.setTimeout(240_000);
+  test.setTimeout(360_000);
   const modeller = await pageAs(browser, 'modeller');
   const experiment = await experimentByScript(modeller, 'What does the queue do with three runs?');
   await signIn(page, 'admin');
@@ -35,7 +35,9 @@ test('an admin caps, pauses, orders and reads what happened', async ({ page, bro
 
   // Opened: both compute. Lowered with a checkpoint: the youngest goes back at once, with the reason.
   await page.getByRole('switch', { name: 'Intake open' }).click();
-  await expect.poll(async () => (await runsByLabel(page)).get('Queue one')?.state, { timeout: 60_000 }).toBe('running');
+  await expect
+    .poll(async () => (await runsByLabel(page)).get('Queue one')?.state, { timeout: 120_000 })
+    .toBe('running');
   await page.getByRole('link', { name: 'Workers' }).click();
   await expect(page.getByRole('table')).toContainText('Queue two');
   await expectSound(page);
