@@ -173,6 +173,9 @@ describe('the server', () => {
     const below = start({ HALFDEEP_VAR: join(file, 'deeper') });
     expect(await below.exit).toBe(1);
     expect(below.said()).toContain('a part of its path is a file');
+    const nowhere = start({ HALFDEEP_VAR: '/proc/halfdeep' });
+    expect(await nowhere.exit).toBe(1);
+    expect(nowhere.said()).toContain('Nothing can be kept in /proc/halfdeep: no folder can be made there.');
   });
 
   it.skipIf(process.getuid?.() === 0)('says so when the folder can only be read', async () => {

@@ -15,7 +15,7 @@ import {
 import { firstValueFrom } from 'rxjs';
 import { AddressToken } from '../core/address-token';
 import { Api } from '../core/api';
-import { formatMoment } from '../core/format';
+import { formatMoment, sentenceStart } from '../core/format';
 import { bySchema, focusFirstWrong, messageOf, showFieldProblems } from '../core/forms';
 import { type ApiProblem, toApiProblem } from '../core/problem';
 import { Session } from '../core/session';
@@ -49,6 +49,7 @@ export class InvitationPage {
   protected readonly token = inject(AddressToken).follow();
   protected readonly minLength = MIN_PASSWORD_LENGTH;
   protected readonly messageOf = messageOf;
+  protected readonly sentenceStart = sentenceStart;
   protected readonly invitation = signal<Invitation | null>(null);
   /** Why the invitation could not be read. */
   protected readonly unread = signal<ApiProblem | null>(null);
