@@ -37,8 +37,10 @@ describe('orders to a run', () => {
   const step = async (runId: string) => ((await hand.get(`/api/runs/${runId}`)).body as Run).progress.step;
 
   it('stops at once, saves behind the answer, resumes, and ends as if undisturbed', async () => {
-    // Long enough not to end before it is stopped; short enough to be computed here a second time.
-    const setup = smallSetup(1000, (s) => Object.assign(s.output, { frameIntervalDays: 20, sectionIntervalDays: 20 }));
+    // Long enough not to end before it is stopped, also on a quick machine (progress comes about once a second); short
+    // enough to be computed here a second time.
+    const days = 6000;
+    const setup = smallSetup(days, (s) => Object.assign(s.output, { frameIntervalDays: 20, sectionIntervalDays: 20 }));
     const { id } = await newRun(hand, experiment.id, setup);
     await until(
       () => step(id),
@@ -51,7 +53,7 @@ describe('orders to a run', () => {
       async () => (await hand.get(`/api/runs/${id}`)).body as Run,
       (run) => run.progress.savedStep !== null,
     );
-    expect(saved.progress.savedStep).toBeLessThan(1000 * 16);
+    expect(saved.progress.savedStep).toBeLessThan(days * 16);
     const again = await hand.post(`/api/runs/${id}/stop`).expect(409);
     expect((again.body as Problem).detail).toMatch(/the run is stopped; it must be queued or running/);
 
