@@ -56,9 +56,9 @@ const SIGNIFICANT = 3;
           <table class="numbers">
             <thead>
               <tr>
-                <th scope="col">whole run, {{ common() }}</th>
-                <th scope="col">A, RMS</th>
-                <th scope="col">B, RMS</th>
+                <th scope="col">whole run</th>
+                <th scope="col">RMS, A</th>
+                <th scope="col">B</th>
                 <th scope="col">RMS difference</th>
                 <th scope="col">correlation</th>
               </tr>
@@ -66,10 +66,12 @@ const SIGNIFICANT = 3;
             <tbody>
               @for (measure of answer().value()?.measures ?? []; track measure.variable) {
                 <tr>
-                  <td>{{ nameOf(measure.variable) }}</td>
-                  <td>{{ shown(measure.rmsA, measure.variable) }}</td>
-                  <td>{{ shown(measure.rmsB, measure.variable) }}</td>
-                  <td>{{ shown(measure.rmsDifference, measure.variable) }}</td>
+                  <td>
+                    {{ nameOf(measure.variable) }} <span class="u">{{ unitOf(measure.variable) }}</span>
+                  </td>
+                  <td>{{ bare(measure.rmsA, measure.variable) }}</td>
+                  <td>{{ bare(measure.rmsB, measure.variable) }}</td>
+                  <td>{{ bare(measure.rmsDifference, measure.variable) }}</td>
                   <td class="strong">{{ number(measure.correlation) }}</td>
                 </tr>
               }
@@ -77,7 +79,7 @@ const SIGNIFICANT = 3;
           </table>
         </div>
         <p class="note quiet">
-          Over all cells that are water in both, weighted by area; {{ answer().value()?.regridding }}.
+          {{ common() }}; over all cells that are water in both, weighted by area; {{ answer().value()?.regridding }}.
         </p>
       }
     } @else {
@@ -90,6 +92,11 @@ const SIGNIFICANT = 3;
       gap: 20px;
       align-content: start;
       min-width: 0;
+    }
+    /* Words wrap, so that all five columns stand in the column of the page. */
+    th,
+    td:first-child {
+      white-space: normal;
     }
     .strong {
       font-weight: 600;
@@ -111,7 +118,7 @@ export class PairMeasures {
   protected readonly common = computed(() => {
     const days = this.answer().value()?.commonDays;
     return days
-      ? `days ${formatNumber(days.from)} to ${formatNumber(days.to)}, ${formatNumber(days.records)} maps`
+      ? `Days ${formatNumber(days.from)} to ${formatNumber(days.to)}, ${formatNumber(days.records)} maps`
       : '';
   });
 
@@ -124,6 +131,14 @@ export class PairMeasures {
   protected shown(value: number | null, variable: string): string {
     const { factor, unit } = isVariable(variable) ? VARIABLE_VIEWS[variable] : { factor: 1, unit: '' };
     return formatQuantity((value ?? NaN) * factor, unit, { significant: SIGNIFICANT });
+  }
+  protected unitOf(variable: string): string {
+    return isVariable(variable) ? VARIABLE_VIEWS[variable].unit : '';
+  }
+  /** The number alone: its unit stands beside the name, so that four columns fit. */
+  protected bare(value: number | null, variable: string): string {
+    const factor = isVariable(variable) ? VARIABLE_VIEWS[variable].factor : 1;
+    return formatNumber((value ?? NaN) * factor, { significant: SIGNIFICANT });
   }
   protected number(value: number | null): string {
     return formatNumber(value ?? NaN, { significant: 4 });
