@@ -72,13 +72,13 @@ export async function startRunApi(): Promise<RunApi> {
   };
 }
 
-/** The worker as the build bundles it: it starts in a fraction of the time of its sources. */
+/** The worker as the build bundles it: it starts in a fraction of the time of its sources; slow where `slowly` says so. */
 async function bundledWorker(): Promise<string> {
   const folder = join(root, 'var', `api-tests-${randomUUID()}`); // inside the workspace, so that packages are found
   await mkdir(folder, { recursive: true });
   const outfile = join(folder, 'worker.mjs');
   await build({
-    entryPoints: [join(root, 'worker/src/main.ts')],
+    entryPoints: [join(root, 'tests/faults/slow-worker.ts')],
     outfile,
     bundle: true,
     platform: 'node',
@@ -112,6 +112,16 @@ async function makeHand(services: Services, server: Server, name: string, roles:
   };
 }
 
+/** Runs that start during `work` rest between slices of steps, so that they last however quick the machine is. */
+export async function slowly<T>(work: () => Promise<T>): Promise<T> {
+  process.env['TEST_PAUSE_MS'] = '100'; // workers are started with this process's environment
+  try {
+    return await work();
+  } finally {
+    delete process.env['TEST_PAUSE_MS'];
+  }
+}
+
 /** A small basin (30 × 20 cells at 1°) under the Corvane wind; intervals that do not divide each other. */
 export function smallSetup(days: number, change: (setup: Setup) => void = () => undefined): Setup {
   const setup = structuredClone(corvaneSetup());
@@ -126,6 +136,8 @@ export function smallSetup(days: number, change: (setup: Setup) => void = () => 
     frameIntervalDays: 1.5,
     sectionIntervalDays: 1,
     mooringIntervalDays: 0.25,
+    momentumBudget: false,
+    vorticityBudget: false,
   };
   change(setup);
   return setup;

@@ -10,6 +10,7 @@ import {
   newRun,
   reach,
   runFiles,
+  slowly,
   smallSetup,
   startRunApi,
   until,
@@ -37,15 +38,16 @@ describe('orders to a run', () => {
   const step = async (runId: string) => ((await hand.get(`/api/runs/${runId}`)).body as Run).progress.step;
 
   it('stops at once, saves behind the answer, resumes, and ends as if undisturbed', async () => {
-    // Long enough not to end before it is stopped, also on a quick machine (progress comes about once a second); short
-    // enough to be computed here a second time.
     const days = 6000;
     const setup = smallSetup(days, (s) => Object.assign(s.output, { frameIntervalDays: 20, sectionIntervalDays: 20 }));
-    const { id } = await newRun(hand, experiment.id, setup);
-    await until(
-      () => step(id),
-      (done) => done > 0,
-    );
+    const { id } = await slowly(async () => {
+      const queued = await newRun(hand, experiment.id, setup);
+      await until(
+        () => step(queued.id),
+        (done) => done > 0,
+      );
+      return queued;
+    });
     const stopped = await order(id, 'stop');
     expect(stopped).toMatchObject({ state: 'stopped', can: { stop: false, resume: true, delete: true } });
     expect(stopped.progress.cellStepsPerSecond).toBeNull();
