@@ -35,6 +35,8 @@ export async function benchDelivery(): Promise<DeliveryShare> {
     frameIntervalDays: 5,
     sectionIntervalDays: 1,
     mooringIntervalDays: 0.25,
+    momentumBudget: false,
+    vorticityBudget: false,
   };
   setup.length = { days: 180 };
   const folder = await mkdtemp(join(tmpdir(), 'halfdeep-bench-'));

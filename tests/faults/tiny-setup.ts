@@ -19,6 +19,8 @@ export function tinySetup(days: number, change: (setup: Setup) => void = () => u
     frameIntervalDays: 1.5,
     sectionIntervalDays: 1,
     mooringIntervalDays: 0.25,
+    momentumBudget: false,
+    vorticityBudget: false,
   };
   change(setup);
   return setup;

@@ -16,7 +16,7 @@ const periodic = smallSetup({
 });
 const free = smallSetup({
   length: { days: 60 },
-  friction: { rayleighPerS: 0, viscosityM2S: 0, slip: 'free' },
+  friction: { rayleighPerS: 0, viscosityM2S: 0, viscosityPatches: [], slip: 'free' },
   start: { ...bump, amplitudeM: 20 },
 });
 

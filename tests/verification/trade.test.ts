@@ -11,8 +11,8 @@ function basinWith(pattern: WindComponent['pattern'], days: number): Setup {
   return {
     ...setup,
     basin: { ...setup.basin, southDeg: -15, northDeg: 15, eastDeg: 40, islands: [] },
-    wind: { components: [{ name: '', pattern, season: STEADY }], seasonalStrength: 1 },
-    friction: { rayleighPerS: 1e-6, viscosityM2S: 4000, slip: 'free' },
+    wind: { components: [{ name: '', pattern, season: STEADY }], seasonalStrength: 1, stressFloorM: 0 },
+    friction: { rayleighPerS: 1e-6, viscosityM2S: 4000, viscosityPatches: [], slip: 'free' },
     length: { days },
   };
 }

@@ -33,6 +33,8 @@ function smallSetup(days: number): Setup {
     frameIntervalDays: 1.25,
     sectionIntervalDays: 0.5,
     mooringIntervalDays: 0.25,
+    momentumBudget: false,
+    vorticityBudget: false,
   };
   return setup;
 }

@@ -51,9 +51,16 @@ const islandSchema = z.discriminatedUnion(
   { error: kindError('an island', ['box', 'polygon']) },
 );
 
+const spongeSchema = fields('A sponge', {
+  edge: choice('The edge of a sponge', ['west', 'east', 'south', 'north']),
+  widthDeg: quantity('spongeWidth'),
+  peakRatePerS: quantity('spongeRate').nullable(),
+  tapersWind: yesOrNo('Tapers the wind'),
+});
+
 export const basinSchema = fields('The part “basin”', {
   name: name(),
-  geometry: choice('The geometry', ['equatorial', 'midlatitude', 'fplane']),
+  geometry: choice('The geometry', ['equatorial', 'midlatitude', 'fplane', 'spherical']),
   westDeg: quantity('longitude'),
   eastDeg: quantity('longitude'),
   southDeg: quantity('latitude'),
@@ -64,6 +71,14 @@ export const basinSchema = fields('The part “basin”', {
   zonallyPeriodic: yesOrNo('Zonally periodic'),
   westernCoast: coastSchema,
   islands: list('Islands', islandSchema, LIMITS.islands.max),
+  // Fields with a default came after the first setups were exported: those still read.
+  sponges: list('Sponges', spongeSchema, 4).default([]),
+  coastSpacing: fields('The grid of the coast', {
+    longitudeDeg: quantity('spacing'),
+    latitudeDeg: quantity('spacing'),
+  })
+    .nullable()
+    .default(null),
 }).superRefine((basin, context) => {
   const extent = basin.eastDeg - basin.westDeg;
   const { min, max } = LIMITS.zonalExtent;
@@ -107,6 +122,14 @@ export const layerSchema = fields('The part “layer”', {
   restThicknessM: quantity('restThickness'),
   dampingPerS: quantity('damping'),
   temperatureStepK: quantity('temperatureStep'),
+  minimumThicknessM: quantity('minimumThickness').default(LIMITS.minimumThickness.default),
+  entrainment: fields('The entrainment', {
+    onsetThicknessM: quantity('entrainmentOnset'),
+    timescaleDays: quantity('entrainmentTime'),
+    detrainment: choice('The detrainment', ['none', 'uniform']),
+  })
+    .nullable()
+    .default(null),
 });
 
 const direction = choice('The direction', ['eastward', 'northward']);
@@ -163,6 +186,7 @@ export const windSchema = fields('The part “wind”', {
     LIMITS.windComponents.max,
   ),
   seasonalStrength: quantity('seasonalStrength'),
+  stressFloorM: quantity('stressFloor').default(LIMITS.stressFloor.default),
 });
 
 const sha256 = z
@@ -220,13 +244,23 @@ export const startSchema = z.discriminatedUnion(
 export const frictionSchema = fields('The part “friction”', {
   rayleighPerS: quantity('rayleigh'),
   viscosityM2S: quantity('viscosity'),
+  viscosityPatches: list(
+    'Places of other viscosity',
+    fields('A place of other viscosity', {
+      name: name(),
+      addedM2S: quantity('addedViscosity'),
+      longitudeDeg: quantity('longitude'),
+      latitudeDeg: quantity('latitude'),
+      widthLongitudeDeg: quantity('windLength'),
+      widthLatitudeDeg: quantity('windLength'),
+    }),
+    LIMITS.viscosityPatches.max,
+  ).default([]),
   slip: choice('The slip', ['free', 'none']),
 });
 
 export const numericsSchema = fields('The part “numerics”', {
-  equations: z.literal('linear', {
-    error: (issue) => `The equations must be linear; ${arrived(issue.input)} arrived.`,
-  }),
+  equations: choice('The equations', ['linear', 'nonlinear']),
   spacingLongitudeDeg: quantity('spacing'),
   spacingLatitudeDeg: quantity('spacing'),
   stepsPerDay: quantity('stepsPerDay'),
@@ -254,6 +288,8 @@ export const outputSchema = fields('The part “output”', {
   frameIntervalDays: quantity('outputInterval'),
   sectionIntervalDays: quantity('outputInterval'),
   mooringIntervalDays: quantity('outputInterval'),
+  momentumBudget: yesOrNo('Momentum budget').default(false),
+  vorticityBudget: yesOrNo('Vorticity budget').default(false),
 });
 
 /** A setup as it crosses the wire. What single fields cannot say (stability, resolution, size) is preflight's. */

@@ -26,7 +26,7 @@ export interface Constants {
   heatCapacityJM3K: number;
 }
 
-export type Geometry = 'equatorial' | 'midlatitude' | 'fplane';
+export type Geometry = 'equatorial' | 'midlatitude' | 'fplane' | 'spherical';
 
 export interface Basin {
   /** A name of the water for the map; may be empty. */
@@ -46,6 +46,23 @@ export interface Basin {
   zonallyPeriodic: boolean;
   westernCoast: WesternCoast;
   islands: Island[];
+  /** At most one at each edge. */
+  sponges: Sponge[];
+  /**
+   * Spacing of the grid on which coast and islands are turned into land cells; null: the run's own. Coarser by a whole
+   * factor: each land cell is divided; finer: a cell is land when at least half of the finer cells in it are.
+   */
+  coastSpacing: { longitudeDeg: number; latitudeDeg: number } | null;
+}
+
+/** A layer along an edge in which motion and interface anomaly are damped alike, at rate peak · s², s = 0 … 1 into it. */
+export interface Sponge {
+  edge: 'west' | 'east' | 'south' | 'north';
+  widthDeg: number;
+  /** r_max, 1/s; null: 6.9 c/W, which reflects 1 % of a normally incident wave. */
+  peakRatePerS: number | null;
+  /** The wind falls to 0 as cos²(π s/2) inside. */
+  tapersWind: boolean;
 }
 
 /** A slanting coast is a straight line in longitude and latitude from the south edge to the north edge of the basin. */
@@ -65,12 +82,28 @@ export interface Layer {
   dampingPerS: number;
   /** T1 − T2, K: turns volume into heat transport. */
   temperatureStepK: number;
+  /** hmin, m: the fluxes of the nonlinear equations never thin the layer below it. Not used by the linear ones. */
+  minimumThicknessM: number;
+  /** Water taken up from below where the nonlinear layer is thin; null: none. Not used by the linear equations. */
+  entrainment: Entrainment | null;
+}
+
+/** w_e = (H_e − h)²/(t_e H_e) where h < H_e, else 0. */
+export interface Entrainment {
+  /** H_e, m. */
+  onsetThicknessM: number;
+  /** t_e, days. */
+  timescaleDays: number;
+  /** 'uniform': what is taken up is given back evenly over the basin, so that the total stays. */
+  detrainment: 'none' | 'uniform';
 }
 
 export interface Wind {
   components: WindComponent[];
   /** s: a factor on the yearly harmonics of all components, not on steady or switch-on parts. */
   seasonalStrength: number;
+  /** h_s, m: the nonlinear wind acceleration is τ/(ρ0 max(h, h_s)). Not used by the linear equations. */
+  stressFloorM: number;
 }
 
 /** One component: a pattern in space times a season in time. */
@@ -151,11 +184,23 @@ export interface Friction {
   rayleighPerS: number;
   /** A, Laplacian viscosity, m²/s. */
   viscosityM2S: number;
+  /** Places of other viscosity: Gaussian patches added to A. */
+  viscosityPatches: ViscosityPatch[];
   slip: 'free' | 'none';
 }
 
+/** Viscosity added around a place: added · exp(−(λ − longitude)²/(2 widthLon²) − (φ − latitude)²/(2 widthLat²)). */
+export interface ViscosityPatch {
+  name: string;
+  addedM2S: number;
+  longitudeDeg: number;
+  latitudeDeg: number;
+  widthLongitudeDeg: number;
+  widthLatitudeDeg: number;
+}
+
 export interface Numerics {
-  equations: 'linear';
+  equations: 'linear' | 'nonlinear';
   /** Grid spacing, degrees of longitude and of latitude. */
   spacingLongitudeDeg: number;
   spacingLatitudeDeg: number;
@@ -170,6 +215,9 @@ export interface Output {
   frameIntervalDays: number;
   sectionIntervalDays: number;
   mooringIntervalDays: number;
+  /** Zonal momentum and vorticity of the basin with every term, added up every step (they cost a good part of a step). */
+  momentumBudget: boolean;
+  vorticityBudget: boolean;
 }
 
 /** A latitude section snaps to a row of v points, a longitude section to a column of u points. */

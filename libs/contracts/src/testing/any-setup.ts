@@ -146,6 +146,8 @@ const basin = fc
               points: island.ring.map(([x, y]): [number, number] => [longitude(x), latitude(y)]),
             },
       ),
+      sponges: [],
+      coastSpacing: null,
     };
   });
 
@@ -169,15 +171,19 @@ export function anySetup(cells?: number): fc.Arbitrary<Setup> {
         restThicknessM: quantity('restThickness'),
         dampingPerS: quantity('damping'),
         temperatureStepK: quantity('temperatureStep'),
+        minimumThicknessM: quantity('minimumThickness'),
+        entrainment: fc.constant(null),
       }),
       wind: fc.record({
         components: fc.array(fc.record({ name, pattern, season }), { maxLength: 3 }),
         seasonalStrength: quantity('seasonalStrength'),
+        stressFloorM: quantity('stressFloor'),
       }),
       start,
       friction: fc.record({
         rayleighPerS: quantity('rayleigh'),
         viscosityM2S: quantity('viscosity'),
+        viscosityPatches: fc.constant<Setup['friction']['viscosityPatches']>([]),
         slip: fc.constantFrom('free' as const, 'none' as const),
       }),
       spacing: fc.tuple(quantity('spacing'), quantity('spacing')),
@@ -216,6 +222,8 @@ export function anySetup(cells?: number): fc.Arbitrary<Setup> {
           frameIntervalDays: interval(intervals[0]),
           sectionIntervalDays: interval(intervals[1]),
           mooringIntervalDays: interval(intervals[2]),
+          momentumBudget: false,
+          vorticityBudget: false,
         },
       };
     })

@@ -140,7 +140,7 @@ it('pumps −τ0 (d/dy)(1/f) under a uniform zonal wind and nothing under τx = 
   const calm = { amplitude: 0, peakDay: 0 };
   const season = { mean: 1, switchOnDays: 0, annual: calm, semiannual: calm };
   const withWind = (pattern: Setup['wind']['components'][number]['pattern']) =>
-    smallSetup({ wind: { components: [{ name: '', pattern, season }], seasonalStrength: 1 } });
+    smallSetup({ wind: { components: [{ name: '', pattern, season }], seasonalStrength: 1, stressFloorM: 0 } });
   const pumping = (setup: Setup) => {
     const { run, fields } = spunUp(setup);
     return { grid: run.grid, map: deriveMap('ekmanPumping', run.grid, setup, fields) };

@@ -7,7 +7,7 @@ import { windDiagram } from './wind-diagram';
 
 const withWind = (setup: Setup, ...components: WindComponent[]): Setup => ({
   ...structuredClone(setup),
-  wind: { components, seasonalStrength: 1 },
+  wind: { components, seasonalStrength: 1, stressFloorM: 0 },
 });
 const largest = (values: Float32Array) =>
   values.reduce((most, value) => (Number.isNaN(value) ? most : Math.max(most, Math.abs(value))), 0);

@@ -66,7 +66,7 @@ describe('the model of a run', () => {
     const of = smallSetup({
       constants: { ...setup.constants, densityKgM3: 1030 },
       layer: { ...setup.layer, reducedGravityMS2: 0.025, restThicknessM: 180, dampingPerS: 3e-7 },
-      friction: { rayleighPerS: 4e-7, viscosityM2S: 2500, slip: 'none' },
+      friction: { rayleighPerS: 4e-7, viscosityM2S: 2500, viscosityPatches: [], slip: 'none' },
       start: {
         kind: 'bump',
         amplitudeM: 6,

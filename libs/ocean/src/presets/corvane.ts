@@ -48,8 +48,17 @@ export function corvaneSetup(strength = 1): Setup {
       zonallyPeriodic: false,
       westernCoast: { kind: 'slanting', atSouthDeg: 0, atNorthDeg: 6 },
       islands: [{ kind: 'box', name: 'Tern Island', westDeg: 40.5, eastDeg: 43.5, southDeg: -8, northDeg: -6 }],
+      sponges: [],
+      coastSpacing: null,
     },
-    layer: { reducedGravityMS2: 0.03, restThicknessM: 200, dampingPerS: 0, temperatureStepK: 15 },
+    layer: {
+      reducedGravityMS2: 0.03,
+      restThicknessM: 200,
+      dampingPerS: 0,
+      temperatureStepK: 15,
+      minimumThicknessM: 20,
+      entrainment: null,
+    },
     wind: {
       components: [
         steadyBelt('Northern belt', -0.01, 12, 6),
@@ -67,9 +76,10 @@ export function corvaneSetup(strength = 1): Setup {
         },
       ],
       seasonalStrength: strength,
+      stressFloorM: 0,
     },
     start: { kind: 'rest' },
-    friction: { rayleighPerS: 1e-8, viscosityM2S: 4000, slip: 'free' },
+    friction: { rayleighPerS: 1e-8, viscosityM2S: 4000, viscosityPatches: [], slip: 'free' },
     numerics: { equations: 'linear', spacingLongitudeDeg: 0.25, spacingLatitudeDeg: 0.25, stepsPerDay: 16 },
     length: { days: 2555 },
     output: {
@@ -89,6 +99,8 @@ export function corvaneSetup(strength = 1): Setup {
       frameIntervalDays: 5,
       sectionIntervalDays: 1,
       mooringIntervalDays: 0.5,
+      momentumBudget: false,
+      vorticityBudget: false,
     },
   };
 }

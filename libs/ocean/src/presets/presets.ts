@@ -25,6 +25,8 @@ const PLAIN_BASIN: Basin = {
   zonallyPeriodic: false,
   westernCoast: { kind: 'rectangular' },
   islands: [],
+  sponges: [],
+  coastSpacing: null,
 };
 
 /** A coarse equatorial basin under a seasonal shear: the whole job in the time of a few breaths. */
@@ -33,7 +35,14 @@ function firstLook(): Setup {
     schemaVersion: 1,
     constants: { ...DEFAULT_CONSTANTS },
     basin: { ...PLAIN_BASIN, name: 'Small basin' },
-    layer: { reducedGravityMS2: 0.03, restThicknessM: 200, dampingPerS: 0, temperatureStepK: 15 },
+    layer: {
+      reducedGravityMS2: 0.03,
+      restThicknessM: 200,
+      dampingPerS: 0,
+      temperatureStepK: 15,
+      minimumThicknessM: 20,
+      entrainment: null,
+    },
     wind: {
       components: [
         steadyBelt('Equatorial belt', -0.01, 0, 8),
@@ -44,9 +53,10 @@ function firstLook(): Setup {
         },
       ],
       seasonalStrength: 1,
+      stressFloorM: 0,
     },
     start: { kind: 'rest' },
-    friction: { rayleighPerS: 1e-8, viscosityM2S: 32_000, slip: 'free' },
+    friction: { rayleighPerS: 1e-8, viscosityM2S: 32_000, viscosityPatches: [], slip: 'free' },
     numerics: { equations: 'linear', spacingLongitudeDeg: 0.5, spacingLatitudeDeg: 0.5, stepsPerDay: 16 },
     length: { days: 1095 },
     output: {
@@ -63,6 +73,8 @@ function firstLook(): Setup {
       frameIntervalDays: 5,
       sectionIntervalDays: 1,
       mooringIntervalDays: 0.5,
+      momentumBudget: false,
+      vorticityBudget: false,
     },
   };
 }
@@ -73,13 +85,21 @@ function subtropicalGyre(): Setup {
     schemaVersion: 1,
     constants: { ...DEFAULT_CONSTANTS },
     basin: { ...PLAIN_BASIN, geometry: 'midlatitude', eastDeg: 30, southDeg: 25, northDeg: 45 },
-    layer: { reducedGravityMS2: 0.02, restThicknessM: 500, dampingPerS: 0, temperatureStepK: 12 },
+    layer: {
+      reducedGravityMS2: 0.02,
+      restThicknessM: 500,
+      dampingPerS: 0,
+      temperatureStepK: 12,
+      minimumThicknessM: 20,
+      entrainment: null,
+    },
     wind: {
       components: [steadyBelt('Westerlies', 0.05, 43, 5), steadyBelt('Easterlies', -0.05, 27, 5)],
       seasonalStrength: 1,
+      stressFloorM: 0,
     },
     start: { kind: 'rest' },
-    friction: { rayleighPerS: 1e-8, viscosityM2S: 2000, slip: 'none' },
+    friction: { rayleighPerS: 1e-8, viscosityM2S: 2000, viscosityPatches: [], slip: 'none' },
     numerics: { equations: 'linear', spacingLongitudeDeg: 0.25, spacingLatitudeDeg: 0.25, stepsPerDay: 32 },
     length: { days: 4015 },
     output: {
@@ -95,6 +115,8 @@ function subtropicalGyre(): Setup {
       frameIntervalDays: 5,
       sectionIntervalDays: 1,
       mooringIntervalDays: 1,
+      momentumBudget: false,
+      vorticityBudget: false,
     },
   };
 }
@@ -114,10 +136,17 @@ function adjustment(): Setup {
       f0PerS: 1e-4,
       zonallyPeriodic: true,
     },
-    layer: { reducedGravityMS2: 0.03, restThicknessM: 200, dampingPerS: 0, temperatureStepK: 15 },
-    wind: { components: [], seasonalStrength: 1 },
+    layer: {
+      reducedGravityMS2: 0.03,
+      restThicknessM: 200,
+      dampingPerS: 0,
+      temperatureStepK: 15,
+      minimumThicknessM: 20,
+      entrainment: null,
+    },
+    wind: { components: [], seasonalStrength: 1, stressFloorM: 0 },
     start: { kind: 'step', amplitudeM: 10, latitudeDeg: 43 },
-    friction: { rayleighPerS: 0, viscosityM2S: 0, slip: 'free' },
+    friction: { rayleighPerS: 0, viscosityM2S: 0, viscosityPatches: [], slip: 'free' },
     numerics: { equations: 'linear', spacingLongitudeDeg: 0.25, spacingLatitudeDeg: 0.1, stepsPerDay: 32 },
     length: { days: 20 },
     output: {
@@ -126,6 +155,8 @@ function adjustment(): Setup {
       frameIntervalDays: 0.25,
       sectionIntervalDays: 0.25,
       mooringIntervalDays: 0.25,
+      momentumBudget: false,
+      vorticityBudget: false,
     },
   };
 }
@@ -136,10 +167,17 @@ function channel(mode: 'kelvin' | 'rossby1', days: number, frameIntervalDays: nu
     schemaVersion: 1,
     constants: { ...DEFAULT_CONSTANTS },
     basin: { ...PLAIN_BASIN, zonallyPeriodic: true },
-    layer: { reducedGravityMS2: 0.03, restThicknessM: 200, dampingPerS: 0, temperatureStepK: 15 },
-    wind: { components: [], seasonalStrength: 1 },
+    layer: {
+      reducedGravityMS2: 0.03,
+      restThicknessM: 200,
+      dampingPerS: 0,
+      temperatureStepK: 15,
+      minimumThicknessM: 20,
+      entrainment: null,
+    },
+    wind: { components: [], seasonalStrength: 1, stressFloorM: 0 },
     start: { kind: 'mode', mode, amplitudeM: 10, wavelengthDeg: 40, crestLongitudeDeg: 20 },
-    friction: { rayleighPerS: 0, viscosityM2S: 0, slip: 'free' },
+    friction: { rayleighPerS: 0, viscosityM2S: 0, viscosityPatches: [], slip: 'free' },
     numerics: { equations: 'linear', spacingLongitudeDeg: 0.5, spacingLatitudeDeg: 0.5, stepsPerDay: 12 },
     length: { days },
     output: {
@@ -151,6 +189,8 @@ function channel(mode: 'kelvin' | 'rossby1', days: number, frameIntervalDays: nu
       frameIntervalDays,
       sectionIntervalDays: 0.5,
       mooringIntervalDays: 0.5,
+      momentumBudget: false,
+      vorticityBudget: false,
     },
   };
 }

@@ -21,8 +21,17 @@ export function smallSetup(change: Partial<Setup> = {}): Setup {
       zonallyPeriodic: false,
       westernCoast: { kind: 'rectangular' },
       islands: [{ kind: 'box', name: '', westDeg: 12, eastDeg: 14, southDeg: -4, northDeg: -2 }],
+      sponges: [],
+      coastSpacing: null,
     },
-    layer: { reducedGravityMS2: 0.03, restThicknessM: 200, dampingPerS: 0, temperatureStepK: 15 },
+    layer: {
+      reducedGravityMS2: 0.03,
+      restThicknessM: 200,
+      dampingPerS: 0,
+      temperatureStepK: 15,
+      minimumThicknessM: 20,
+      entrainment: null,
+    },
     wind: {
       components: [
         {
@@ -50,9 +59,10 @@ export function smallSetup(change: Partial<Setup> = {}): Setup {
         },
       ],
       seasonalStrength: 1,
+      stressFloorM: 0,
     },
     start: { kind: 'rest' },
-    friction: { rayleighPerS: 1e-7, viscosityM2S: 4000, slip: 'free' },
+    friction: { rayleighPerS: 1e-7, viscosityM2S: 4000, viscosityPatches: [], slip: 'free' },
     numerics: { equations: 'linear', spacingLongitudeDeg: 0.5, spacingLatitudeDeg: 0.5, stepsPerDay: 12 },
     length: { days: 20 },
     output: {
@@ -64,6 +74,8 @@ export function smallSetup(change: Partial<Setup> = {}): Setup {
       frameIntervalDays: 5,
       sectionIntervalDays: 1,
       mooringIntervalDays: 0.25,
+      momentumBudget: false,
+      vorticityBudget: false,
     },
     ...change,
   };
@@ -90,6 +102,8 @@ export function corvaneForCheck(seasonalStrength = 1): Setup {
       zonallyPeriodic: false,
       westernCoast: { kind: 'slanting', atSouthDeg: 0, atNorthDeg: 6 },
       islands: [{ kind: 'box', name: '', westDeg: 40.5, eastDeg: 43.5, southDeg: -8, northDeg: -6 }],
+      sponges: [],
+      coastSpacing: null,
     },
     wind: {
       components: [
@@ -113,8 +127,9 @@ export function corvaneForCheck(seasonalStrength = 1): Setup {
         },
       ],
       seasonalStrength,
+      stressFloorM: 0,
     },
-    friction: { rayleighPerS: 1e-8, viscosityM2S: 4000, slip: 'free' },
+    friction: { rayleighPerS: 1e-8, viscosityM2S: 4000, viscosityPatches: [], slip: 'free' },
     numerics: { equations: 'linear', spacingLongitudeDeg: 0.25, spacingLatitudeDeg: 0.25, stepsPerDay: 16 },
     length: { days: 2555 },
     output: {
@@ -123,6 +138,8 @@ export function corvaneForCheck(seasonalStrength = 1): Setup {
       frameIntervalDays: 5,
       sectionIntervalDays: 5,
       mooringIntervalDays: 1,
+      momentumBudget: false,
+      vorticityBudget: false,
     },
   });
 }
