@@ -20,6 +20,7 @@ export { snapMooring, type SnappedMooring } from './integration/moorings';
 export { BasinBudget, BUDGET_COLUMNS, energyOf, massAnomaly } from './integration/budget';
 export { stabilityNumbers, type StabilityNumbers } from './integration/stability';
 export { CORE_VERSION } from './integration/version';
+export { setupSha256 } from './integration/setup-hash';
 export { sin, cos, exp } from './exact/elementary';
 export { corvaneSetup } from './presets/corvane';
 export { PRESETS, type OceanPreset } from './presets/presets';

@@ -1,4 +1,4 @@
-import { canonicalJson, sha256Hex } from '../exact/bytes';
+import { sha256Hex } from '../exact/bytes';
 import { windForcing } from '../forcing/forcing';
 import { SECONDS_PER_DAY } from '../forcing/season';
 import { buildGrid } from '../grid/build-grid';
@@ -16,6 +16,7 @@ import { nineArrays, setNineArrays, shapeOf, unpad, type NativeVariable } from '
 import { MooringRecorder } from './moorings';
 import { stepRange } from './schedule';
 import { SectionRecorder } from './sections';
+import { setupSha256 } from './setup-hash';
 import { packState, startFromState } from './state';
 import { CORE_VERSION } from './version';
 
@@ -105,7 +106,7 @@ export class Integration {
       throw new RangeError(
         `The checkpoint is of core version ${saved.coreVersion}; this is ${CORE_VERSION}, which cannot continue it to the same bits.`,
       );
-    if (saved.setupSha256 !== setupHash(setup)) throw new RangeError('The checkpoint belongs to another setup.');
+    if (saved.setupSha256 !== setupSha256(setup)) throw new RangeError('The checkpoint belongs to another setup.');
     const run = new Integration(setup);
     setNineArrays(run.#model, arrays);
     run.#model.step = saved.step;
@@ -202,7 +203,7 @@ export class Integration {
     const head: CheckpointHead = {
       kind: 'checkpoint',
       coreVersion: CORE_VERSION,
-      setupSha256: setupHash(this.setup),
+      setupSha256: setupSha256(this.setup),
       step: this.step,
     };
     return pack({
@@ -249,8 +250,4 @@ export class Integration {
 function touchesWater(grid: Grid, variable: NativeVariable, i: number, j: number): boolean {
   if (variable === 'eta') return isWet(grid, i, j);
   return isWet(grid, i, j) || (variable === 'u' ? isWet(grid, i - 1, j) : isWet(grid, i, j - 1));
-}
-
-function setupHash(setup: Setup): string {
-  return sha256Hex(new TextEncoder().encode(canonicalJson(setup)));
 }
