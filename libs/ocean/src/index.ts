@@ -45,3 +45,19 @@ export { preflight } from './preflight/preflight';
 export { proposeStepsPerDay } from './preflight/step-limits';
 export { applyRemedy } from './preflight/remedies';
 export { windDiagram, type WindDiagram, type WindDiagramOptions } from './describe/wind-diagram';
+export {
+  richardson,
+  ORDER_RANGE,
+  SAFETY_FACTOR,
+  type ConvergenceVerdict,
+  type GridConvergence,
+  type Uncertainty,
+} from './convergence/richardson';
+export {
+  hasLand,
+  refinedSetup,
+  type CoastChoice,
+  type Refinement,
+  type RefinedSection,
+} from './convergence/refined-setup';
+export { transportMeasures, type TransportMeasures } from './convergence/transport-measures';
