@@ -39,7 +39,13 @@ function smallSetup(days: number): Setup {
   return setup;
 }
 
-const jobOf = (setup: Setup, checkpointSeconds = 600) => ({ runId: 'r', setup, varDir, checkpointSeconds });
+const jobOf = (setup: Setup, checkpointSeconds = 600) => ({
+  runId: 'r',
+  setup,
+  varDir,
+  checkpointSeconds,
+  threads: 1,
+});
 /** Stands for all bits of an array: comparing hashes is much faster than comparing numbers. */
 const bits = (data: Float32Array | Float64Array) =>
   sha256Of(new Uint8Array(data.buffer, data.byteOffset, data.byteLength));

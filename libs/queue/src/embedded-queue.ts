@@ -213,7 +213,8 @@ export class EmbeddedQueue implements RunQueue {
       return;
     }
     const { varDir, checkpointSeconds } = this.options;
-    const job = { runId, setup, varDir, checkpointSeconds };
+    const threads = Math.max(1, Math.floor(availableParallelism() / this.settings.cap));
+    const job = { runId, setup, varDir, checkpointSeconds, threads };
     const worker = new WorkerProcess(job, this.options.worker, (message) => this.hear(runId, message));
     const active: Active = { worker, intent: null, deaths: run.deaths, writes: Promise.resolve() };
     this.active.set(runId, active);

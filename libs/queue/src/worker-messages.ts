@@ -9,6 +9,8 @@ export interface WorkerJob {
   varDir: string;
   /** Shortest time between checkpoints, s; the rule is max(this, 20 × what the last one cost). */
   checkpointSeconds: number;
+  /** Threads that may step the run: the cores of the machine shared among as many runs as the cap allows, at least 1. */
+  threads: number;
 }
 
 /** Engine to worker. `save`: write a checkpoint at once and end. */
