@@ -3,7 +3,7 @@ import { readFileSync } from 'node:fs';
 import { mkdir, mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { problemSchema } from '@halfdeep/contracts';
+import { jsonPointer, problemSchema } from '@halfdeep/contracts';
 import { Experiment, RepeatedRequest } from '@halfdeep/store';
 import { type Router } from 'express';
 import request from 'supertest';
@@ -43,8 +43,7 @@ describe('problem details', () => {
     expect(problem.errors).toHaveLength(2);
   });
 
-  it('escape pointers as RFC 6901 says', async () => {
-    const { jsonPointer } = await import('../../apps/api/src/http/parse-input');
+  it('escape pointers as RFC 6901 says', () => {
     expect(jsonPointer(['a/b', 0, 'c~d'])).toBe('/a~1b/0/c~0d');
     expect(jsonPointer([])).toBe('');
   });

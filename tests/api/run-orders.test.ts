@@ -139,6 +139,8 @@ describe('orders to a run', () => {
       changes: before.changes,
     });
     expect(after.setup).toEqual(before.setup);
+    const repeat = await order(child.id, 'repeat');
+    expect((await reach(hand, repeat.id, 'finished')).fingerprint).toEqual(before.fingerprint);
   });
 
   it('repeats a run to the same fingerprint', async () => {

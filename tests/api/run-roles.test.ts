@@ -57,6 +57,8 @@ describe('who may do what with an experiment and its runs', () => {
     '/api/side-by-side?a=:finished&b=:finished',
     '/api/presets',
     '/api/desk',
+    '/api/runs/:finished/setup',
+    '/api/runs/:finished/state',
     '/api/events?runs=:finished',
   ];
   const filled = (path: string) =>

@@ -1,7 +1,6 @@
-import { type Run } from '@halfdeep/contracts';
+import { CAUTION, type Run } from '@halfdeep/contracts';
 import { deriveMap, Integration, recordSteps, VARIABLES, type Frame, type Variable } from '@halfdeep/ocean';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { CAUTION } from '../../apps/api/src/slices/csv';
 import { decodeSlice } from '../../apps/api/src/slices/encode';
 import { bytesOf, newExperiment, newRun, reach, smallSetup, startRunApi, type Hand, type RunApi } from './run-harness';
 

@@ -1,7 +1,4 @@
-import { type Problem } from '@halfdeep/contracts';
-
-/** A wrong place in the request: a JSON pointer (RFC 6901) and what is wrong there. */
-export type FieldError = NonNullable<Problem['errors']>[number];
+import { type FieldError } from '@halfdeep/contracts';
 
 /** A refusal that the caller is told in full. Anything else that is thrown becomes a 500 with a plain sentence. */
 export class RefusedError extends Error {

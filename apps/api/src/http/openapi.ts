@@ -53,12 +53,18 @@ function whoMay({ action }: RouteRecord): string {
   return `Who: ${rows.join('; ')}.`;
 }
 
+/** A file is text as it is, or bytes. */
+const fileSchema = (media: string) => ({
+  type: 'string' as const,
+  ...(media.startsWith('text/') ? {} : { format: 'binary' }),
+});
+
 function pathConfig(record: RouteRecord): RouteConfig {
   const { method, path, summary, params, query, body, answer, media, status, action } = record;
   const content = answer
     ? { 'application/json': { schema: answer } }
     : media
-      ? { [media]: { schema: { type: 'string' as const, ...(media.startsWith('text/') ? {} : { format: 'binary' }) } } }
+      ? Object.fromEntries([media].flat().map((type) => [type, { schema: fileSchema(type) }]))
       : undefined;
   const refusals = [
     ...(params ? [400, 404] : query ? [400] : []),

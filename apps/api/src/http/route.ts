@@ -53,8 +53,8 @@ export interface RouteDefinition<
   subject?: (input: { params: z.infer<P>; query: z.infer<Q>; body: z.infer<B>; caller: Caller }) => Promise<S>;
   /** Schema of a JSON answer, which the handler returns. */
   answer?: A;
-  /** Media type of an answer that the handler writes to `res` itself: slices, CSV, event streams. */
-  media?: string;
+  /** Media types of an answer that the handler writes to `res` itself: slices, CSV, files, event streams. */
+  media?: string | readonly string[];
   /** Of the successful answer; default 200, and 204 without `answer` and `media`. */
   status?: number;
 }
@@ -74,7 +74,7 @@ function check(definition: AnyDefinition): RouteRecord {
   if (needsSubject(action) && !subject)
     throw new Error(`${where}: “${action}” depends on owner or state, so the route must say how to find its subject.`);
   if (/[:*]/.test(path) && !rest.params) throw new Error(`${where}: the path has parameters but no schema for them.`);
-  if (rest.answer && rest.media) throw new Error(`${where}: an answer is JSON or ${rest.media}, not both.`);
+  if (rest.answer && rest.media) throw new Error(`${where}: an answer is JSON or ${String(rest.media)}, not both.`);
   return { method, path, action, ...rest, status: status ?? (rest.answer || rest.media ? 200 : 204) };
 }
 

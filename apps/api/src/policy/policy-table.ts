@@ -21,6 +21,7 @@ export const ACTIONS = {
   'preflight.run': 'have a setup checked',
   'run.list': 'list the runs',
   'run.read': 'read a run and its results',
+  'run.export': 'export the setup or the last state of a run',
   'run.queue': 'queue a run in this experiment',
   'run.stop': 'stop a run',
   'run.resume': 'resume a run',
@@ -76,6 +77,7 @@ export const POLICY_TABLE: readonly PolicyRow[] = [
   ['run.read',          'signed in', 'any', 'any'],
   ['run.compare',       'signed in', 'any', 'any'],
   ['events.watch',      'signed in', 'any', 'any'],
+  ['run.export',        'signed in', 'any', 'any'],
 
   // Doing the work is for modellers, on what is theirs.
   ['experiment.create', 'modeller',  'any', 'any'],

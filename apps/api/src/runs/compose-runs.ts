@@ -12,6 +12,7 @@ import { SideBySideService } from '../side-by-side/side-by-side-service';
 import { SliceService } from '../slices/slice-service';
 import { DeskRunLedger } from './desk-run-ledger';
 import { Machine } from './machine';
+import { RunExports } from './run-exports';
 import { RunService } from './run-service';
 import { SetupCheck } from './setup-check';
 import { workerEntry } from './worker-entry';
@@ -34,6 +35,7 @@ export interface RunServices {
   machine: Machine;
   check: SetupCheck;
   runs: RunService;
+  exports: RunExports;
   experiments: ExperimentService;
   slices: SliceService;
   sideBySide: SideBySideService;
@@ -77,6 +79,7 @@ export function composeRuns({ desk, audit, varFolder, failed, worker, checkpoint
     machine,
     check,
     runs: new RunService({ desk, audit, ledger, queue, files, check, varDir: varFolder }),
+    exports: new RunExports(varFolder),
     experiments: new ExperimentService(desk),
     slices: new SliceService(files, varFolder),
     sideBySide: new SideBySideService(files, varFolder),

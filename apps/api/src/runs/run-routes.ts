@@ -1,4 +1,5 @@
 import {
+  BUNDLE_MEDIA,
   extendRunSchema,
   newRunSchema,
   pageQuerySchema,
@@ -15,6 +16,7 @@ import { type ExperimentService } from '../experiments/experiment-service';
 import { route } from '../http/route';
 import { type Caller } from '../policy/actor';
 import { type Action } from '../policy/policy-table';
+import { type RunExports, STATE_MEDIA } from './run-exports';
 import { presentRun, presentRuns, presentWholeRun } from './run-presenter';
 import { type RunService } from './run-service';
 import { type SetupCheck } from './setup-check';
@@ -23,6 +25,7 @@ export interface RunRouteServices {
   runs: RunService;
   experiments: ExperimentService;
   check: SetupCheck;
+  exports: RunExports;
 }
 
 const runId = z.object({ id: z.uuid('A run is named by its id, a UUID.') });
@@ -36,7 +39,7 @@ const listQuery = pageQuerySchema.extend({
 /** /preflight, /experiments/:id/runs and /runs: making, reading, stopping, going on, deleting. */
 export function runRoutes(services: RunRouteServices): Router {
   const router = Router();
-  const { runs, experiments, check } = services;
+  const { runs, experiments, check, exports } = services;
   route(
     router,
     {
@@ -100,6 +103,33 @@ export function runRoutes(services: RunRouteServices): Router {
       answer: runSchema,
     },
     ({ subject: { run }, actor }) => presentWholeRun(run, actor),
+  );
+  route(
+    router,
+    {
+      method: 'get',
+      path: '/runs/:id/setup',
+      action: 'run.export',
+      summary: 'The setup as a file; with its start state as a bundle (a zip) when it starts from one',
+      params: runId,
+      subject,
+      media: ['application/json', BUNDLE_MEDIA],
+    },
+    ({ subject: { run }, res }) => exports.sendSetup(run, res),
+  );
+  route(
+    router,
+    {
+      method: 'get',
+      path: '/runs/:id/state',
+      action: 'run.export',
+      summary:
+        'The last state of a finished run, to start another from; its SHA-256 is lastState.stateSha256 of the run',
+      params: runId,
+      subject,
+      media: STATE_MEDIA,
+    },
+    ({ subject: { run }, res }) => exports.sendState(run, res),
   );
   /** A POST without a body that does something to a run and answers with its summary. */
   const order = (name: string, action: Action, summary: string, done: (run: Run, caller: Caller) => Promise<Run>) =>

@@ -1,5 +1,5 @@
 import { randomUUID } from 'node:crypto';
-import { setupSchema, type Progress, type RunState } from '@halfdeep/contracts';
+import { jsonPointer, setupSchema, type Progress, type RunState } from '@halfdeep/contracts';
 import { buildGrid, diffSetups, stepRange, type Preflight, type Setup, type SetupChange } from '@halfdeep/ocean';
 import { type RunQueue } from '@halfdeep/queue';
 import {
@@ -15,7 +15,6 @@ import { Op, type Transaction, type WhereOptions } from 'sequelize';
 import { type AuditTrail } from '../audit/audit-trail';
 import { ConflictError, InputError, NotFoundError } from '../http/errors';
 import { containing } from '../http/list';
-import { jsonPointer } from '../http/parse-input';
 import { type Caller } from '../policy/actor';
 import { type DeskRunLedger } from './desk-run-ledger';
 import { orderOf, type PageInput } from './list-query';
@@ -48,6 +47,8 @@ interface Draft {
   parent: Run | null;
   descent: Descent;
   changes: SetupChange[];
+  /** Id of the run whose start state is taken, when it has one. */
+  repeatOf?: string;
 }
 
 const SORTS = { created: 'createdAt', ended: 'endedAt', label: 'label', state: 'state', disk: 'diskBytes' } as const;
@@ -121,10 +122,12 @@ export class RunService {
     });
   }
 
-  /** Queues the same setup once more: its fingerprint must come out the same. */
+  /**
+   * Queues the same setup once more: its fingerprint must come out the same. A start state is copied from the original,
+   * which kept it, so that the run that it came from may be gone.
+   */
   async repeat(original: Run): Promise<Run> {
     const { setup } = original;
-    if (setup.start.kind === 'state') await verifyStart(setup, setup.start, '/setup');
     return this.queueDraft(original.experimentId, original.ownerId, {
       label: `${original.label.slice(0, 70)}, repeated`,
       setup,
@@ -132,6 +135,7 @@ export class RunService {
       parent: original,
       descent: 'sensitivity',
       changes: [],
+      repeatOf: original.id,
     });
   }
 
@@ -195,7 +199,7 @@ export class RunService {
     const grid = buildGrid(setup);
     const now = new Date();
     try {
-      if (setup.start.kind === 'state') await copyStart(varDir, setup.start, id);
+      if (setup.start.kind === 'state') await copyStart(varDir, setup.start, id, draft.repeatOf);
       await desk.write(async (transaction) => {
         // A parent that was deleted meanwhile leaves its label.
         const stillThere = parent && (await Run.count({ where: { id: parent.id }, transaction })) > 0;

@@ -1,5 +1,6 @@
-import { preflight, type Check, type Preflight, type Setup } from '@halfdeep/ocean';
-import { InputError, type FieldError } from '../http/errors';
+import { preflightRefusal } from '@halfdeep/contracts';
+import { preflight, type Preflight, type Setup } from '@halfdeep/ocean';
+import { InputError } from '../http/errors';
 import { type Machine } from './machine';
 
 /** Preflight on the server: the same library as in the form, with this machine's speed and disk. */
@@ -17,21 +18,8 @@ export class SetupCheck {
    */
   async admit(setup: Setup, place: (pointer: string) => string): Promise<Preflight> {
     const answer = await this.check(setup);
-    if (answer.verdict !== 'refuse') return answer;
-    const refused = answer.checks.filter((check) => check.verdict === 'refuse');
-    const errors = refused.flatMap((check) => checkErrors(check, place));
-    const detail = `Preflight refuses this setup: ${refused.map((check) => check.reason).join(' ')}`;
-    throw new InputError(detail, errors, 422);
+    const refusal = preflightRefusal(answer, place);
+    if (refusal) throw new InputError(refusal.detail, refusal.errors, 422);
+    return answer;
   }
-}
-
-/** One line a field that the check is about: the reason, and the change that cures it. */
-function checkErrors(check: Check, place: (pointer: string) => string): FieldError[] {
-  const cure = check.remedy
-    ? ` ${check.remedy.label}: ${check.remedy.changes
-        .map(({ pointer, value }) => `${place(pointer)} = ${JSON.stringify(value)}`)
-        .join(', ')}.`
-    : '';
-  const places = new Set(check.pointers.map(place));
-  return [...places].map((pointer) => ({ pointer, detail: `${check.reason}${cure}` }));
 }

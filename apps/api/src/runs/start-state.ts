@@ -1,6 +1,7 @@
+import { type FieldError } from '@halfdeep/contracts';
 import { buildGrid, type Grid, type Setup, type Start } from '@halfdeep/ocean';
 import { adoptStartState, Run, runPaths, StateFileError } from '@halfdeep/store';
-import { ConflictError, InputError, type FieldError } from '../http/errors';
+import { ConflictError, InputError } from '../http/errors';
 
 type StateStart = Extract<Start, { kind: 'state' }>;
 
@@ -55,12 +56,14 @@ function gridDifference(from: Grid, to: Grid): string | null {
 }
 
 /**
- * Copies the last state of the parent beside the run that will start from it. Throws ConflictError when the file is
- * missing or is not what the parent left; nothing is left then.
+ * Copies the state that a new run starts from beside it: the last state of the run that its setup names, or, for a
+ * repeat, the start state of the run that it repeats, so that the first of them may be gone. Throws ConflictError when
+ * the file is missing or is not what it should be; nothing is left then.
  */
-export async function copyStart(varDir: string, start: StateStart, runId: string): Promise<void> {
+export async function copyStart(varDir: string, start: StateStart, runId: string, repeatOf?: string): Promise<void> {
+  const from = runPaths(varDir, repeatOf ?? start.runId);
   try {
-    await adoptStartState(runPaths(varDir, start.runId), runPaths(varDir, runId), start.stateSha256);
+    await adoptStartState(from, runPaths(varDir, runId), start.stateSha256, repeatOf ? 'start' : 'last');
   } catch (error) {
     if (error instanceof StateFileError) throw new ConflictError(`${error.message} Compute that run again.`);
     throw error;

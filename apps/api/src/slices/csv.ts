@@ -1,10 +1,4 @@
-import type { SliceHead } from '@halfdeep/contracts';
-
-/** Stands on every export, as on every finding and share page. */
-export const CAUTION =
-  'A one-and-a-half-layer experiment is an idealisation. It is not a forecast, and not to be used for navigation, ' +
-  'safety at sea, fisheries limits, or engineering design; for those, use the services of the responsible national ' +
-  'agency and qualified people.';
+import { CAUTION, type SliceHead } from '@halfdeep/contracts';
 
 /** A text cell: quoted when it must be, and never read as a formula by a spreadsheet. */
 export function csvText(text: string): string {

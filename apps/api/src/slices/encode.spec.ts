@@ -1,6 +1,6 @@
-import { type SliceHead } from '@halfdeep/contracts';
+import { CAUTION, type SliceHead } from '@halfdeep/contracts';
 import { describe, expect, it } from 'vitest';
-import { CAUTION, csvRows, csvText } from './csv';
+import { csvRows, csvText } from './csv';
 import { decodeSlice, encodeSlice } from './encode';
 
 const head = (over: Partial<SliceHead> = {}): SliceHead => ({

@@ -57,10 +57,17 @@ export async function readVerified(path: string, sha256: string, what: string): 
 
 /**
  * Copies the last state of a finished run into a new run, when that is queued, so that it stays repeatable when the
- * parent is gone. StateFileError when the parent's state is missing or not the one that the hash names.
+ * parent is gone; `which` 'start' copies the state that the parent itself started from, for a repeat of it.
+ * StateFileError when the parent's state is missing or not the one that the hash names.
  */
-export async function adoptStartState(parent: RunPaths, child: RunPaths, stateSha256: string): Promise<void> {
-  const state = await readVerified(parent.last, stateSha256, 'last state of the run it starts from');
+export async function adoptStartState(
+  parent: RunPaths,
+  child: RunPaths,
+  stateSha256: string,
+  which: 'last' | 'start' = 'last',
+): Promise<void> {
+  const what = which === 'last' ? 'last state of the run it starts from' : 'start state of the run that it repeats';
+  const state = await readVerified(parent[which], stateSha256, what);
   await mkdir(child.folder, { recursive: true });
   await writeWhole(child.start, state);
 }
