@@ -14,6 +14,22 @@ const problems = (input: unknown): string[] => {
   return parsed.success ? [] : parsed.error.issues.map(({ path, message }) => `/${path.join('/')} ${message}`);
 };
 
+/** Turns a setup nonlinear with these fields of the layer. */
+const nonlinear = (setup: Setup, layer: object) => {
+  setup.numerics.equations = 'nonlinear';
+  Object.assign(setup.layer, layer);
+};
+/** Gives a setup sponges, 5° wide at the north edge where nothing else is said. */
+const sponges = (setup: Setup, ...list: object[]) => {
+  setup.basin.sponges = list.map((one) => ({
+    edge: 'north' as const,
+    widthDeg: 5,
+    peakRatePerS: null,
+    tapersWind: true,
+    ...one,
+  }));
+};
+
 describe('the setup schema', () => {
   it.each(PRESETS.map(({ id, setup }) => [id, setup] as const))(
     'accepts %s and gives it back unchanged',
@@ -31,6 +47,8 @@ describe('the setup schema', () => {
       ['temperatureStep', (setup, value) => (setup.layer.temperatureStepK = value)],
       ['rayleigh', (setup, value) => (setup.friction.rayleighPerS = value)],
       ['viscosity', (setup, value) => (setup.friction.viscosityM2S = value)],
+      ['minimumThickness', (setup, value) => (setup.layer.minimumThicknessM = value)],
+      ['stressFloor', (setup, value) => (setup.wind.stressFloorM = value)],
       ['seasonalStrength', (setup, value) => (setup.wind.seasonalStrength = value)],
       ['spacing', (setup, value) => (setup.numerics.spacingLatitudeDeg = value)],
       ['stepsPerDay', (setup, value) => (setup.numerics.stepsPerDay = value)],
@@ -92,7 +110,7 @@ describe('the setup schema', () => {
     [
       'an unknown plane',
       (s) => (s.basin.geometry = 'sphere'),
-      '/basin/geometry The geometry must be one of equatorial, midlatitude, fplane; "sphere" arrived.',
+      '/basin/geometry The geometry must be one of equatorial, midlatitude, fplane, spherical; "sphere" arrived.',
     ],
     [
       'an unknown wind',
@@ -112,12 +130,12 @@ describe('the setup schema', () => {
     [
       'an unknown field',
       (s) => (s.friction.colour = 1),
-      '/friction The part “friction” has no field “colour”; it has rayleighPerS, viscosityM2S, slip.',
+      '/friction The part “friction” has no field “colour”; it has rayleighPerS, viscosityM2S, viscosityPatches, slip.',
     ],
     [
       'a missing part',
       (s) => delete s.friction,
-      '/friction The part “friction” must be an object with rayleighPerS, viscosityM2S, slip; nothing arrived.',
+      '/friction The part “friction” must be an object with rayleighPerS, viscosityM2S, viscosityPatches, slip; nothing arrived.',
     ],
     [
       'another version',
@@ -234,10 +252,123 @@ describe('the setup schema', () => {
         }),
       '/start/startStep The step of the state must be 0 or more; −1 arrived.',
     ],
+    [
+      'a minimum thickness beyond half of H',
+      (s) => nonlinear(s, { minimumThicknessM: 101 }),
+      '/layer/minimumThicknessM The minimum thickness must be at most half the thickness at rest, 100 m; 101 m arrived.',
+    ],
+    [
+      'entrainment below the minimum thickness',
+      (s) => nonlinear(s, { entrainment: { onsetThicknessM: 19, timescaleDays: 10, detrainment: 'none' } }),
+      '/layer/entrainment/onsetThicknessM Entrainment must begin between the minimum thickness and the thickness at rest, 20 and 200 m; 19 m arrived.',
+    ],
+    [
+      'entrainment above H',
+      (s) => nonlinear(s, { entrainment: { onsetThicknessM: 201, timescaleDays: 10, detrainment: 'none' } }),
+      '/layer/entrainment/onsetThicknessM Entrainment must begin between the minimum thickness and the thickness at rest, 20 and 200 m; 201 m arrived.',
+    ],
+    [
+      'fast entrainment',
+      (s) => nonlinear(s, { entrainment: { onsetThicknessM: 60, timescaleDays: 0.05, detrainment: 'none' } }),
+      '/layer/entrainment/timescaleDays Entrainment time must be between 0.1 and 1000 d; 0.05 arrived.',
+    ],
+    [
+      'an unknown detrainment',
+      (s) => nonlinear(s, { entrainment: { onsetThicknessM: 60, timescaleDays: 10, detrainment: 'all' } }),
+      '/layer/entrainment/detrainment The detrainment must be one of none, uniform; "all" arrived.',
+    ],
+    [
+      'a stress floor above H',
+      (s) => {
+        nonlinear(s, {});
+        s.wind.stressFloorM = 250;
+      },
+      '/wind/stressFloorM The stress floor must be at most the thickness at rest, 200 m; 250 m arrived.',
+    ],
+    [
+      'a wide sponge',
+      (s) => sponges(s, { widthDeg: 17.6 }),
+      '/basin/sponges/0/widthDeg A sponge is at most half as wide as the basin, 17.5° here; 17.6° arrived.',
+    ],
+    [
+      'a sponge without width',
+      (s) => sponges(s, { widthDeg: 0 }),
+      '/basin/sponges/0/widthDeg Sponge width must be between 0.005 and 180 °; 0 arrived.',
+    ],
+    [
+      'a fierce sponge',
+      (s) => sponges(s, { peakRatePerS: 0.1 }),
+      '/basin/sponges/0/peakRatePerS Sponge rate must be between 0 and 0.01 1/s; 0.1 arrived.',
+    ],
+    [
+      'two sponges at one edge',
+      (s) => sponges(s, {}, { widthDeg: 3 }),
+      '/basin/sponges/1/edge There is a sponge at the north edge already; an edge has one at most.',
+    ],
+    [
+      'a sponge at an edge that a periodic basin does not have',
+      (s) => {
+        s.basin.westernCoast = { kind: 'rectangular' };
+        s.basin.zonallyPeriodic = true;
+        sponges(s, { edge: 'west' });
+      },
+      '/basin/sponges/0/edge A zonally periodic basin has no west edge: put the sponge at the south or north edge, or close the basin.',
+    ],
+    [
+      'a coast that does not nest',
+      (s) => (s.basin.coastSpacing = { longitudeDeg: 0.5, latitudeDeg: 0.3 }),
+      '/basin/coastSpacing/latitudeDeg The spacing of the coast must be a whole multiple or a whole fraction of the grid spacing, 0.25°; 0.3° arrived.',
+    ],
+    [
+      'viscosity that would fall',
+      (s) =>
+        (s.friction.viscosityPatches = [
+          { name: '', addedM2S: -1, longitudeDeg: 5, latitudeDeg: 0, widthLongitudeDeg: 2, widthLatitudeDeg: 2 },
+        ]),
+      '/friction/viscosityPatches/0/addedM2S Added viscosity must be between 0 and 1\u202f000\u202f000 m²/s; −1 arrived.',
+    ],
+    [
+      'a budget that is not yes or no',
+      (s) => (s.output.momentumBudget = 1),
+      '/output/momentumBudget Momentum budget must be true or false; 1 arrived.',
+    ],
     // eslint-disable-next-line @typescript-eslint/no-explicit-any
   ] satisfies [string, (setup: any) => unknown, string][])('says what is wrong with %s', (_, change, message) => {
     // prettier-ignore
     expect(problems(wrong(change))).toEqual([message]);
+  });
+
+  it('leaves the fields of the nonlinear equations alone where the linear ones do not use them', () => {
+    const thin = wrong((setup: Setup) => {
+      setup.layer.restThicknessM = 30; // half of it is below the default of the minimum thickness
+      setup.wind.stressFloorM = 100;
+    });
+    expect(problems(thin)).toEqual([]);
+  });
+
+  it('reads a setup that was exported before sponges and the nonlinear fields existed', () => {
+    const old = wrong((setup: Setup) => {
+      for (const [part, field] of [
+        ['basin', 'sponges'],
+        ['basin', 'coastSpacing'],
+        ['layer', 'minimumThicknessM'],
+        ['layer', 'entrainment'],
+        ['wind', 'stressFloorM'],
+        ['friction', 'viscosityPatches'],
+        ['output', 'momentumBudget'],
+        ['output', 'vorticityBudget'],
+      ] as const)
+        delete (setup[part] as unknown as Record<string, unknown>)[field];
+    });
+    expect(setupSchema.parse(old)).toEqual(corvaneSetup());
+  });
+
+  it.each([
+    [{ longitudeDeg: 0.5, latitudeDeg: 0.125 }],
+    [{ longitudeDeg: 0.25, latitudeDeg: 0.25 }],
+    [{ longitudeDeg: 0.25 / 3, latitudeDeg: 0.75 }],
+  ])('takes a coast on a grid of %o', (coastSpacing) => {
+    expect(problems(wrong((setup: Setup) => (setup.basin.coastSpacing = coastSpacing)))).toEqual([]);
   });
 
   it('names every wrong field at once', () => {

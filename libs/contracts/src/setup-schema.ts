@@ -100,6 +100,29 @@ export const basinSchema = fields('The part “basin”', {
       path: ['westernCoast', 'kind'],
       message: 'A zonally periodic basin has no western coast: choose a rectangular coast or a closed basin.',
     });
+  basin.sponges.forEach(({ edge, widthDeg }, k) => {
+    const zonal = edge === 'west' || edge === 'east';
+    const extent = zonal ? basin.eastDeg - basin.westDeg : basin.northDeg - basin.southDeg;
+    if (zonal && basin.zonallyPeriodic)
+      context.addIssue({
+        code: 'custom',
+        path: ['sponges', k, 'edge'],
+        message: `A zonally periodic basin has no ${edge} edge: put the sponge at the south or north edge, or close the basin.`,
+      });
+    if (basin.sponges.findIndex((other) => other.edge === edge) < k)
+      context.addIssue({
+        code: 'custom',
+        path: ['sponges', k, 'edge'],
+        message: `There is a sponge at the ${edge} edge already; an edge has one at most.`,
+      });
+    // An extent that is not positive has its own message.
+    if (extent > 0 && widthDeg > extent / 2)
+      context.addIssue({
+        code: 'custom',
+        path: ['sponges', k, 'widthDeg'],
+        message: `A sponge is at most half as wide as the basin, ${arrived(extent / 2)}° here; ${arrived(widthDeg)}° arrived.`,
+      });
+  });
   basin.islands.forEach((island, k) => {
     if (island.kind !== 'box') return;
     if (!(island.eastDeg > island.westDeg))
@@ -309,6 +332,8 @@ export const setupSchema = fields('A setup', {
 })
   .superRefine((setup, context) => {
     const { basin, output } = setup;
+    refuseThicknesses(setup, context);
+    refuseCoastSpacing(setup, context);
     const within = (what: string, path: PropertyKey[], degrees: number, edges: [number, number]) => {
       // Edges the wrong way round have their own message; every place would be outside of them.
       if (!(edges[1] > edges[0]) || (degrees >= edges[0] && degrees <= edges[1])) return;
@@ -350,6 +375,56 @@ export const setupSchema = fields('A setup', {
     }
   })
   .meta({ id: 'Setup' });
+
+/** Bounds of the nonlinear equations that hang on H or on each other; the linear ones do not use these fields. */
+function refuseThicknesses({ layer, wind, numerics }: SetupParts, context: z.RefinementCtx): void {
+  if (numerics.equations !== 'nonlinear') return;
+  const { restThicknessM: H, minimumThicknessM: hmin, entrainment } = layer;
+  const refuse = (path: PropertyKey[], message: string) => context.addIssue({ code: 'custom', path, message });
+  if (hmin > H / 2)
+    refuse(
+      ['layer', 'minimumThicknessM'],
+      `The minimum thickness must be at most half the thickness at rest, ${arrived(H / 2)} m; ${arrived(hmin)} m arrived.`,
+    );
+  if (entrainment && !(entrainment.onsetThicknessM >= hmin && entrainment.onsetThicknessM <= H))
+    refuse(
+      ['layer', 'entrainment', 'onsetThicknessM'],
+      `Entrainment must begin between the minimum thickness and the thickness at rest, ${arrived(hmin)} and ${arrived(H)} m; ${arrived(entrainment.onsetThicknessM)} m arrived.`,
+    );
+  if (wind.stressFloorM > H)
+    refuse(
+      ['wind', 'stressFloorM'],
+      `The stress floor must be at most the thickness at rest, ${arrived(H)} m; ${arrived(wind.stressFloorM)} m arrived.`,
+    );
+}
+
+/** How far a quotient of two spacings may be off a whole number: they are typed or divided decimals. */
+const WHOLE_TOLERANCE = 1e-6;
+
+/** The grid of the coast nests in that of the run, or the other way round, along each axis. */
+function refuseCoastSpacing({ basin, numerics }: SetupParts, context: z.RefinementCtx): void {
+  if (basin.coastSpacing === null) return;
+  const axes = [
+    ['longitudeDeg', basin.coastSpacing.longitudeDeg, numerics.spacingLongitudeDeg],
+    ['latitudeDeg', basin.coastSpacing.latitudeDeg, numerics.spacingLatitudeDeg],
+  ] as const;
+  for (const [field, coast, own] of axes) {
+    const factor = Math.max(coast / own, own / coast);
+    if (Math.abs(factor - Math.round(factor)) > WHOLE_TOLERANCE * factor)
+      context.addIssue({
+        code: 'custom',
+        path: ['basin', 'coastSpacing', field],
+        message: `The spacing of the coast must be a whole multiple or a whole fraction of the grid spacing, ${arrived(own)}°; ${arrived(coast)}° arrived.`,
+      });
+  }
+}
+
+interface SetupParts {
+  basin: z.infer<typeof basinSchema>;
+  layer: z.infer<typeof layerSchema>;
+  wind: z.infer<typeof windSchema>;
+  numerics: z.infer<typeof numericsSchema>;
+}
 
 // The schema and the type of libs/ocean must say the same, both ways.
 type Same<A, B> = [A] extends [B] ? ([B] extends [A] ? true : never) : never;

@@ -97,7 +97,7 @@ const between = (low: number, high: number, part: number) => Math.min(high, low 
 const basin = fc
   .record({
     name: fc.constantFrom('', 'Sea'),
-    geometry: fc.constantFrom('equatorial' as const, 'midlatitude' as const, 'fplane' as const),
+    geometry: fc.constantFrom('equatorial' as const, 'midlatitude' as const, 'fplane' as const, 'spherical' as const),
     westDeg: fc.integer({ min: -100, max: 100 }),
     width: fc.oneof(fc.integer({ min: 1, max: 250 }), fc.double({ min: 0.5, max: 5, noNaN: true })),
     southDeg: fc.oneof(fc.integer({ min: -80, max: 79 }), fc.constantFrom(-17.5, -15, 0)),
@@ -116,8 +116,17 @@ const basin = fc
       ),
       { maxLength: 3 },
     ),
+    sponges: fc.uniqueArray(
+      fc.record({
+        edge: fc.constantFrom('west' as const, 'east' as const, 'south' as const, 'north' as const),
+        part: share,
+        peakRatePerS: fc.option(quantity('spongeRate')),
+        tapersWind: fc.boolean(),
+      }),
+      { maxLength: 4, selector: ({ edge }) => edge },
+    ),
   })
-  .map(({ width, height, coast, islands, ...rest }): Setup['basin'] => {
+  .map(({ width, height, coast, islands, sponges, ...rest }): Setup['basin'] => {
     const eastDeg = rest.westDeg + width;
     const northDeg = Math.min(80, rest.southDeg + height);
     const longitude = (part: number) => between(rest.westDeg, eastDeg, part);
@@ -146,7 +155,14 @@ const basin = fc
               points: island.ring.map(([x, y]): [number, number] => [longitude(x), latitude(y)]),
             },
       ),
-      sponges: [],
+      sponges: sponges
+        .map(({ part, ...sponge }) => {
+          const zonal = sponge.edge === 'west' || sponge.edge === 'east';
+          const half = (zonal ? eastDeg - rest.westDeg : northDeg - rest.southDeg) / 2;
+          return { ...sponge, zonal, widthDeg: between(LIMITS.spongeWidth.min, half, part) };
+        })
+        .filter(({ zonal }) => !(zonal && rest.zonallyPeriodic))
+        .map(({ edge, widthDeg, peakRatePerS, tapersWind }) => ({ edge, widthDeg, peakRatePerS, tapersWind })),
       coastSpacing: null,
     };
   });
@@ -172,7 +188,13 @@ export function anySetup(cells?: number): fc.Arbitrary<Setup> {
         dampingPerS: quantity('damping'),
         temperatureStepK: quantity('temperatureStep'),
         minimumThicknessM: quantity('minimumThickness'),
-        entrainment: fc.constant(null),
+        entrainment: fc.option(
+          fc.record({
+            onsetThicknessM: quantity('entrainmentOnset'),
+            timescaleDays: quantity('entrainmentTime'),
+            detrainment: fc.constantFrom('none' as const, 'uniform' as const),
+          }),
+        ),
       }),
       wind: fc.record({
         components: fc.array(fc.record({ name, pattern, season }), { maxLength: 3 }),
@@ -183,30 +205,64 @@ export function anySetup(cells?: number): fc.Arbitrary<Setup> {
       friction: fc.record({
         rayleighPerS: quantity('rayleigh'),
         viscosityM2S: quantity('viscosity'),
-        viscosityPatches: fc.constant<Setup['friction']['viscosityPatches']>([]),
+        viscosityPatches: fc.array(
+          fc.record({
+            name,
+            addedM2S: quantity('addedViscosity'),
+            longitudeDeg: quantity('longitude'),
+            latitudeDeg: quantity('latitude'),
+            widthLongitudeDeg: quantity('windLength'),
+            widthLatitudeDeg: quantity('windLength'),
+          }),
+          { maxLength: 3 },
+        ),
         slip: fc.constantFrom('free' as const, 'none' as const),
       }),
+      equations: fc.constantFrom('linear' as const, 'nonlinear' as const),
       spacing: fc.tuple(quantity('spacing'), quantity('spacing')),
+      coastFactors: fc.option(fc.tuple(fc.constantFrom(1, 2, 3, 1 / 2, 1 / 3), fc.constantFrom(1, 2, 3, 1 / 2, 1 / 3))),
+      budgets: fc.tuple(fc.boolean(), fc.boolean()),
       stepsPerDay: fc.oneof(fc.constantFrom(16, 24, 48, 96), quantity('stepsPerDay')),
       days: fc.oneof(fc.constantFrom(365, 2555), quantity('lengthDays')),
       intervals: fc.tuple(share, share, share),
       sections: fc.array(fc.tuple(fc.constantFrom('latitude' as const, 'longitude' as const), share), { maxLength: 3 }),
       moorings: fc.array(fc.tuple(share, share), { maxLength: 3 }),
     })
-    .map(({ spacing, stepsPerDay, days, intervals, sections, moorings, ...parts }): Setup => {
+    .map(({ equations, spacing, coastFactors, budgets, stepsPerDay, days, ...given }): Setup => {
+      const { intervals, sections, moorings, ...parts } = given;
       const { westDeg, eastDeg, southDeg, northDeg } = parts.basin;
       const coarse = (wanted: number, extent: number) =>
         cells === undefined ? wanted : Math.min(LIMITS.spacing.max, Math.max(wanted, extent / cells));
       const interval = (part: number) => Math.max(0.25, Math.floor(part * Math.min(days, 30) * 4) / 4);
+      const spacingLongitudeDeg = coarse(spacing[0], eastDeg - westDeg);
+      const spacingLatitudeDeg = coarse(spacing[1], northDeg - southDeg);
+      const coastSpacing = coastFactors && {
+        longitudeDeg: spacingLongitudeDeg * coastFactors[0],
+        latitudeDeg: spacingLatitudeDeg * coastFactors[1],
+      };
+      const ofCoast = Object.values(coastSpacing ?? {});
+      const nests = ofCoast.every((degrees) => degrees >= LIMITS.spacing.min && degrees <= LIMITS.spacing.max);
+      const { layer, wind, basin } = parts;
+      const { restThicknessM } = layer;
+      // Bounds that hang on H hold for nonlinear setups; the others keep what no one reads.
+      const minimumThicknessM = Math.min(layer.minimumThicknessM, restThicknessM / 2);
+      const bounded = equations === 'nonlinear' && {
+        layer: {
+          ...layer,
+          minimumThicknessM,
+          entrainment: layer.entrainment && {
+            ...layer.entrainment,
+            onsetThicknessM: Math.min(restThicknessM, Math.max(minimumThicknessM, layer.entrainment.onsetThicknessM)),
+          },
+        },
+        wind: { ...wind, stressFloorM: Math.min(wind.stressFloorM, restThicknessM) },
+      };
       return {
         schemaVersion: 1,
         ...parts,
-        numerics: {
-          equations: 'linear',
-          spacingLongitudeDeg: coarse(spacing[0], eastDeg - westDeg),
-          spacingLatitudeDeg: coarse(spacing[1], northDeg - southDeg),
-          stepsPerDay,
-        },
+        ...bounded,
+        basin: { ...basin, coastSpacing: nests ? coastSpacing : null },
+        numerics: { equations, spacingLongitudeDeg, spacingLatitudeDeg, stepsPerDay },
         length: { days },
         output: {
           sections: sections.map(([along, part], k) => ({
@@ -222,8 +278,8 @@ export function anySetup(cells?: number): fc.Arbitrary<Setup> {
           frameIntervalDays: interval(intervals[0]),
           sectionIntervalDays: interval(intervals[1]),
           mooringIntervalDays: interval(intervals[2]),
-          momentumBudget: false,
-          vorticityBudget: false,
+          momentumBudget: budgets[0],
+          vorticityBudget: budgets[1],
         },
       };
     })

@@ -21,12 +21,17 @@ export function describeSetup(setup: Setup): SetupDescription {
   if (basin.zonallyPeriodic) basinParts.push('periodic');
   if (basin.westernCoast.kind === 'slanting') basinParts.push('slanting coast');
   if (basin.islands.length > 0) basinParts.push(count(basin.islands.length, 'island'));
+  if (basin.sponges.length > 0) basinParts.push(count(basin.sponges.length, 'sponge'));
   const layerParts = [
     `H ${readable(layer.restThicknessM, 4)} m`,
     `g′ ${readable(layer.reducedGravityMS2, 3)} m/s²`,
     `c ${readable(c, 3)} m/s`,
   ];
   if (layer.dampingPerS > 0) layerParts.push(`damped in ${readable(1 / layer.dampingPerS / 86_400, 3)} d`);
+  if (setup.numerics.equations === 'nonlinear') {
+    layerParts.push('nonlinear');
+    if (layer.entrainment) layerParts.push(`entrains below ${readable(layer.entrainment.onsetThicknessM, 4)} m`);
+  }
   return { basin: basinParts.join(', '), layer: layerParts.join(', '), season: seasonWords(setup) };
 }
 

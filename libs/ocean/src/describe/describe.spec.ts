@@ -121,12 +121,63 @@ describe('diffSetups', () => {
   });
 });
 
+it('says what changes in sponges, viscosity, entrainment and the coast', () => {
+  const sponge = (edge: 'north' | 'south', widthDeg: number) => ({
+    edge,
+    widthDeg,
+    peakRatePerS: null,
+    tapersWind: true,
+  });
+  const a = changed(({ basin, friction }) => {
+    basin.sponges = [sponge('south', 4), sponge('north', 4)];
+    friction.viscosityPatches = [
+      { name: 'Shelf', addedM2S: 500, longitudeDeg: 3, latitudeDeg: 1, widthLongitudeDeg: 2, widthLatitudeDeg: 2 },
+    ];
+  });
+  const b = changed(({ basin, layer, numerics, output, wind }) => {
+    basin.sponges = [sponge('north', 5)];
+    basin.coastSpacing = { longitudeDeg: 0.5, latitudeDeg: 0.5 };
+    numerics.equations = 'nonlinear';
+    layer.entrainment = { onsetThicknessM: 60, timescaleDays: 10, detrainment: 'none' };
+    wind.stressFloorM = 50;
+    output.momentumBudget = true;
+  });
+  expect(lines(a, b)).toEqual([
+    'north sponge, width 4 → 5 °',
+    'south sponge 4° wide, rate 6.9 c/W, wind tapered → none',
+    'grid of the coast the run’s own → 0.5° × 0.5°',
+    'entrainment none → below 60 m in 10 d',
+    'stress floor 0 → 50 m',
+    'place of other viscosity Shelf 500 m²/s added at 3° E 1° N, widths 2° and 2° → none',
+    'equations linear → nonlinear',
+    'momentum budget not kept → kept',
+  ]);
+  const slower = structuredClone(b);
+  slower.layer.entrainment!.timescaleDays = 20;
+  expect(lines(b, slower)).toEqual(['entrainment time 10 → 20 d']);
+  expect(fieldLabel('/basin/sponges/0/widthDeg', a)).toBe('South sponge, width');
+  expect(fieldLabel('/basin/sponges/0/widthDeg')).toBe('Sponge 1, width');
+  expect(fieldLabel('/friction/viscosityPatches/0/addedM2S', a)).toBe('Shelf, added viscosity');
+});
+
 describe('describeSetup', () => {
   it('says the Corvane Basin in a few words', () => {
     expect(describeSetup(corvaneSetup(1.2))).toEqual({
       basin: '60° × 35°, equatorial plane, slanting coast, 1 island',
       layer: 'H 200 m, g′ 0.03 m/s², c 2.45 m/s',
       season: 'Halcyon shear × 1.2 yearly, peak 16 July; 2 components steady',
+    });
+  });
+  it('says nonlinear equations, entrainment and sponges', () => {
+    const setup = changed(({ basin, layer, numerics }) => {
+      numerics.equations = 'nonlinear';
+      layer.entrainment = { onsetThicknessM: 60, timescaleDays: 10, detrainment: 'none' };
+      basin.geometry = 'spherical';
+      basin.sponges = [{ edge: 'north', widthDeg: 5, peakRatePerS: null, tapersWind: true }];
+    });
+    expect(describeSetup(setup)).toMatchObject({
+      basin: '60° × 35°, spherical band, slanting coast, 1 island, 1 sponge',
+      layer: 'H 200 m, g′ 0.03 m/s², c 2.45 m/s, nonlinear, entrains below 60 m',
     });
   });
   it('says when there is no wind', () => {
@@ -156,6 +207,17 @@ describe('fieldLabel', () => {
         for (const [key, child] of Object.entries(value)) visit(child, `${pointer}/${key}`);
     };
     for (const { setup } of PRESETS) visit(setup, '');
+    visit(
+      changed(({ basin, layer, friction }) => {
+        basin.sponges = [{ edge: 'north', widthDeg: 5, peakRatePerS: null, tapersWind: true }];
+        basin.coastSpacing = { longitudeDeg: 0.5, latitudeDeg: 0.5 };
+        layer.entrainment = { onsetThicknessM: 60, timescaleDays: 10, detrainment: 'none' };
+        friction.viscosityPatches = [
+          { name: '', addedM2S: 500, longitudeDeg: 3, latitudeDeg: 1, widthLongitudeDeg: 2, widthLatitudeDeg: 2 },
+        ];
+      }),
+      '',
+    );
     expect([...unknown]).toEqual([]);
   });
 });

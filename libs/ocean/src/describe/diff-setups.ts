@@ -3,14 +3,14 @@ import type { Setup } from '../setup';
 import { fieldLabel, fieldUnit, lowerFirst } from './field-label';
 import { FIELDS, NAMED_LISTS, patternOf } from './fields';
 import { readablePair } from './numbers';
-import { pairMembers, type Member } from './pair-members';
+import { nameOf, pairMembers, type Member } from './pair-members';
 import * as summaries from './summaries';
 
 type JsonObject = Record<string, unknown>;
 
 /**
  * What changes from setup `a` to setup `b`, field by field, in the order of the form. Members of lists (wind components,
- * islands, sections, moorings) are matched by name, so that moving one in its list changes nothing but the order.
+ * islands, sponges, sections, moorings …) are matched by name, so that moving one in its list changes nothing but the order.
  * Empty when the two say the same. Pointers lead into `b`; those of something left out lead to the list that it was in.
  */
 export function diffSetups(a: Setup, b: Setup): SetupChange[] {
@@ -42,7 +42,7 @@ function diffList(a: Member[], b: Member[], pointer: string, out: SetupChange[])
   const pairs = pairMembers(a, b);
   const noun = NAMED_LISTS[pointer];
   for (const [i, j] of pairs) {
-    const name = b[j].name || a[i].name || `${noun} ${j + 1}`;
+    const name = nameOf(b[j]) || nameOf(a[i]) || `${noun} ${j + 1}`;
     diffValues(a[i], b[j], `${pointer}/${j}`, `${name}, `, out);
   }
   const kept = new Set(pairs.map(([, j]) => j));
@@ -56,10 +56,10 @@ function diffList(a: Member[], b: Member[], pointer: string, out: SetupChange[])
   // Sums of stresses depend on their order in the last bit, and columns of records follow it.
   if (pairs.some(([i], k) => k > 0 && i < pairs[k - 1][0])) {
     const names = (list: Member[], indices: number[]) =>
-      indices.map((k) => list[k].name || `${noun} ${k + 1}`).join(', ');
+      indices.map((k) => nameOf(list[k]) || `${noun} ${k + 1}`).join(', ');
     out.push({
       pointer,
-      label: `order of the ${noun}s`,
+      label: `order of the ${plural(noun)}`,
       from: names(
         a,
         pairs.map(([i]) => i).sort((x, y) => x - y),
@@ -81,7 +81,12 @@ function existence(
   from: string,
   to: string,
 ): SetupChange {
-  return { pointer, label: `${noun} ${member.name || index + 1}`, from, to, unit: '' };
+  const label = member.edge === undefined ? `${noun} ${member.name || index + 1}` : nameOf(member);
+  return { pointer, label, from, to, unit: '' };
+}
+
+function plural(noun: string): string {
+  return noun.startsWith('place ') ? noun.replace('place', 'places') : `${noun}s`;
 }
 
 function label(pointer: string, prefix: string): { pointer: string; label: string } {
@@ -96,6 +101,7 @@ function valueTexts(a: unknown, b: unknown, pointer: string): [string, string] {
   const text = (value: unknown): string => {
     if (value === null) return words?.whenNull ?? 'none';
     if (typeof value === 'number') return readablePair(value, value, words?.decimals)[0];
+    if (isObject(value)) return summary(value, pointer);
     if (typeof value !== 'string' && typeof value !== 'boolean') return JSON.stringify(value);
     return words?.values?.[String(value)] ?? (value === '' ? 'no name' : String(value));
   };
@@ -117,12 +123,16 @@ function summary(value: JsonObject, pointer: string): string {
   if (pattern === '/wind/components/*/pattern') return summaries.patternSummary(value as never);
   if (pattern === '/basin/westernCoast') return summaries.coastSummary(value as never);
   if (pattern === '/start') return summaries.startSummary(value as never);
+  if (pattern === '/layer/entrainment') return summaries.entrainmentSummary(value as never);
+  if (pattern === '/basin/coastSpacing') return summaries.coastSpacingSummary(value as never);
   return memberSummary(value as never, pattern.replace(/\/\*$/, ''));
 }
 
 function memberSummary(member: Member, list: string): string {
   if (list === '/wind/components') return summaries.componentSummary(member as never);
   if (list === '/basin/islands') return summaries.islandSummary(member as never);
+  if (list === '/basin/sponges') return summaries.spongeSummary(member as never);
+  if (list === '/friction/viscosityPatches') return summaries.viscosityPatchSummary(member as never);
   return list === '/output/sections'
     ? summaries.sectionSummary(member as never)
     : summaries.mooringSummary(member as never);

@@ -1,5 +1,6 @@
 import type { Setup } from '../setup';
 import { FIELDS, NAMED_LISTS, patternOf } from './fields';
+import { nameOf, type Member } from './pair-members';
 
 /**
  * What a person calls the field at a JSON pointer into a setup (or into a request that holds one under `/setup`):
@@ -36,14 +37,26 @@ function nearestField(pattern: string): string {
 }
 
 function memberName(list: string, position: number, setup: Setup | undefined): string {
-  const name = setup === undefined ? undefined : listOf(setup, list)[position]?.name;
-  if (name) return name;
+  const member = setup === undefined ? undefined : listOf(setup, list)[position];
+  const name = member === undefined ? '' : nameOf(member);
+  if (name) return list === '/basin/sponges' ? name.charAt(0).toUpperCase() + name.slice(1) : name;
   const word = NAMED_LISTS[list];
   return `${word.charAt(0).toUpperCase()}${word.slice(1)} ${position + 1}`;
 }
 
-function listOf(setup: Setup, list: string): readonly ({ name: string } | undefined)[] {
-  if (list === '/basin/islands') return setup.basin.islands;
-  if (list === '/wind/components') return setup.wind.components;
-  return list === '/output/sections' ? setup.output.sections : setup.output.moorings;
+function listOf(setup: Setup, list: string): readonly (Member | undefined)[] {
+  switch (list) {
+    case '/basin/islands':
+      return setup.basin.islands;
+    case '/basin/sponges':
+      return setup.basin.sponges;
+    case '/wind/components':
+      return setup.wind.components;
+    case '/friction/viscosityPatches':
+      return setup.friction.viscosityPatches;
+    case '/output/sections':
+      return setup.output.sections;
+    default:
+      return setup.output.moorings;
+  }
 }

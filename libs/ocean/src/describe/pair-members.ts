@@ -1,7 +1,14 @@
 /** A member of a named list of a setup; names may be empty and, for wind components and islands, repeated. */
 export interface Member {
-  name: string;
+  name?: string;
   kind?: string;
+  /** A sponge is named by its edge. */
+  edge?: string;
+}
+
+/** What a member is called: its name, which may be empty; a sponge "west sponge". */
+export function nameOf(member: Member): string {
+  return member.name ?? (member.edge === undefined ? '' : `${member.edge} sponge`);
 }
 
 /**
@@ -21,14 +28,14 @@ export function pairMembers(a: readonly Member[], b: readonly Member[]): [number
       pairs.push([i, j]);
     }
   };
-  pairWhere((i, j) => a[i].name !== '' && a[i].name === b[j].name);
+  pairWhere((i, j) => nameOf(a[i]) !== '' && nameOf(a[i]) === nameOf(b[j]));
   pairWhere((i, j) => content(a[i]) === content(b[j]));
   pairWhere((i, j) => i === j && kindOf(a[i]) === kindOf(b[j]));
   return pairs.sort(([, j], [, k]) => j - k);
 }
 
 function content(member: Member): string {
-  return JSON.stringify({ ...member, name: '' });
+  return JSON.stringify({ ...member, name: '', edge: '' });
 }
 
 function kindOf(member: Member & { pattern?: { kind: string }; along?: string }): string {

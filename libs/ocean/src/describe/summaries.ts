@@ -1,4 +1,15 @@
-import type { Island, Mooring, Section, Start, WesternCoast, WindComponent, WindPattern } from '../setup';
+import type {
+  Entrainment,
+  Island,
+  Mooring,
+  Section,
+  Sponge,
+  Start,
+  ViscosityPatch,
+  WesternCoast,
+  WindComponent,
+  WindPattern,
+} from '../setup';
 import { FIELDS } from './fields';
 import { readable, readableDate, readableLatitude, readableLongitude } from './numbers';
 
@@ -47,6 +58,25 @@ export function coastSummary(coast: WesternCoast): string {
 export function islandSummary(island: Island): string {
   if (island.kind === 'polygon') return `polygon of ${island.points.length} points`;
   return `${readableLongitude(island.westDeg)} to ${readableLongitude(island.eastDeg)}, ${readableLatitude(island.southDeg)} to ${readableLatitude(island.northDeg)}`;
+}
+
+/** A sponge in one line: "5° wide, rate 6.9 c/W, wind tapered". */
+export function spongeSummary({ widthDeg, peakRatePerS, tapersWind }: Sponge): string {
+  const rate = peakRatePerS === null ? '6.9 c/W' : `${readable(peakRatePerS, 3)} 1/s`;
+  return `${degrees(widthDeg)} wide, rate ${rate}${tapersWind ? ', wind tapered' : ''}`;
+}
+
+export function viscosityPatchSummary(patch: ViscosityPatch): string {
+  return `${readable(patch.addedM2S, 4)} m²/s added at ${readableLongitude(patch.longitudeDeg)} ${readableLatitude(patch.latitudeDeg)}, widths ${degrees(patch.widthLongitudeDeg)} and ${degrees(patch.widthLatitudeDeg)}`;
+}
+
+export function entrainmentSummary({ onsetThicknessM, timescaleDays, detrainment }: Entrainment): string {
+  const back = detrainment === 'uniform' ? ', given back evenly' : '';
+  return `below ${readable(onsetThicknessM, 4)} m in ${readable(timescaleDays, 4)} d${back}`;
+}
+
+export function coastSpacingSummary(spacing: { longitudeDeg: number; latitudeDeg: number }): string {
+  return `${degrees(spacing.longitudeDeg)} × ${degrees(spacing.latitudeDeg)}`;
 }
 
 export function sectionSummary(section: Section): string {
