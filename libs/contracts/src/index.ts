@@ -1,4 +1,5 @@
 export * from './caution';
+export * from './convergence';
 export * from './experiments';
 export * from './field-errors';
 export * from './page';

@@ -27,6 +27,7 @@ export const ACTIONS = {
   'run.resume': 'resume a run',
   'run.extend': 'extend a run',
   'run.repeat': 'repeat a run',
+  'run.refine': 'queue a run at other resolutions',
   'run.delete': 'delete a run',
   'run.compare': 'put two runs side by side',
   'events.watch': 'watch what happens',
@@ -76,8 +77,8 @@ export const POLICY_TABLE: readonly PolicyRow[] = [
   ['run.list',          'signed in', 'any', 'any'],
   ['run.read',          'signed in', 'any', 'any'],
   ['run.compare',       'signed in', 'any', 'any'],
-  ['events.watch',      'signed in', 'any', 'any'],
   ['run.export',        'signed in', 'any', 'any'],
+  ['events.watch',      'signed in', 'any', 'any'],
 
   // Doing the work is for modellers, on what is theirs.
   ['experiment.create', 'modeller',  'any', 'any'],
@@ -87,6 +88,7 @@ export const POLICY_TABLE: readonly PolicyRow[] = [
   ['run.resume',        'modeller',  'own', ['stopped', 'failed']],
   ['run.extend',        'modeller',  'own', ['finished']],
   ['run.repeat',        'modeller',  'own', ['finished', 'stopped', 'failed']],
+  ['run.refine',        'modeller',  'own', ['finished']],
   ['run.delete',        'modeller',  'own', ['queued', 'stopped', 'failed', 'finished']],
 
   // Keeping house is for admins.

@@ -4,6 +4,7 @@ import { RunFileCache, type DeskDatabase } from '@halfdeep/store';
 import { filter, map } from 'rxjs';
 import { AdminQueueService } from '../admin-queue/admin-queue-service';
 import { type AuditTrail } from '../audit/audit-trail';
+import { ConvergenceService } from '../convergence/convergence-service';
 import { DeskService } from '../desk/desk-service';
 import { EventHub } from '../events/event-hub';
 import { WatermarkWatch } from '../events/watermark-watch';
@@ -39,6 +40,7 @@ export interface RunServices {
   experiments: ExperimentService;
   slices: SliceService;
   sideBySide: SideBySideService;
+  convergence: ConvergenceService;
   events: EventHub;
   deskService: DeskService;
   adminQueue: AdminQueueService;
@@ -62,6 +64,8 @@ export function composeRuns({ desk, audit, varFolder, failed, worker, checkpoint
   const files = new RunFileCache();
   const machine = new Machine(varFolder);
   const check = new SetupCheck(machine);
+  const runs = new RunService({ desk, audit, ledger, queue, files, check, varDir: varFolder });
+  const slices = new SliceService(files, varFolder);
   const watermarks = new WatermarkWatch({
     queue,
     files,
@@ -78,11 +82,12 @@ export function composeRuns({ desk, audit, varFolder, failed, worker, checkpoint
     queue,
     machine,
     check,
-    runs: new RunService({ desk, audit, ledger, queue, files, check, varDir: varFolder }),
+    runs,
     exports: new RunExports(varFolder),
     experiments: new ExperimentService(desk),
-    slices: new SliceService(files, varFolder),
+    slices,
     sideBySide: new SideBySideService(files, varFolder),
+    convergence: new ConvergenceService({ runs, check, slices }),
     events: new EventHub(queue, watermarks),
     deskService: new DeskService(desk, queue, machine),
     adminQueue: new AdminQueueService({ queue, ledger, desk, audit }),

@@ -2,6 +2,7 @@ import { type Router } from 'express';
 import { type Observable } from 'rxjs';
 import { type AccessRevoked } from '../accounts/session-service';
 import { adminQueueRoutes } from '../admin-queue/admin-queue-routes';
+import { convergenceRoutes } from '../convergence/convergence-routes';
 import { deskRoutes } from '../desk/desk-routes';
 import { eventRoutes } from '../events/event-routes';
 import { experimentRoutes } from '../experiments/experiment-routes';
@@ -16,6 +17,7 @@ export function runFeatureRoutes(services: RunServices, accessRevoked$: Observab
   return [
     experimentRoutes(services),
     runRoutes(services),
+    convergenceRoutes(services),
     sliceRoutes(services),
     sideBySideRoutes(services),
     eventRoutes({ events: services.events, accessRevoked$, failed: (error) => services.failed('event stream', error) }),

@@ -47,6 +47,8 @@ interface Draft {
   parent: Run | null;
   descent: Descent;
   changes: SetupChange[];
+  /** Written in the transaction that makes the row. */
+  also?: (id: string, transaction: Transaction) => Promise<void>;
   /** Id of the run whose start state is taken, when it has one. */
   repeatOf?: string;
 }
@@ -136,6 +138,25 @@ export class RunService {
       descent: 'sensitivity',
       changes: [],
       repeatOf: original.id,
+    });
+  }
+
+  /**
+   * Queues a sensitivity run of another run in its own experiment; preflight has admitted the setup. `also` writes what
+   * belongs to it in the same transaction: when that fails, nothing is kept.
+   */
+  async derive(
+    parent: Run,
+    input: { label: string; setup: Setup; preflight: Preflight },
+    also?: (id: string, transaction: Transaction) => Promise<void>,
+  ): Promise<Run> {
+    const changes = diffSetups(parent.setup, input.setup);
+    return this.queueDraft(parent.experimentId, parent.ownerId, {
+      ...input,
+      parent,
+      descent: 'sensitivity',
+      changes,
+      also,
     });
   }
 
@@ -235,6 +256,7 @@ export class RunService {
           },
           { transaction },
         );
+        await draft.also?.(id, transaction);
       });
     } catch (error) {
       await deleteRunFiles(runPaths(varDir, id));

@@ -90,7 +90,7 @@ describe('richardson', () => {
     [[1, 2, 4], 'order out of range', -1, /changes the value more than the first \(observed order −1\.00\)/],
     [[1, 2, 2], 'order out of range', null, /changes nothing that the first one changed/],
     [[2, 2, 3], 'order out of range', null, /changes what the first one left alone/],
-    [[2, 2, 2], 'equal', null, /same value/],
+    [[2, 2, 2], 'equal', null, /three grids agree/],
   ] as const)('%j: %s', (values, verdict, order, words) => {
     const found = richardson(...(values as unknown as [number, number, number]), 2);
     expect(found.verdict).toBe(verdict);

@@ -49,7 +49,7 @@ export function richardson(
   const second = medium - fine;
   const moves = (difference: number) => Math.abs(difference) > small;
   if (!moves(first) && !moves(second))
-    return nothing('equal', null, 'The three grids give the same value; there is nothing to extrapolate.');
+    return nothing('equal', null, 'The three grids agree; there is nothing to extrapolate.');
   if (moves(first) && moves(second) && first > 0 !== second > 0)
     return nothing(
       'not monotone',
