@@ -72,6 +72,106 @@ describe('mid-latitude and f-plane', () => {
   });
 });
 
+describe('spherical band', () => {
+  const a = 6.371e6;
+  const radians = Math.PI / 180;
+  const near = (value: number, expected: number) => expect(Math.abs(value / expected - 1)).toBeLessThan(1e-14);
+  it('has dx = a cos φ Δλ at its own rows of cells and of corners, dy = a Δφ', () => {
+    const grid = gridOf({ geometry: 'spherical', southDeg: 20, northDeg: 60 });
+    near(grid.dy, a * 0.5 * radians);
+    grid.dxC.forEach((dx, j) => near(dx, a * Math.cos(grid.latCentre[j] * radians) * 0.5 * radians));
+    grid.dxV.forEach((dx, j) => near(dx, a * Math.cos(grid.latFace[j] * radians) * 0.5 * radians));
+    // The area of a band is 2π a² (sin φN − sin φS) of a whole sphere: the midpoint rule is second order.
+    const area = grid.dxC.reduce((sum, dx) => sum + dx * grid.dy * grid.nx, 0);
+    const exact = (20 * radians) * a * a * (Math.sin(60 * radians) - Math.sin(20 * radians)); // prettier-ignore
+    expect(Math.abs(area / exact - 1)).toBeLessThan((0.5 * radians) ** 2 / 23);
+  });
+  it('has f = 2Ω sin φ, exactly 0 on the equator and antisymmetric about it', () => {
+    const grid = gridOf({ geometry: 'spherical', southDeg: -30.3, northDeg: 40 });
+    const row = grid.equatorRow ?? -1;
+    expect([grid.latFace[row], grid.f[row]]).toEqual([0, 0]);
+    for (let k = 1; k <= Math.min(row, grid.ny - row); k++) expect(grid.f[row + k]).toBe(-grid.f[row - k]);
+    grid.f.forEach((f, j) => {
+      if (j !== row) near(f, 2 * 7.2921e-5 * Math.sin(grid.latFace[j] * radians));
+    });
+    expect(grid.notes[0]).toMatch(/South edge moved .* so that the equator lies on a row of v points/);
+  });
+  it('does not use a reference latitude, f0 or β set by hand', () => {
+    const plain = gridOf({ geometry: 'spherical', southDeg: 20, northDeg: 60 });
+    const set = gridOf({ geometry: 'spherical', southDeg: 20, northDeg: 60, referenceLatitudeDeg: 5, f0PerS: 1e-4, betaPerMS: 1e-12 }); // prettier-ignore
+    expect(set).toEqual(plain);
+    near(plain.beta, ((2 * 7.2921e-5) / a) * Math.cos(40 * radians));
+  });
+  it('goes all the way round, to 80° either side', () => {
+    const whole = { geometry: 'spherical', westDeg: 0, eastDeg: 360, southDeg: -80, northDeg: 80 } as const;
+    const grid = gridOf({ ...whole, zonallyPeriodic: true }, 1);
+    expect([grid.nx, grid.ny, grid.periodic, grid.equatorRow, grid.notes]).toEqual([360, 160, true, 80, []]);
+    expect(isWet(grid, -1, 3)).toBe(true);
+  });
+  it('refuses a spacing that is too small at its highest latitude', () => {
+    expect(() => gridOf({ geometry: 'spherical', eastDeg: 1, southDeg: 78, northDeg: 80 }, 0.01)).toThrow(
+      /zonal grid spacing must be between 0.5 and 600 km; 0.1931 km arrived/,
+    );
+  });
+});
+
+describe('the grid of the coast', () => {
+  const isle: [number, number][] = [[5.2, -2.3], [9.1, -1.2], [8.3, 2.4], [6.1, 1.7]]; // prettier-ignore
+  const land: Partial<Basin> = {
+    westernCoast: { kind: 'slanting', atSouthDeg: 0, atNorthDeg: 3 },
+    islands: [{ kind: 'polygon', name: '', points: isle }],
+  };
+  const with2 = (basin: Partial<Basin>, spacing: number, coast: number | null) =>
+    gridOf({ ...land, ...basin, coastSpacing: coast && { longitudeDeg: coast, latitudeDeg: coast } }, spacing);
+  it.each([2, 3])('divides each land cell of a grid %i times as coarse', (factor) => {
+    const coarse = with2({}, 0.5, null);
+    const fine = with2({}, 0.5 / factor, 0.5);
+    expect(fine.notes).toEqual([]);
+    for (let j = 0; j < fine.ny; j++)
+      for (let i = 0; i < fine.nx; i++)
+        expect(fine.mask[j * fine.nx + i]).toBe(
+          coarse.mask[Math.floor(j / factor) * coarse.nx + Math.floor(i / factor)],
+        );
+    expect(fine.wetCells).toBe(coarse.wetCells * factor * factor);
+    expect(fine.mask).not.toEqual(with2({}, 0.5 / factor, null).mask);
+  });
+  it('makes a cell land when at least half of the finer cells in it are', () => {
+    const fine = with2({}, 0.25, null);
+    const coarse = with2({}, 0.5, 0.25);
+    let halves = 0;
+    for (let j = 0; j < coarse.ny; j++)
+      for (let i = 0; i < coarse.nx; i++) {
+        const four = [0, 1, fine.nx, fine.nx + 1].map((k) => fine.mask[2 * j * fine.nx + 2 * i + k]);
+        const dry = four.filter((wet) => wet === 0).length;
+        expect(coarse.mask[j * coarse.nx + i]).toBe(dry >= 2 ? 0 : 1);
+        if (dry === 2) halves++;
+      }
+    expect(halves).toBeGreaterThan(0);
+  });
+  it('is the own one where the spacings are alike, and may differ by axis', () => {
+    expect(with2({}, 0.5, 0.5).mask).toEqual(with2({}, 0.5, null).mask);
+    const mixed = gridOf({ ...land, coastSpacing: { longitudeDeg: 1, latitudeDeg: 0.25 } }, 0.5);
+    const raster = buildGrid({
+      ...base,
+      basin: { ...base.basin, ...land },
+      numerics: { ...base.numerics, spacingLongitudeDeg: 1, spacingLatitudeDeg: 0.25 },
+    });
+    for (let j = 0; j < mixed.ny; j++)
+      for (let i = 0; i < mixed.nx; i++) {
+        const x = Math.floor(i / 2);
+        const wet = raster.mask[2 * j * raster.nx + x] + raster.mask[(2 * j + 1) * raster.nx + x];
+        expect(mixed.mask[j * mixed.nx + i]).toBe(wet === 2 ? 1 : 0);
+      }
+  });
+  it('says when the two do not nest, and refuses too many cells', () => {
+    const uneven = with2({ eastDeg: 20.5 }, 0.5, 1);
+    expect(uneven.notes).toEqual([
+      'The coast’s grid of 21 × 16 cells does not divide the run’s 41 × 32 evenly; each cell takes the land at its place.',
+    ]);
+    expect(() => with2({}, 0.5, 0.005)).toThrow(/grid of the coast has at most 4000000 cells; .* 4000 × 3200/);
+  });
+});
+
 describe('land', () => {
   it('lies west of a slanting coast, by cell centres', () => {
     const grid = buildGrid(corvaneForCheck());
