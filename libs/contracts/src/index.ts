@@ -9,3 +9,4 @@ export * from './problem';
 export * from './runs';
 export * from './setup-bundle';
 export * from './setup-schema';
+export * from './verification-report';
