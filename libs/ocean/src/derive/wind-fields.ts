@@ -1,23 +1,26 @@
 import { evaluatePattern, variesZonally } from '../forcing/pattern';
 import { seasonFactor } from '../forcing/season';
-import { planeOf } from '../grid/build-grid';
+import { windTaper } from '../forcing/sponges';
 import type { Grid } from '../grid/grid';
+import { betaAt, coriolisAt, zonalShrink } from '../grid/plane';
 import type { Setup } from '../setup';
 import type { Box } from './window';
 
 type Component = 'taux' | 'tauy';
 
-/** Stress of a setup's wind on one latitude at a day: at(longitudeDeg), N/m². */
+/** Stress of a setup's wind on one latitude at a day, as sponges leave it: at(longitudeDeg), N/m². */
 export function stressAlong(
   setup: Setup,
   latitudeDeg: number,
   day: number,
 ): (lon: number) => Record<Component, number> {
   const radius = setup.constants.earthRadiusM;
+  const taper = windTaper(setup.basin);
+  const share = taper && !taper.variesZonally ? taper.at(0, latitudeDeg) : 1;
   const even = { taux: 0, tauy: 0 };
   const uneven: { factor: number; pattern: Setup['wind']['components'][number]['pattern'] }[] = [];
   for (const { pattern, season } of setup.wind.components) {
-    const factor = seasonFactor(season, day, setup.wind.seasonalStrength);
+    const factor = share * seasonFactor(season, day, setup.wind.seasonalStrength);
     if (factor === 0) continue;
     if (variesZonally(pattern)) {
       uneven.push({ factor, pattern });
@@ -27,7 +30,7 @@ export function stressAlong(
     even.taux += factor * stress.taux;
     even.tauy += factor * stress.tauy;
   }
-  if (uneven.length === 0) return () => even;
+  if (uneven.length === 0 && !taper?.variesZonally) return () => even;
   return (longitudeDeg) => {
     const total = { ...even };
     for (const { factor, pattern } of uneven) {
@@ -35,7 +38,8 @@ export function stressAlong(
       total.taux += factor * stress.taux;
       total.tauy += factor * stress.tauy;
     }
-    return total;
+    const left = taper?.variesZonally ? taper.at(longitudeDeg, latitudeDeg) : 1;
+    return { taux: left * total.taux, tauy: left * total.tauy };
   };
 }
 
@@ -58,22 +62,23 @@ export function fillStress(
 
 /**
  * Ekman pumping [∂x(τy/f) − ∂y(τx/f)]/ρ0 at the cell centres of a box, m/s, upward positive, by differences over two cells;
- * NaN on land and within L_eq = √(c/β) of the equator, where division by f is meaningless (numerics.md §12).
+ * on a sphere ∂y(cos φ τx/f)/cos φ. NaN on land and within L_eq = √(c/β) of the equator, where division by f is meaningless (numerics.md §12).
  */
 export function fillEkmanPumping(grid: Grid, setup: Setup, day: number, box: Box, out: Float32Array): void {
-  const { beta, f0, referenceDeg } = planeOf(setup);
   const c = Math.sqrt(setup.layer.reducedGravityMS2 * setup.layer.restThicknessM);
-  const nearest = beta > 0 ? Math.sqrt(c / beta) : 0;
-  const metresPerDegree = (setup.constants.earthRadiusM * Math.PI) / 180;
+  const nearest = grid.beta > 0 ? Math.sqrt(c / grid.beta) : 0;
   const dLat = grid.latFace[1] - grid.latFace[0];
   const dLon = grid.lonFace[1] - grid.lonFace[0];
-  const f = (latitudeDeg: number) => f0 + beta * (latitudeDeg - referenceDeg) * metresPerDegree;
+  const f = coriolisAt(setup);
+  const beta = betaAt(setup);
+  const shrink = zonalShrink(setup);
   const perDensity = 1 / setup.constants.densityKgM3;
   let k = 0;
   for (let j = box.j0; j < box.j1; j++) {
     const latitude = grid.latCentre[j];
     const [fSouth, fHere, fNorth] = [f(latitude - dLat), f(latitude), f(latitude + dLat)];
-    const meaningless = fSouth * fNorth <= 0 || (beta > 0 && Math.abs(fHere) < beta * nearest);
+    const meaningless = fSouth * fNorth <= 0 || Math.abs(fHere) < beta(latitude) * nearest;
+    const [toSouth, toNorth] = [-dLat, dLat].map((away) => shrink(latitude + away) / shrink(latitude));
     const south = stressAlong(setup, latitude - dLat, day);
     const here = stressAlong(setup, latitude, day);
     const north = stressAlong(setup, latitude + dLat, day);
@@ -84,7 +89,8 @@ export function fillEkmanPumping(grid: Grid, setup: Setup, day: number, box: Box
       }
       const longitude = grid.lonCentre[i];
       const zonal = (here(longitude + dLon).tauy - here(longitude - dLon).tauy) / (2 * grid.dxC[j] * fHere);
-      const meridional = (north(longitude).taux / fNorth - south(longitude).taux / fSouth) / (2 * grid.dy);
+      const meridional =
+        ((toNorth * north(longitude).taux) / fNorth - (toSouth * south(longitude).taux) / fSouth) / (2 * grid.dy);
       out[k++] = (zonal - meridional) * perDensity;
     }
   }

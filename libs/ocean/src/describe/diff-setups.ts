@@ -125,7 +125,7 @@ function summary(value: JsonObject, pointer: string): string {
   if (pattern === '/start') return summaries.startSummary(value as never);
   if (pattern === '/layer/entrainment') return summaries.entrainmentSummary(value as never);
   if (pattern === '/basin/coastSpacing') return summaries.coastSpacingSummary(value as never);
-  return memberSummary(value as never, pattern.replace(/\/\*$/, ''));
+  return memberSummary(value, pattern.replace(/\/\*$/, ''));
 }
 
 function memberSummary(member: Member, list: string): string {

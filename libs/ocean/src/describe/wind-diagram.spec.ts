@@ -1,5 +1,7 @@
 import { expect, it } from 'vitest';
 import { stressAt } from '../forcing/season';
+import { deriveMap } from '../derive/derive';
+import { buildGrid } from '../grid/build-grid';
 import { corvaneSetup, steadyBelt, yearly } from '../presets/corvane';
 import { PRESETS } from '../presets/presets';
 import type { Setup, WindComponent } from '../setup';
@@ -82,4 +84,35 @@ it('gives the curl and pumping of a uniform and of a patchy wind on an f-plane',
   const middle = 70 * east.shape[1];
   expect(east.curl[middle] / curl).toBeCloseTo(1, 4);
   expect(east.pumping[middle] / (curl / 1025 / 1e-4)).toBeCloseTo(1, 4);
+});
+
+// On a sphere a uniform eastward stress pumps −(τ/(ρ0 a cos φ)) ∂φ(cos φ/(2Ω sin φ)) = τ/(2Ω ρ0 a cos φ sin² φ): the
+// derivative by hand, common practice.
+it('has the metric term of the sphere, in the diagram and on the map alike', () => {
+  const setup = withWind(corvaneSetup(), {
+    name: 'Uniform',
+    pattern: { kind: 'uniform', eastwardNM2: 0.1, northwardNM2: 0 },
+    season: {
+      mean: 1,
+      switchOnDays: 0,
+      annual: { amplitude: 0, peakDay: 0 },
+      semiannual: { amplitude: 0, peakDay: 0 },
+    },
+  });
+  Object.assign(setup.basin, {
+    geometry: 'spherical',
+    southDeg: 20,
+    northDeg: 60,
+    islands: [],
+    westernCoast: { kind: 'rectangular' },
+  });
+  const exact = (latitude: number) => {
+    const phi = (latitude * Math.PI) / 180;
+    return 0.1 / (2 * 7.2921e-5 * 1025 * 6.371e6 * Math.cos(phi) * Math.sin(phi) ** 2);
+  };
+  const { latDeg, pumping, shape } = windDiagram(setup);
+  latDeg.forEach((latitude, j) => expect(pumping[j * shape[1]] / exact(latitude)).toBeCloseTo(1, 5));
+  const grid = buildGrid(setup);
+  const map = deriveMap('ekmanPumping', grid, setup, { day: 0 }).data;
+  grid.latCentre.forEach((latitude, j) => expect(map[j * grid.nx] / exact(latitude)).toBeCloseTo(1, 3));
 });

@@ -1,6 +1,8 @@
 import { evaluatePattern } from '../forcing/pattern';
 import { DAYS_PER_YEAR, harmonic } from '../forcing/season';
+import { windTaper } from '../forcing/sponges';
 import { gridLayout, planeOf } from '../grid/build-grid';
+import { betaAt, coriolisAt, zonalShrink } from '../grid/plane';
 import { RADIANS_PER_DEGREE } from '../exact/elementary';
 import type { Season, Setup } from '../setup';
 
@@ -36,8 +38,9 @@ export interface WindDiagram {
 const DIFFERENCE_DEG = 1e-3;
 
 /**
- * Stress, its curl and its Ekman pumping along a meridian through the year, once every switch-on is over. On the setup's
- * plane: ∂/∂x at the scale of the plane's reference latitude, f = f0 + βy. A few milliseconds.
+ * Stress, its curl and its Ekman pumping along a meridian through the year, once every switch-on is over, as sponges leave
+ * it. On the setup's plane: ∂/∂x at the scale of the plane's reference latitude, f = f0 + βy; on a sphere with f = 2Ω sin φ
+ * and the curl's metric term. A few milliseconds.
  */
 export function windDiagram(setup: Setup, options: WindDiagramOptions = {}): WindDiagram {
   const { basin, constants, wind, layer } = setup;
@@ -67,17 +70,27 @@ export function windDiagram(setup: Setup, options: WindDiagramOptions = {}): Win
     pumping: field(),
     blankWithinDeg: plane.beta > 0 ? blank / metresPerDegree : null,
   };
+  const taper = windTaper(basin);
+  const coriolis = coriolisAt(setup);
+  const betaHere = betaAt(setup);
+  const shrink = zonalShrink(setup);
   for (let j = 0; j < rows; j++) {
+    const [toSouth, toNorth] = [-DIFFERENCE_DEG, DIFFERENCE_DEG].map((away) => shrink(latDeg[j] + away) / shrink(latDeg[j])); // prettier-ignore
     const parts = wind.components.map(({ pattern }) => {
-      const at = (dLon: number, dLat: number) =>
-        evaluatePattern(pattern, diagram.longitudeDeg + dLon, latDeg[j] + dLat, constants.earthRadiusM);
+      const at = (dLon: number, dLat: number) => {
+        const [longitude, latitude] = [diagram.longitudeDeg + dLon, latDeg[j] + dLat];
+        const { taux, tauy } = evaluatePattern(pattern, longitude, latitude, constants.earthRadiusM);
+        const left = taper ? taper.at(longitude, latitude) : 1;
+        return { taux: left * taux, tauy: left * tauy };
+      };
       const eastward = at(DIFFERENCE_DEG, 0).tauy - at(-DIFFERENCE_DEG, 0).tauy;
-      const northward = at(0, DIFFERENCE_DEG).taux - at(0, -DIFFERENCE_DEG).taux;
+      const northward = toNorth * at(0, DIFFERENCE_DEG).taux - toSouth * at(0, -DIFFERENCE_DEG).taux;
       const width = 2 * DIFFERENCE_DEG * metresPerDegree;
-      return { ...at(0, 0), curl: eastward / (width * plane.cosReference) - northward / width };
+      return { ...at(0, 0), curl: eastward / (width * shrink(latDeg[j])) - northward / width };
     });
-    const f = plane.f0 + plane.beta * (latDeg[j] - plane.referenceDeg) * metresPerDegree;
-    const blanked = f === 0 || Math.abs(f) < plane.beta * blank;
+    const f = coriolis(latDeg[j]);
+    const beta = betaHere(latDeg[j]);
+    const blanked = f === 0 || Math.abs(f) < beta * blank;
     for (let k = 0; k < columns; k++) {
       let [taux, tauy, curl] = [0, 0, 0];
       parts.forEach((part, index) => {
@@ -90,7 +103,7 @@ export function windDiagram(setup: Setup, options: WindDiagramOptions = {}): Win
       diagram.tauy[cell] = tauy;
       diagram.curl[cell] = curl;
       // curl(τ/f) = curl τ/f + β τx/f².
-      diagram.pumping[cell] = blanked ? NaN : (curl / f + (plane.beta * taux) / (f * f)) / constants.densityKgM3;
+      diagram.pumping[cell] = blanked ? NaN : (curl / f + (beta * taux) / (f * f)) / constants.densityKgM3;
     }
   }
   return diagram;

@@ -1,6 +1,5 @@
 import { describe, expect, it } from 'vitest';
 import { buildGrid } from '../grid/build-grid';
-import { padded } from '../grid/grid';
 import type { Setup, WindPattern } from '../setup';
 import { smallSetup } from '../testing/setups';
 import { windForcing } from './forcing';
@@ -79,14 +78,14 @@ describe('forcing of a setup', () => {
     const forcing = windForcing(of, grid);
     const factors = new Float64Array(forcing.bases.length);
     forcing.factors(step, factors);
-    const k = padded(grid, i, j);
     return {
       taux: forcing.bases.reduce(
-        (sum, basis, b) => sum + factors[b] * ((basis.tauxRow?.[j] ?? 0) + (basis.tauxField?.[k] ?? 0)),
+        (sum, basis, b) =>
+          sum + factors[b] * ((basis.tauxRow?.[j] ?? 0) + (basis.tauxField?.[j * (grid.nx + 1) + i] ?? 0)),
         0,
       ),
       tauy: forcing.bases.reduce(
-        (sum, basis, b) => sum + factors[b] * ((basis.tauyRow?.[j] ?? 0) + (basis.tauyField?.[k] ?? 0)),
+        (sum, basis, b) => sum + factors[b] * ((basis.tauyRow?.[j] ?? 0) + (basis.tauyField?.[j * grid.nx + i] ?? 0)),
         0,
       ),
     };
@@ -108,6 +107,29 @@ describe('forcing of a setup', () => {
           expect(found.tauy).toBeCloseTo(stressAt(strong, grid.lonCentre[i], grid.latFace[j], day).tauy, 12);
       }
     }
+  });
+  it.each([
+    ['north', true],
+    ['east', false],
+  ] as const)('falls to nothing inside a sponge at the %s edge, and stays as it was outside', (edge, byRows) => {
+    const sponge = { edge, widthDeg: 4, peakRatePerS: null, tapersWind: true };
+    const tapered: Setup = { ...strong, basin: { ...strong.basin, sponges: [sponge] } };
+    expect(windForcing(tapered, grid).bases[0].tauxRow !== null).toBe(byRows);
+    for (const [i, j] of [
+      [13, 18], // outside
+      [37, 28],
+      [40, 31],
+    ] as const) {
+      const found = stressOf(tapered, 60, i, j);
+      const day = 60.5 / 12;
+      expect(found.taux).toBeCloseTo(stressAt(tapered, grid.lonFace[i], grid.latCentre[j], day).taux, 12);
+      const before = stressOf(strong, 60, i, j);
+      const s = Math.max(0, edge === 'north' ? (grid.latCentre[j] - 4) / 4 : (grid.lonFace[i] - 16) / 4);
+      expect(found.taux).toBeCloseTo(before.taux * Math.cos((Math.PI / 2) * s) ** 2, 15);
+      if (s === 0) expect(found).toEqual(before);
+    }
+    const kept = { ...strong, basin: { ...strong.basin, sponges: [{ ...sponge, tapersWind: false }] } };
+    expect(windForcing(kept, grid).bases).toEqual(windForcing(strong, grid).bases);
   });
   it('repeats from year to year to the last bit', () => {
     const steady = structuredClone(setup);

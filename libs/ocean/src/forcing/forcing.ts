@@ -1,20 +1,21 @@
-import { padded, paddedLength, type Grid } from '../grid/grid';
+import type { Grid } from '../grid/grid';
 import { variesZonally, evaluatePattern } from './pattern';
 import { DAYS_PER_YEAR, harmonic, ramp } from './season';
-import type { Setup } from '../setup';
+import { windTaper, type WindTaper } from './sponges';
+import type { Setup, WindPattern } from '../setup';
 
 /**
  * One fixed distribution of stress; the wind at a moment is the sum of all of them, each times its factor. What does
- * not depend on longitude is kept as one number a row; the rest as padded fields. N/m²; null where there is none.
+ * not depend on longitude is kept as one number a row; the rest as fields. N/m²; null where there is none.
  */
 export interface ForcingBasis {
   /** [ny], at u rows. */
   tauxRow: Float64Array | null;
   /** [ny + 1], at v rows. */
   tauyRow: Float64Array | null;
-  /** Padded, at u points. */
+  /** [ny][nx + 1], at u points. */
   tauxField: Float64Array | null;
-  /** Padded, at v points. */
+  /** [ny + 1][nx], at v points. */
   tauyField: Float64Array | null;
 }
 
@@ -36,9 +37,9 @@ interface TimeFunction {
  * Forcing of a setup on its grid: the components are grouped by distinct time function (steady, each switch-on, each
  * peak day of the annual and of the semiannual harmonic), so that a step costs one factor a group however many
  * components there are. The phase of the season comes from whole steps: ((step mod 365 n) + ½)/(365 n), n steps a day,
- * so years repeat exactly. Throws RangeError naming the component whose stress is not finite.
+ * so years repeat exactly. Inside sponges that taper it the wind falls to 0. Throws RangeError naming the component whose stress is not finite.
  */
-export function windForcing(setup: Pick<Setup, 'wind' | 'constants' | 'numerics'>, grid: Grid): Forcing {
+export function windForcing(setup: Pick<Setup, 'basin' | 'wind' | 'constants' | 'numerics'>, grid: Grid): Forcing {
   const functions: TimeFunction[] = [];
   const bases: ForcingBasis[] = [];
   const baseOf = (fn: TimeFunction): ForcingBasis => {
@@ -49,6 +50,7 @@ export function windForcing(setup: Pick<Setup, 'wind' | 'constants' | 'numerics'
     return bases[bases.length - 1];
   };
   const strength = setup.wind.seasonalStrength;
+  const taper = windTaper(setup.basin);
   setup.wind.components.forEach((component, index) => {
     const { season } = component;
     const parts: [number, TimeFunction][] = [
@@ -58,7 +60,7 @@ export function windForcing(setup: Pick<Setup, 'wind' | 'constants' | 'numerics'
     ];
     for (const [amplitude, fn] of parts) {
       if (!Number.isFinite(amplitude)) refuseComponent(component.name, index, amplitude);
-      if (amplitude !== 0) addPattern(setup, grid, index, amplitude, baseOf(fn));
+      if (amplitude !== 0) addPattern(setup, grid, index, amplitude, baseOf(fn), taper);
     }
   });
   const n = setup.numerics.stepsPerDay;
@@ -88,39 +90,44 @@ function addPattern(
   index: number,
   amplitude: number,
   basis: ForcingBasis,
+  taper: WindTaper | null,
 ): void {
   const { pattern, name } = setup.wind.components[index];
   const radius = setup.constants.earthRadiusM;
-  const check = (stress: number) => {
+  const at = (longitude: number, latitude: number, component: 'taux' | 'tauy') => {
+    const stress = evaluatePattern(pattern, longitude, latitude, radius)[component];
     if (!Number.isFinite(stress)) refuseComponent(name, index, stress);
-    return stress;
+    return amplitude * (taper ? taper.at(longitude, latitude) * stress : stress);
   };
-  const { nx, ny } = grid;
-  if (!variesZonally(pattern)) {
+  const { nx, ny, lonFace, lonCentre, latFace, latCentre } = grid;
+  if (!variesZonally(pattern) && !taper?.variesZonally) {
     const rowsX = (basis.tauxRow ??= new Float64Array(ny));
     const rowsY = (basis.tauyRow ??= new Float64Array(ny + 1));
-    for (let j = 0; j < ny; j++)
-      rowsX[j] += amplitude * check(evaluatePattern(pattern, grid.lonFace[0], grid.latCentre[j], radius).taux);
-    for (let j = 0; j <= ny; j++)
-      rowsY[j] += amplitude * check(evaluatePattern(pattern, grid.lonCentre[0], grid.latFace[j], radius).tauy);
+    for (let j = 0; j < ny; j++) rowsX[j] += at(lonFace[0], latCentre[j], 'taux');
+    for (let j = 0; j <= ny; j++) rowsY[j] += at(lonCentre[0], latFace[j], 'tauy');
     if (rowsX.every((value) => value === 0)) basis.tauxRow = null;
     if (rowsY.every((value) => value === 0)) basis.tauyRow = null;
     return;
   }
-  const eastward = pattern.kind === 'gaussianPatch' && pattern.direction === 'eastward';
+  const { eastward, northward } = directionsOf(pattern);
   if (eastward) {
-    const field = (basis.tauxField ??= new Float64Array(paddedLength(grid)));
-    for (let j = 0; j < ny; j++)
-      for (let i = 0; i <= nx; i++)
-        field[padded(grid, i, j)] +=
-          amplitude * check(evaluatePattern(pattern, grid.lonFace[i], grid.latCentre[j], radius).taux);
-    return;
+    const field = (basis.tauxField ??= new Float64Array(ny * (nx + 1)));
+    for (let j = 0, k = 0; j < ny; j++)
+      for (let i = 0; i <= nx; i++) field[k++] += at(lonFace[i], latCentre[j], 'taux');
   }
-  const field = (basis.tauyField ??= new Float64Array(paddedLength(grid)));
-  for (let j = 0; j <= ny; j++)
-    for (let i = 0; i < nx; i++)
-      field[padded(grid, i, j)] +=
-        amplitude * check(evaluatePattern(pattern, grid.lonCentre[i], grid.latFace[j], radius).tauy);
+  if (northward) {
+    const field = (basis.tauyField ??= new Float64Array((ny + 1) * nx));
+    for (let j = 0, k = 0; j <= ny; j++)
+      for (let i = 0; i < nx; i++) field[k++] += at(lonCentre[i], latFace[j], 'tauy');
+  }
+}
+
+/** Which components a pattern has. */
+function directionsOf(pattern: WindPattern): { eastward: boolean; northward: boolean } {
+  if (pattern.kind === 'linearShear') return { eastward: true, northward: false };
+  if (pattern.kind === 'uniform') return { eastward: pattern.eastwardNM2 !== 0, northward: pattern.northwardNM2 !== 0 };
+  const eastward = pattern.direction === 'eastward';
+  return { eastward, northward: !eastward };
 }
 
 function refuseComponent(name: string, index: number, value: number): never {
@@ -144,17 +151,18 @@ export function forcingFromFunctions(
     factor?: (step: number) => number;
   }[],
 ): Forcing {
+  const { nx, ny } = grid;
   const bases = parts.map(({ taux, tauy }): ForcingBasis => {
     const basis: ForcingBasis = { tauxRow: null, tauyRow: null, tauxField: null, tauyField: null };
     if (taux) {
-      const field = (basis.tauxField = new Float64Array(paddedLength(grid)));
-      for (let j = 0; j < grid.ny; j++)
-        for (let i = 0; i <= grid.nx; i++) field[padded(grid, i, j)] = taux(grid.xFace[i], grid.yCentre[j]);
+      const field = (basis.tauxField = new Float64Array(ny * (nx + 1)));
+      for (let j = 0; j < ny; j++)
+        for (let i = 0; i <= nx; i++) field[j * (nx + 1) + i] = taux(grid.xFace[i], grid.yCentre[j]);
     }
     if (tauy) {
-      const field = (basis.tauyField = new Float64Array(paddedLength(grid)));
-      for (let j = 0; j <= grid.ny; j++)
-        for (let i = 0; i < grid.nx; i++) field[padded(grid, i, j)] = tauy(grid.xCentre[i], grid.yFace[j]);
+      const field = (basis.tauyField = new Float64Array((ny + 1) * nx));
+      for (let j = 0; j <= ny; j++)
+        for (let i = 0; i < nx; i++) field[j * nx + i] = tauy(grid.xCentre[i], grid.yFace[j]);
     }
     return basis;
   });

@@ -1,6 +1,7 @@
 import { cos, sin } from '../exact/elementary';
-import type { Season, Setup, Wind } from '../setup';
+import type { Basin, Season, Setup, Wind } from '../setup';
 import { evaluatePattern, type Stress } from './pattern';
+import { windTaper } from './sponges';
 
 /** Days of the model year (CF calendar `365_day`). */
 export const DAYS_PER_YEAR = 365;
@@ -34,9 +35,9 @@ export function seasonFactor(season: Season, day: number, seasonalStrength: numb
   );
 }
 
-/** Stress of the whole wind of a setup at a place and model day, N/m². */
+/** Stress of the whole wind of a setup at a place and model day, as sponges leave it, N/m². */
 export function stressAt(
-  setup: { wind: Wind; constants: Pick<Setup['constants'], 'earthRadiusM'> },
+  setup: { wind: Wind; basin: Basin; constants: Pick<Setup['constants'], 'earthRadiusM'> },
   longitudeDeg: number,
   latitudeDeg: number,
   day: number,
@@ -48,5 +49,6 @@ export function stressAt(
     total.taux += factor * stress.taux;
     total.tauy += factor * stress.tauy;
   }
-  return total;
+  const left = windTaper(setup.basin)?.at(longitudeDeg, latitudeDeg) ?? 1;
+  return { taux: left * total.taux, tauy: left * total.tauy };
 }

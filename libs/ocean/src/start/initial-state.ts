@@ -1,9 +1,16 @@
 import { exp } from '../exact/elementary';
 import { planeOf } from '../grid/build-grid';
 import type { Grid } from '../grid/grid';
-import type { Setup, Start } from '../setup';
+import type { Geometry, Setup, Start } from '../setup';
 import type { InitialValues } from '../stepper/model';
 import { waveMode } from './wave-mode';
+
+const BASINS: Record<Geometry, string> = {
+  equatorial: 'an equatorial plane',
+  midlatitude: 'a mid-latitude plane',
+  fplane: 'an f-plane',
+  spherical: 'a spherical band',
+};
 
 /**
  * Values of an analytic start on the points of a grid. A start from another run's state is `stateFrom`'s.
@@ -31,7 +38,7 @@ export function analyticStart(setup: Setup, grid: Grid, start: Exclude<Start, { 
     case 'mode': {
       if (setup.basin.geometry !== 'equatorial')
         throw new RangeError(
-          `A wave mode can start on an equatorial plane only; the basin is a ${setup.basin.geometry} plane. Choose another start.`,
+          `A wave mode can start on an equatorial plane only; the basin is ${BASINS[setup.basin.geometry]}. Choose another start.`,
         );
       const metresPerDegree = (setup.constants.earthRadiusM * Math.PI) / 180;
       const H = setup.layer.restThicknessM;

@@ -85,7 +85,9 @@ describe('analytic starts', () => {
     const start: Start = { kind: 'mode', mode: 'kelvin', amplitudeM: 1, wavelengthDeg: 10, crestLongitudeDeg: 5 };
     const basin = { ...base.basin, geometry: 'fplane', southDeg: 20, northDeg: 30 } as const;
     const output = { ...base.output, sections: [], moorings: [] };
-    expect(() => startWith(start, { basin, output })).toThrow(/equatorial plane only; the basin is a fplane/);
+    expect(() => startWith(start, { basin, output })).toThrow(/equatorial plane only; the basin is an f-plane/);
+    const sphere = { ...basin, geometry: 'spherical' } as const;
+    expect(() => startWith(start, { basin: sphere, output })).toThrow(/the basin is a spherical band/);
   });
   it('a value that is not finite is refused', () => {
     expect(() => startWith({ kind: 'step', amplitudeM: NaN, latitudeDeg: 0 })).toThrow(/eta = NaN at a water point/);
