@@ -28,16 +28,25 @@ export function blankSetup(): Setup {
       zonallyPeriodic: false,
       westernCoast: { kind: 'rectangular' },
       islands: [],
+      sponges: [],
+      coastSpacing: null,
     },
     layer: {
       reducedGravityMS2: LIMITS.reducedGravity.default,
       restThicknessM: LIMITS.restThickness.default,
       dampingPerS: LIMITS.damping.default,
       temperatureStepK: LIMITS.temperatureStep.default,
+      minimumThicknessM: LIMITS.minimumThickness.default,
+      entrainment: null,
     },
-    wind: { components: [], seasonalStrength: LIMITS.seasonalStrength.default },
+    wind: { components: [], seasonalStrength: LIMITS.seasonalStrength.default, stressFloorM: 0 },
     start: { kind: 'rest' },
-    friction: { rayleighPerS: LIMITS.rayleigh.default, viscosityM2S: LIMITS.viscosity.default, slip: 'free' },
+    friction: {
+      rayleighPerS: LIMITS.rayleigh.default,
+      viscosityM2S: LIMITS.viscosity.default,
+      viscosityPatches: [],
+      slip: 'free',
+    },
     numerics: {
       equations: 'linear',
       spacingLongitudeDeg: LIMITS.spacing.default,
@@ -51,6 +60,8 @@ export function blankSetup(): Setup {
       frameIntervalDays: LIMITS.outputInterval.default,
       sectionIntervalDays: LIMITS.outputInterval.default,
       mooringIntervalDays: 1,
+      momentumBudget: false,
+      vorticityBudget: false,
     },
   };
 }
