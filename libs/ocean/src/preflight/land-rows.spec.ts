@@ -27,12 +27,13 @@ const basins: fc.Arbitrary<Setup> = fc
     islands: fc.array(fc.oneof(box, polygon), { maxLength: 4 }),
     slanting: fc.option(fc.tuple(degrees(-10, 70), degrees(-10, 70)), { nil: undefined }),
     periodic: fc.boolean(),
-    geometry: fc.constantFrom('equatorial' as const, 'midlatitude' as const),
+    geometry: fc.constantFrom('equatorial' as const, 'midlatitude' as const, 'spherical' as const),
     southDeg: degrees(-18, -1),
     spacingLatitudeDeg: degrees(0.4, 3),
     spacingLongitudeDeg: degrees(0.4, 3),
+    coast: fc.option(fc.tuple(fc.constantFrom(1, 2, 3, 1 / 2, 1 / 3), fc.constantFrom(1, 2, 3, 1 / 2, 1 / 3))),
   })
-  .map(({ islands, slanting, periodic, geometry, southDeg, ...spacings }) => {
+  .map(({ islands, slanting, periodic, geometry, southDeg, coast, ...spacings }) => {
     const setup = corvaneSetup();
     Object.assign(setup.numerics, spacings);
     Object.assign(setup.basin, {
@@ -40,6 +41,10 @@ const basins: fc.Arbitrary<Setup> = fc
       geometry,
       southDeg,
       zonallyPeriodic: periodic && !slanting,
+      coastSpacing: coast && {
+        longitudeDeg: spacings.spacingLongitudeDeg * coast[0],
+        latitudeDeg: spacings.spacingLatitudeDeg * coast[1],
+      },
       westernCoast: slanting
         ? { kind: 'slanting', atSouthDeg: slanting[0], atNorthDeg: slanting[1] }
         : { kind: 'rectangular' },
@@ -51,7 +56,7 @@ it('has the very cells of the core’s land mask, for any coast and islands', ()
   let compared = 0;
   fc.assert(
     fc.property(basins, (setup) => {
-      const land = new LandRows(setup.basin, gridLayout(setup));
+      const land = LandRows.of(setup, gridLayout(setup));
       if (land.wetCells() === 0) {
         expect(() => buildGrid(setup)).toThrow(RangeError);
         return;
@@ -70,7 +75,7 @@ it('has the very cells of the core’s land mask, for any coast and islands', ()
 it('finds water on the lines of sections, and moorings, where the core does', () => {
   fc.assert(
     fc.property(basins, degrees(0, 60), degrees(-17, 17), (setup, longitude, latitude) => {
-      const land = new LandRows(setup.basin, gridLayout(setup));
+      const land = LandRows.of(setup, gridLayout(setup));
       if (land.wetCells() === 0) return;
       const grid = buildGrid(setup);
       const wet = (i: number, j: number) => land.isWet(i, j);
@@ -96,7 +101,7 @@ it('finds the nearest water cell', () => {
   fc.assert(
     fc.property(basins, fc.nat(1000), fc.nat(1000), (setup, p, q) => {
       const layout = gridLayout(setup);
-      const land = new LandRows(setup.basin, layout);
+      const land = LandRows.of(setup, layout);
       const [i, j] = [p % layout.nx, q % layout.ny];
       const found = land.nearestWater(i, j, 2, 1);
       if (land.wetCells() === 0) {

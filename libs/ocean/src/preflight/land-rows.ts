@@ -1,7 +1,8 @@
 import { LIMITS } from '../limits';
+import { coastLayout, decidingCells } from '../grid/coast-grid';
+import type { GridLayout } from '../grid/grid-layout';
 import { coastLongitude } from '../grid/land';
-import type { GridLayout } from '../grid/build-grid';
-import type { Basin, Island } from '../setup';
+import type { Basin, Island, Setup } from '../setup';
 
 /** Rows of an oversize grid that are looked at. */
 const SAMPLED_ROWS = 500;
@@ -20,8 +21,8 @@ interface PlacedIsland {
 }
 
 /**
- * Land and water of a snapped grid, row by row as spans: the same cells as `landMask`, without an array of them.
- * A row costs one pass over the islands that it meets.
+ * Land and water of a snapped grid, row by row as spans: the same cells as `buildGrid` makes, without an array of them.
+ * A row costs one pass over the islands that it meets; where the coast has a finer grid of its own, one over its rows.
  */
 export class LandRows {
   readonly #basin: Basin;
@@ -32,8 +33,18 @@ export class LandRows {
   /** Land of the rows looked at so far: many moorings on land look at the same rows for the nearest water. */
   readonly #land = new Map<number, readonly Span[]>();
   #wet: number | null = null;
+  /** Where the coast has a grid of its own: its land, and which of its columns and rows decide about each cell here. */
+  readonly #coast: { land: LandRows; columns: DecidingCells; rows: DecidingCells } | null;
 
-  constructor(basin: Basin, layout: GridLayout) {
+  /** Of a setup, with the grid of its coast. */
+  static of(setup: Pick<Setup, 'basin' | 'numerics'>, layout: GridLayout): LandRows {
+    const coast = coastLayout(setup);
+    // One beyond the hard limit is refused by a row of its own; until then the run's grid stands for it.
+    return new LandRows(setup.basin, layout, coast && coast.nx * coast.ny <= LIMITS.cells.max ? coast : null);
+  }
+
+  /** `coast`: the grid on which coast and islands become land, where that is another. */
+  constructor(basin: Basin, layout: GridLayout, coast: GridLayout | null = null) {
     this.#basin = basin;
     this.#layout = layout;
     const { zonal, meridional } = layout;
@@ -46,8 +57,16 @@ export class LandRows {
     this.#rows = axisOf(row, layout.ny);
     this.#islands = basin.islands.map((island) => ({
       ...boundsOf(island),
-      crossings: island.kind === 'polygon' ? this.#crossingsOf(island.points) : null,
+      crossings: island.kind === 'polygon' && coast === null ? this.#crossingsOf(island.points) : null,
     }));
+    this.#coast =
+      coast && this.hasLand
+        ? {
+            land: new LandRows(basin, coast),
+            columns: decidingCells(zonal, coast.zonal),
+            rows: decidingCells(meridional, coast.meridional),
+          }
+        : null;
   }
 
   get hasLand(): boolean {
@@ -132,6 +151,7 @@ export class LandRows {
   /** Land or not of one cell, for walks along a column. */
   #isLand(i: number, j: number): boolean {
     if (!this.hasLand) return false;
+    if (this.#coast) return this.#landOf(j).some(([from, to]) => i >= from && i < to);
     const longitude = this.longitudeOf(i);
     const latitude = this.latitudeOf(j);
     if (this.#basin.westernCoast.kind === 'slanting' && longitude < coastLongitude(this.#basin, latitude)) return true;
@@ -148,6 +168,7 @@ export class LandRows {
   }
 
   #findLand(j: number): Span[] {
+    if (this.#coast) return this.#landFromCoast(this.#coast, j);
     const { nx } = this.#layout;
     const latitude = this.latitudeOf(j);
     const spans: Span[] = [];
@@ -162,6 +183,36 @@ export class LandRows {
           spans.push([Math.max(first, this.#firstNotWestOf(from)), Math.min(last, this.#firstNotWestOf(to))]);
     }
     return merged(spans.map(([from, to]): Span => [Math.max(0, from), Math.min(nx, to)]));
+  }
+
+  /** A cell is land when at least half of the cells of the coast's grid that decide about it are. */
+  #landFromCoast(coast: { land: LandRows; columns: DecidingCells; rows: DecidingCells }, j: number): Span[] {
+    const { nx } = this.#layout;
+    const { first, end } = coast.columns;
+    // Land cells of the coast in each column here: full columns by a difference, the ends of a span by themselves.
+    const counts = new Int32Array(nx);
+    const rises = new Int32Array(nx + 1);
+    for (let row = coast.rows.first[j]; row < coast.rows.end[j]; row++)
+      for (const [from, to] of coast.land.#landOf(row)) {
+        let i = firstEndingBeyond(end, from);
+        for (; i < nx && first[i] < from && first[i] < to; i++) counts[i] += Math.min(end[i], to) - from;
+        const full = i;
+        let last = Math.max(full, firstEndingBeyond(end, to));
+        rises[full] += 1;
+        rises[last] -= 1;
+        for (; last < nx && first[last] < to; last++) counts[last] += to - Math.max(first[last], from);
+      }
+    const rows = coast.rows.end[j] - coast.rows.first[j];
+    const spans: Span[] = [];
+    for (let i = 0, through = 0; i < nx; i++) {
+      through += rises[i];
+      const width = end[i] - first[i];
+      if (2 * (counts[i] + through * width) < rows * width) continue;
+      const open = spans[spans.length - 1];
+      if (open && open[1] === i) open[1] = i + 1;
+      else spans.push([i, i + 1]);
+    }
+    return spans;
   }
 
   /** Where the edges of a ring cross the rows of cell centres; each edge looks only at the rows that it spans. */
@@ -202,6 +253,19 @@ export class LandRows {
     const { start, spacing } = this.#layout.zonal;
     return Math.min(Math.max(Math.round((longitude - start) / spacing), 0), this.#layout.nx);
   }
+}
+
+type DecidingCells = ReturnType<typeof decidingCells>;
+
+/** First column whose deciding cells end beyond `cell`, by bisection. */
+function firstEndingBeyond(end: Int32Array, cell: number): number {
+  let [low, high] = [0, end.length];
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (end[middle] > cell) high = middle;
+    else low = middle + 1;
+  }
+  return low;
 }
 
 /** Stretches of longitude inside a ring along a row: between its crossings, two by two (even-odd rule). */
