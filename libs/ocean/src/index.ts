@@ -61,3 +61,4 @@ export {
   type RefinedSection,
 } from './convergence/refined-setup';
 export { transportMeasures, type TransportMeasures } from './convergence/transport-measures';
+export { sketchSetup, SKETCH_WORK, type Sketch } from './sketch/sketch-setup';

@@ -1,4 +1,5 @@
 import { readable, readableLatitude } from '../../describe/numbers';
+import { LIMITS } from '../../limits';
 import type { Remedy } from '../../preflight-types';
 import { ratioOfMaximum, ratioOfMinimum, verdictOf, type Case, type Rule } from '../draft';
 import { finerCells, roundedUp, withFittingSteps } from '../remedies';
@@ -136,6 +137,8 @@ function fartherWalls({ setup, scales }: Pick<Case, 'setup' | 'scales'>): Remedy
   const reference = setup.basin.referenceLatitudeDeg ?? (setup.basin.southDeg + setup.basin.northDeg) / 2;
   const equator = setup.basin.geometry === 'equatorial' ? 0 : reference - f0 / beta / metresPerDegreeLatitude;
   const reach = (5 * trapping) / metresPerDegreeLatitude;
+  // Hardly any rotation: no wall is that far away.
+  if (!(reach < LIMITS.latitude.max - LIMITS.latitude.min)) return [];
   const spacing = setup.numerics.spacingLatitudeDeg;
   const outward = (degrees: number) => Number((Math.ceil(degrees / spacing - 1e-9) * spacing).toPrecision(12));
   const north = outward(equator + reach);
