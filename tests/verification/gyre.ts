@@ -1,5 +1,5 @@
-import { forcingFromFunctions, padded, planeGrid, setState, stepModel, type Grid, type Model } from '@halfdeep/ocean';
-import { commonModel, commonStep, DAY, H, rho0, stepsFor } from './common';
+import { forcingFromFunctions, planeGrid, setState, valueAt, type Grid, type Model } from '@halfdeep/ocean';
+import { advance, commonModel, commonStep, DAY, H, rho0, stepsFor } from './common';
 
 /** Basin of cases e and g: 2000 × 2000 km, f = 1e-5 + 2e-11 y, τx = −0.05 cos(πy/Ly). */
 export const SIDE = 2e6;
@@ -19,20 +19,23 @@ export function runGyre(
   const { steps, dt } = stepsFor(years * 365 * DAY, commonStep(grid));
   const model = commonModel({ grid, dt, rayleigh, forcing });
   setState(model, {});
-  for (let step = 1; step <= steps; step++) {
-    stepModel(model);
-    each?.(model, step, steps);
-  }
+  if (!each) advance(model, steps);
+  else
+    for (let step = 1; step <= steps; step++) {
+      advance(model);
+      each(model, step, steps);
+    }
   return { grid, model };
 }
 
 /** Largest transport streamfunction, m³/s: V summed from the western wall, at corners. */
-export function largestTransport(grid: Grid, v: Float64Array): number {
+export function largestTransport(model: Model): number {
+  const { grid } = model;
   let largest = 0;
   for (let j = 0; j <= grid.ny; j++) {
     let psi = 0;
     for (let i = 0; i < grid.nx; i++) {
-      psi += v[padded(grid, i, j)] * H * grid.dxV[j];
+      psi += valueAt(model, 'v', i, j) * H * grid.dxV[j];
       largest = Math.max(largest, psi);
     }
   }

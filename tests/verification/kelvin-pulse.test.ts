@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest';
-import { padded, planeGrid, setState, stepModel } from '@halfdeep/ocean';
-import { beta, c, commonModel, commonStep, g, order, relativeL2, stepsFor } from './common';
+import { planeGrid, setState, valueAt } from '@halfdeep/ocean';
+import { advance, beta, c, commonModel, commonStep, g, order, relativeL2, stepsFor } from './common';
+import { convergencePlate, profilePlate } from './plates';
+import { proveCase } from './record';
 
 // Case a. Equatorial Kelvin pulse: Matsuno (1966), J. Meteorol. Soc. Japan 44, 25–43; Gill (1982), Atmosphere–Ocean
 // Dynamics, § 11.5. η and u keep their shape exp(−βy²/2c) and move east at c without change; v stays 0.
@@ -14,7 +16,15 @@ function pulse(x: number, y: number, centre: number): number {
   return 5 * Math.exp((-beta * y * y) / (2 * c)) * Math.exp((-wrapped * wrapped) / (2 * 5e5 * 5e5));
 }
 
-function run(dx: number): { l2: number; speedError: number; largestV: number } {
+interface Pulse {
+  l2: number;
+  speedError: number;
+  largestV: number;
+  /** η along the row next to the equator: km, m. */
+  along: { x: number[]; found: number[]; exact: number[] };
+}
+
+function run(dx: number): Pulse {
   const grid = planeGrid({
     nx: LX / dx,
     ny: LY / dx,
@@ -31,9 +41,12 @@ function run(dx: number): { l2: number; speedError: number; largestV: number } {
     eta: (i, j) => pulse(grid.xCentre[i], grid.yCentre[j], X0),
     u: (i, j) => (g / c) * pulse(grid.xFace[i], grid.yCentre[j], X0),
   });
-  for (let n = 0; n < steps; n++) stepModel(model);
+  advance(model, steps);
   const found: number[] = [];
-  for (let j = 0; j < grid.ny; j++) for (let i = 0; i < grid.nx; i++) found.push(model.eta.now[padded(grid, i, j)]);
+  let largestV = 0;
+  for (let j = 0; j <= grid.ny; j++)
+    for (let i = 0; i < grid.nx; i++) largestV = Math.max(largestV, Math.abs(valueAt(model, 'v', i, j)));
+  for (let j = 0; j < grid.ny; j++) for (let i = 0; i < grid.nx; i++) found.push(valueAt(model, 'h', i, j));
   const errorAt = (shift: number) => {
     const exact: number[] = [];
     for (let j = 0; j < grid.ny; j++)
@@ -47,27 +60,72 @@ function run(dx: number): { l2: number; speedError: number; largestV: number } {
   return {
     l2: errorAt(0),
     speedError: shift / (c * DURATION),
-    largestV: model.v.now.reduce((most, v) => Math.max(most, Math.abs(v)), 0),
+    largestV,
+    along: {
+      x: Array.from(grid.xCentre, (x) => x / 1e3),
+      found: Array.from(grid.xCentre, (_x, i) => valueAt(model, 'h', i, grid.ny / 2)),
+      exact: Array.from(grid.xCentre, (x) => pulse(x, grid.yCentre[grid.ny / 2], X0 + c * DURATION)),
+    },
   };
 }
 
 describe('equatorial Kelvin pulse (Matsuno 1966)', () => {
   const [coarse, middle, fine] = [100e3, 50e3, 25e3].map(run);
 
-  it('keeps its shape: relative L2 error below 1 % at 50 km', () => {
-    expect(middle.l2).toBeLessThan(0.01);
+  it('keeps its shape: relative L2 error below 1 % at 50 km, second order', (context) => {
+    proveCase(context, 'a', {
+      id: 'shape',
+      quantity: 'η after 1.6e6 s, L2 error',
+      expected: 0,
+      obtained: middle.l2,
+      kind: 'L2',
+      tolerance: 0.01,
+      order: order(middle.l2, fine.l2),
+      orderRange: [1.9, 2.1],
+      resolution: 'dx = 50 km; order from 50 and 25 km',
+      plate: convergencePlate(
+        'Errors of the Kelvin pulse against the spacing: L2 error of η, and the error of its speed.',
+        'spacing, km',
+        [100, 50, 25],
+        [
+          { name: 'η, L2', values: [coarse.l2, middle.l2, fine.l2] },
+          { name: 'speed', values: [coarse.speedError, middle.speedError, fine.speedError] },
+        ],
+      ),
+    });
     expect(fine.l2).toBeLessThan(0.003);
+    expect(order(coarse.l2, middle.l2)).toBeGreaterThan(1.8);
   });
-  it('moves east at c: within 0.2 % at 50 km', () => {
-    expect(Math.abs(middle.speedError)).toBeLessThan(2e-3);
+  it('moves east at c: within 0.2 % at 50 km, second order', (context) => {
+    proveCase(context, 'a', {
+      id: 'speed',
+      quantity: 'speed, m/s',
+      expected: c,
+      obtained: c * (1 + middle.speedError),
+      tolerance: 2e-3,
+      order: order(middle.speedError, fine.speedError),
+      orderRange: [1.8, 2.2],
+      resolution: 'dx = 50 km; order from 50 and 25 km',
+      plate: profilePlate(
+        'The pulse along the row next to the equator after 1.6e6 s, found at 50 km and exact.',
+        ['eastward, km', 'η, m'],
+        [
+          { name: 'exact', role: 'expected', x: middle.along.x, y: middle.along.exact },
+          { name: 'found', role: 'found', x: middle.along.x, y: middle.along.found },
+        ],
+      ),
+    });
     expect(Math.abs(fine.speedError)).toBeLessThan(5e-4);
   });
-  it('converges at second order', () => {
-    expect(order(coarse.l2, middle.l2)).toBeGreaterThan(1.8);
-    expect(order(middle.l2, fine.l2)).toBeGreaterThan(1.9);
-    expect(order(middle.speedError, fine.speedError)).toBeGreaterThan(1.8);
-  });
-  it('has hardly any cross-equatorial velocity', () => {
-    expect(middle.largestV).toBeLessThan(0.02 * (g / c) * 5);
+  it('has hardly any cross-equatorial velocity', (context) => {
+    proveCase(context, 'a', {
+      id: 'cross-equatorial',
+      quantity: 'largest |v| over largest u',
+      expected: 0,
+      obtained: middle.largestV / ((g / c) * 5),
+      kind: 'absolute',
+      tolerance: 0.02,
+      resolution: 'dx = 50 km',
+    });
   });
 });

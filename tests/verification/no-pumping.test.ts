@@ -1,7 +1,9 @@
 import { Matrix, solve } from 'ml-matrix';
 import { describe, expect, it } from 'vitest';
-import { forcingFromFunctions, padded, planeGrid, setState, stepModel, type Grid } from '@halfdeep/ocean';
-import { beta, c, commonModel, commonStep, DAY, g, H, harmonicOf, L, order, rho0, stepsFor, T } from './common';
+import { forcingFromFunctions, planeGrid, setState, valueAt, type Grid } from '@halfdeep/ocean';
+import { advance, beta, c, commonModel, commonStep, DAY, g, H, harmonicOf, L, order, rho0, stepsFor, T } from './common';
+import { convergencePlate, profilePlate } from './plates';
+import { proveCase } from './record';
 
 // Case h. Wind stress linear in latitude about the equator, τx = a y: its Ekman pumping is zero, its Ekman and Sverdrup
 // transports are the same, V = −a/(ρ0 β), the equator included (common practice; derived for this project).
@@ -99,12 +101,11 @@ function seasonalErrors(perL: number, half: number): SeasonErrors {
   };
   for (let n = 0; n < steps; n++) {
     for (const j of rows) {
-      const k = padded(grid, 1, j);
-      series.v[j][n] = model.v.now[k];
-      series.u[j][n] = model.u.now[k];
-      series.eta[j][n] = model.eta.now[k];
+      series.v[j][n] = valueAt(model, 'v', 1, j);
+      series.u[j][n] = valueAt(model, 'u', 1, j);
+      series.eta[j][n] = valueAt(model, 'h', 1, j);
     }
-    stepModel(model);
+    advance(model);
   }
   const phase = (n: number) => (2 * Math.PI * n) / steps;
   const within = (y: number) => Math.abs(y) <= 3 * L;
@@ -156,27 +157,51 @@ describe('wind without pumping, τx = a y', () => {
     expect(Math.abs(eta(2) / 5.6756e-3 - 1)).toBeLessThan(1e-4);
   });
 
-  it('the seasonal response is exact: v to 1e-4, u and η to 1 % at L/8, second order', () => {
+  it('the seasonal response is exact: v to 1e-4, u and η to 1 % at L/8, second order', (context) => {
     const coarse = seasonalErrors(8, 8);
     const fine = seasonalErrors(16, 8);
-    expect(coarse.v).toBeLessThan(1e-4);
-    expect(coarse.u).toBeLessThan(0.01);
-    expect(coarse.eta).toBeLessThan(0.01);
-    expect(order(coarse.u, fine.u)).toBeGreaterThan(1.7);
-    expect(order(coarse.eta, fine.eta)).toBeGreaterThan(1.7);
+    const resolution = 'dy = L/8; order from L/8 and L/16';
+    for (const [id, tolerance] of [
+      ['v', 1e-4],
+      ['u', 0.01],
+      ['eta', 0.01],
+    ] as const)
+      proveCase(context, 'h', {
+        id: `season-${id}`,
+        quantity: `seasonal ${id === 'eta' ? 'η' : id} within 3 L, largest error over largest value`,
+        expected: 0,
+        obtained: coarse[id],
+        kind: 'absolute',
+        tolerance,
+        ...(id !== 'v' && { order: order(coarse[id], fine[id]), orderRange: [1.7, 2.3] as [number, number] }),
+        resolution: id === 'v' ? 'dy = L/8' : resolution,
+        ...(id === 'u' && {
+          plate: convergencePlate('Errors of the seasonal response to τx = a y against the spacing.', 'spacing, L', [1 / 8, 1 / 16], [
+            { name: 'u', values: [coarse.u, fine.u] },
+            { name: 'η', values: [coarse.eta, fine.eta] },
+          ]),
+        }),
+      });
   });
 
-  it('switched on abruptly, V(0) grows as computed independently up to 3 T', () => {
+  it('switched on abruptly, V(0) grows as computed independently up to 3 T', (context) => {
     const grid = channel(8, 8);
     const { steps: perHalf, dt } = stepsFor(T / 2, commonStep(grid) / 2);
     const model = commonModel({ grid, dt, forcing: forcingFromFunctions(grid, [{ taux: (_x, y) => A * y }]) });
     setState(model, {});
     const expected: Record<number, number> = { 0.5: 0.00521, 1: 0.08264, 1.5: 0.40438, 2: 1.16479, 3: 3.26279 };
     for (let half = 1; half <= 6; half++) {
-      for (let n = 0; n < perHalf; n++) stepModel(model);
+      advance(model, perHalf);
       if (!(half / 2 in expected)) continue;
-      const found = model.v.now[padded(grid, 1, grid.ny / 2)] / V_SVERDRUP;
-      expect(Math.abs(found - expected[half / 2]), `t = ${half / 2} T`).toBeLessThan(0.01 * expected[half / 2] + 2e-4);
+      proveCase(context, 'h', {
+        id: `switched-on-${half / 2}`,
+        quantity: `V(0) over −a/(ρ0 β) at ${half / 2} T after an abrupt start`,
+        expected: expected[half / 2],
+        obtained: valueAt(model, 'v', 1, grid.ny / 2) / V_SVERDRUP,
+        kind: 'absolute',
+        tolerance: 0.01 * expected[half / 2] + 2e-4,
+        resolution: 'dy = L/8',
+      });
     }
   });
 
@@ -189,28 +214,54 @@ describe('wind without pumping, τx = a y', () => {
     setState(model, {});
     const across = (j: number, from: number, to: number) => {
       let sum = 0;
-      for (let i = from; i < to; i++) sum += model.v.now[padded(grid, i, j)];
+      for (let i = from; i < to; i++) sum += valueAt(model, 'v', i, j);
       return sum * H * dx;
     };
     const equator = grid.ny / 2;
     const at60: number[] = [];
+    let along: number[] = [];
     let netBefore = NaN;
     const day60 = Math.round((60 * DAY) / dt);
     for (let n = 1; n <= steps; n++) {
-      stepModel(model);
+      advance(model);
       if (n === steps - Math.round((30 * DAY) / dt)) netBefore = across(equator, 0, grid.nx);
       // The middle of the basin: by day 60 neither wall's signal matters there.
+      if (n === day60) along = Array.from({ length: 146 }, (_, i) => valueAt(model, 'v', i + 14, equator) * H);
       if (n === day60) for (const j of [equator, equator + 7, equator + 14]) at60.push(across(j, 60, 100) / (40 * dx));
     }
     const net = across(equator, 0, grid.nx);
 
-    it('the interior carries V = −a/(ρ0 β) = −1.413927 m²/s by day 60, to 5 %, the equator included', () => {
+    it('the interior carries V = −a/(ρ0 β) = −1.413927 m²/s by day 60, to 5 %, the equator included', (context) => {
       expect(Math.abs(PER_WIDTH - -1.413927)).toBeLessThan(1e-6);
-      for (const found of at60) expect(Math.abs(found / PER_WIDTH - 1)).toBeLessThan(0.05);
+      at60.forEach((found, k) =>
+        proveCase(context, 'h', {
+          id: `interior-${k}`,
+          quantity: `V ${['on the equator', '350 km north', '700 km north'][k]} on day 60, m²/s`,
+          expected: -1.413927,
+          obtained: found,
+          tolerance: 0.05,
+          resolution: 'dx = 50 km, closed basin',
+          ...(k === 0 && {
+            plate: profilePlate('Northward transport per width along the equator on day 60, and −a/(ρ0 β).', ['eastward, km', 'V, m²/s'], [
+              { name: '−a/(ρ0 β)', role: 'expected', x: [0, 8000], y: [PER_WIDTH, PER_WIDTH] },
+              // The western boundary current, a hundred times as strong, is left out.
+              { name: 'found', role: 'found', x: along.map((_v, i) => 50 * (i + 14.5)), y: along },
+            ]),
+          }),
+        }),
+      );
     });
-    it('a western boundary current brings it all back: 4 % of V Lx are missing after a year, and ever less', () => {
+    it('a western boundary current brings it all back: 4 % of V Lx are missing after a year, and ever less', (context) => {
       // 4.3 % by this measure, the net transport over V Lx, and falling by 7 % in ten days as the gyre fills.
-      expect(Math.abs(net / (PER_WIDTH * 8e6))).toBeLessThan(0.045);
+      proveCase(context, 'h', {
+        id: 'return',
+        quantity: 'net transport across the equator after a year over V Lx',
+        expected: 0,
+        obtained: net / (PER_WIDTH * 8e6),
+        kind: 'absolute',
+        tolerance: 0.045,
+        resolution: 'dx = 50 km, closed basin',
+      });
       expect(Math.abs(net)).toBeLessThan(0.85 * Math.abs(netBefore));
     });
   });

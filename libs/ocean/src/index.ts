@@ -3,21 +3,31 @@ export * from './limits';
 export type * from './preflight-types';
 export type * from './integration-types';
 export { buildGrid, planeOf } from './grid/build-grid';
-export { planeGrid, isWet, padded, type Grid, type PlaneOptions } from './grid/grid';
+export { planeGrid, isWet, type Grid, type PlaneOptions } from './grid/grid';
 export { coastLongitude, landMask } from './grid/land';
 export { evaluatePattern, type Stress } from './forcing/pattern';
 export { seasonFactor, stressAt, DAYS_PER_YEAR, SECONDS_PER_DAY } from './forcing/season';
 export { CALM, forcingFromFunctions, windForcing, type Forcing, type ForcingBasis } from './forcing/forcing';
 export { modeFrequency, waveMode, hermite, type WaveFields } from './start/wave-mode';
-export { createModel, setState, viewOf, type InitialValues, type Model } from './stepper/model';
-export type { ModelOptions } from './stepper/model-options';
-export { stepModel, createWork, type StepWork } from './stepper/step';
+export { createModel, setState, type InitialValues, type Model } from './stepper/model';
+export { copyHistory, etaAt, fieldOf, valueAt, viewOf, type FieldPlace, type StateVariable } from './stepper/fields';
+export { layoutOf, levelOffset, type Layout, type Role } from './stepper/layout';
+export {
+  createStepper,
+  referenceStepper,
+  stepModel,
+  type Kernel,
+  type Stepper,
+  type StepperOptions,
+} from './stepper/stepper';
+export type { StepRecorder, StepSums } from './stepper/sums';
+export type { EntrainmentOptions, ModelOptions, SpongeRates, ViscosityMap } from './stepper/model-options';
 export { Integration } from './integration/integration';
 export { IntegrationFailure } from './integration/failure';
 export { recordSteps, stepRange, type RecordSteps } from './integration/schedule';
 export { snapSection, type SnappedSection } from './integration/sections';
 export { snapMooring, type SnappedMooring } from './integration/moorings';
-export { BasinBudget, BUDGET_COLUMNS, energyOf, massAnomaly } from './integration/budget';
+export { BasinBudget, BUDGET_COLUMNS, energyOf, massAnomaly, totalsOf } from './integration/budget';
 export { stabilityNumbers, type StabilityNumbers } from './integration/stability';
 export { CORE_VERSION } from './integration/version';
 export { setupSha256 } from './integration/setup-hash';

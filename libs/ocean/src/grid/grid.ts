@@ -2,15 +2,12 @@ import type { Geometry } from '../setup';
 
 /**
  * A C-grid of nx × ny cells on a plane or a latitude band (numerics.md §2). η sits at cell centres, u on west faces,
- * v on south faces, f and ζ on south-west corners. Every padded array has one stride nx + 2 and ny + 2 rows: one halo
- * column and row on each side, cell (i, j) at (j + 1) · stride + i + 1.
+ * v on south faces, f and ζ on south-west corners. How a model lays its fields out: stepper/layout.
  */
 export interface Grid {
   geometry: Geometry;
   nx: number;
   ny: number;
-  /** nx + 2. */
-  stride: number;
   /** Zonally periodic: the west face of cell 0 is the east face of cell nx − 1. */
   periodic: boolean;
   /** Zonal spacing at cell centres and u points, [ny], m. */
@@ -41,16 +38,6 @@ export interface Grid {
   wetCells: number;
   /** What snapping moved, in sentences. */
   notes: string[];
-}
-
-/** Index of cell (i, j) and of its west face, south face and south-west corner in a padded array. */
-export function padded(grid: Grid, i: number, j: number): number {
-  return (j + 1) * grid.stride + i + 1;
-}
-
-/** Number of values in a padded array. */
-export function paddedLength(grid: Grid): number {
-  return grid.stride * (grid.ny + 2);
 }
 
 /** True when the cell is water; cells outside are land, unless the grid is periodic and i wraps. */
@@ -104,7 +91,6 @@ export function planeGrid(options: PlaneOptions): Grid {
     geometry: beta === 0 ? 'fplane' : equatorRow < 0 ? 'midlatitude' : 'equatorial',
     nx,
     ny,
-    stride: nx + 2,
     periodic,
     dxC: new Float64Array(ny).fill(dx),
     dxV: new Float64Array(ny + 1).fill(dx),

@@ -1,7 +1,10 @@
 import { addTo, SUM_SLOTS, sumAt } from '../exact/running-sum';
 import type { Column } from '../integration-types';
-import type { Model } from '../stepper/model';
-import type { StepWork } from '../stepper/step';
+import type { Grid } from '../grid/grid';
+import { forRuns, type Model } from '../stepper/model';
+import type { Spans } from '../stepper/spans';
+import { fieldOf, type StateVariable } from '../stepper/fields';
+import type { LinearTerm, StepSums } from '../stepper/sums';
 
 const JOULES_PER_PJ = 1e15;
 const KG_PER_GT = 1e12;
@@ -32,21 +35,20 @@ export class BasinBudget {
   }
 
   /** Adds the work of one step. */
-  add(work: StepWork): void {
-    const { dt, density, restThickness, reducedGravity, rayleigh, damping } = this.#model;
+  add(sums: StepSums): void {
+    const { dt, density, restThickness, reducedGravity, rayleigh, damping, grid } = this.#model;
     const kinetic = density * restThickness * dt;
     const potential = density * reducedGravity * dt;
     const { slots } = this;
-    addTo(slots, SLOT.wind, kinetic * work.wind);
-    addTo(slots, SLOT.rayleigh, -kinetic * rayleigh * work.speedSquared);
-    addTo(slots, SLOT.viscous, kinetic * work.viscous);
-    addTo(slots, SLOT.damping, -potential * damping * work.etaSquared);
-    addTo(slots, SLOT.numerical, kinetic * (work.kinetic - reducedGravity * work.potential));
-    if (damping > 0) {
-      let volume = 0;
-      for (let j = 0; j < work.etaByRow.length; j++) volume += work.etaByRow[j];
-      addTo(slots, SLOT.massSource, -density * damping * dt * volume);
-    }
+    const total = totalsOf(grid, sums);
+    addTo(slots, SLOT.wind, kinetic * total.wind);
+    addTo(slots, SLOT.rayleigh, -kinetic * (rayleigh * total.square + total.sponge));
+    addTo(slots, SLOT.viscous, kinetic * total.viscous);
+    addTo(slots, SLOT.damping, -potential * (damping * total.etaSquared + total.spongeEtaSquared));
+    addTo(slots, SLOT.numerical, kinetic * (total.kinetic - reducedGravity * total.potential));
+    let rate = 0;
+    for (let j = 0; j < grid.ny; j++) rate += dampedVolumeRate(this.#model, sums, j);
+    if (rate !== 0) addTo(slots, SLOT.massSource, density * dt * rate);
   }
 
   /** Values in the order of `BUDGET_COLUMNS`; begins the next interval. */
@@ -102,15 +104,62 @@ export function massAnomaly(model: Model): number {
   return model.density * volumeNorthOf(model, 0);
 }
 
+/** Sums of a linear step over the basin: Σ A × each row sum, u and v points together; numerics.md §9. */
+export interface LinearTotals {
+  wind: number;
+  square: number;
+  sponge: number;
+  viscous: number;
+  kinetic: number;
+  potential: number;
+  etaSquared: number;
+  spongeEtaSquared: number;
+}
+
+/** Adds the row sums of a linear step up, row by row from the south. */
+export function totalsOf(grid: Grid, sums: StepSums): LinearTotals {
+  const terms = sums.terms as Record<LinearTerm, Float64Array>;
+  const total: LinearTotals = {
+    wind: 0,
+    square: 0,
+    sponge: 0,
+    viscous: 0,
+    kinetic: 0,
+    potential: 0,
+    etaSquared: 0,
+    spongeEtaSquared: 0,
+  };
+  for (let j = 0; j < grid.ny; j++) {
+    const areaV = grid.dxV[j] * grid.dy;
+    const area = grid.dxC[j] * grid.dy;
+    total.wind += areaV * terms.windV[j] + area * terms.windU[j];
+    total.square += areaV * terms.squareV[j] + area * terms.squareU[j];
+    total.sponge += areaV * terms.spongeV[j] + area * terms.spongeU[j];
+    total.viscous += areaV * terms.viscousV[j] + area * terms.viscousU[j];
+    total.kinetic += areaV * terms.kineticV[j] + area * terms.kineticU[j];
+    total.potential += area * terms.potential[j];
+    total.etaSquared += area * terms.etaSquared[j];
+    total.spongeEtaSquared += area * terms.spongeEtaSquared[j];
+  }
+  return total;
+}
+
+/** Volume that damping and sponges added to cell row j in a step, m³/s. */
+export function dampedVolumeRate(model: Model, { terms }: StepSums, j: number): number {
+  const { grid, damping } = model;
+  return -(grid.dxC[j] * grid.dy) * (damping * terms['eta'][j] + terms['spongeEta'][j]);
+}
+
 /** ∫η dA over cell rows j0 and north of it, m³: compensated, fixed order. */
 export function volumeNorthOf(model: Model, j0: number): number {
-  const { grid, cells } = model;
-  const eta = model.eta.now;
+  const { grid, spans } = model;
+  const { data, offset, rowStride } = fieldOf(model, 'h');
   const sums = new Float64Array(SUM_SLOTS);
   for (let j = j0; j < grid.ny; j++) {
     let row = 0;
-    for (let s = cells.rowStart[j]; s < cells.rowStart[j + 1]; s++)
-      for (let k = cells.bounds[2 * s]; k < cells.bounds[2 * s + 1]; k++) row += eta[k];
+    forRuns(spans.cells, j, (first, end) => {
+      for (let k = offset + j * rowStride + first; k < offset + j * rowStride + end; k++) row += data[k];
+    });
     addTo(sums, 0, row * (grid.dxC[j] * grid.dy));
   }
   return sumAt(sums, 0);
@@ -118,19 +167,21 @@ export function volumeNorthOf(model: Model, j0: number): number {
 
 /** Kinetic energy ½ ρ0 H ∫(u² + v²) and available potential energy ½ ρ0 g′ ∫η², J; numerics.md §8. */
 export function energyOf(model: Model): { kinetic: number; potential: number } {
-  const { grid, density, restThickness, reducedGravity } = model;
+  const { grid, density, restThickness, reducedGravity, spans } = model;
   const sums = new Float64Array(2 * SUM_SLOTS);
-  const squares = (data: Float64Array, spans: Model['cells'], j: number) => {
+  const squares = (variable: StateVariable, points: Spans, j: number) => {
+    const { data, offset, rowStride } = fieldOf(model, variable);
     let row = 0;
-    for (let s = spans.rowStart[j]; s < spans.rowStart[j + 1]; s++)
-      for (let k = spans.bounds[2 * s]; k < spans.bounds[2 * s + 1]; k++) row += data[k] * data[k];
+    forRuns(points, j, (first, end) => {
+      for (let k = offset + j * rowStride + first; k < offset + j * rowStride + end; k++) row += data[k] * data[k];
+    });
     return row;
   };
   for (let j = 0; j < grid.ny; j++) {
     const area = grid.dxC[j] * grid.dy;
-    addTo(sums, 0, squares(model.u.now, model.uPoints, j) * area);
-    addTo(sums, 0, squares(model.v.now, model.vPoints, j) * (grid.dxV[j] * grid.dy));
-    addTo(sums, SUM_SLOTS, squares(model.eta.now, model.cells, j) * area);
+    addTo(sums, 0, squares('u', spans.uPoints, j) * area);
+    addTo(sums, 0, squares('v', spans.vPoints, j) * (grid.dxV[j] * grid.dy));
+    addTo(sums, SUM_SLOTS, squares('h', spans.cells, j) * area);
   }
   return {
     kinetic: 0.5 * density * restThickness * sumAt(sums, 0),

@@ -1,4 +1,6 @@
 import type { FailureReport } from '../integration-types';
+import { valueAt } from '../stepper/fields';
+import { levelOffset } from '../stepper/layout';
 import type { Model } from '../stepper/model';
 import { NATIVE_VARIABLES, shapeOf, type NativeVariable } from './levels';
 import { stabilityNumbers } from './stability';
@@ -13,11 +15,11 @@ export class IntegrationFailure extends Error {
 
 /** True while every value is finite: one sum over the state, which a single NaN or infinity spoils. */
 export function isFinite(model: Model): boolean {
+  const { data, layout, phase } = model;
+  const first = levelOffset(layout, phase, 'now');
+  const end = first + layout.levelLength;
   let sum = 0;
-  for (const variable of NATIVE_VARIABLES) {
-    const data = model[variable].now;
-    for (let k = 0; k < data.length; k++) sum += data[k];
-  }
+  for (let k = first; k < end; k++) sum += data[k];
   return Number.isFinite(sum);
 }
 
@@ -48,7 +50,7 @@ function firstBadCell(model: Model): FailureReport['cell'] {
     const [rows, columns] = shapeOf(model.grid, variable);
     for (let j = 0; j < rows; j++)
       for (let i = 0; i < columns; i++) {
-        const value = model[variable].now[(j + 1) * model.grid.stride + i + 1];
+        const value = valueAt(model, variable === 'eta' ? 'h' : variable, i, j);
         if (!Number.isFinite(value)) return cellAt(model, variable, i, j);
         const size = Math.abs(value);
         if (!largest || size > largest.size) largest = { variable, i, j, size };

@@ -7,15 +7,16 @@ import type { Column, Fingerprint, Frame } from '../integration-types';
 import type { Setup } from '../setup';
 import { analyticStart } from '../start/initial-state';
 import { createModel, setState, type Model } from '../stepper/model';
-import { createWork, stepModel, type StepWork } from '../stepper/step';
+import { createStepper, type Stepper, type StepperOptions } from '../stepper/stepper';
+import type { StepRecorder } from '../stepper/sums';
 import { BasinBudget, BUDGET_COLUMNS } from './budget';
 import { pack, unpack } from './container';
 import { failureReport, IntegrationFailure, isFinite } from './failure';
 import { fingerprintOf } from './fingerprint';
-import { nineArrays, setNineArrays, shapeOf, unpad, type NativeVariable } from './levels';
+import { nativeField, nineArrays, setNineArrays, shapeOf, type NativeVariable } from './levels';
 import { MooringRecorder } from './moorings';
 import { stepRange } from './schedule';
-import { SectionRecorder } from './sections';
+import { meridiansOf, SectionRecorder } from './sections';
 import { setupSha256 } from './setup-hash';
 import { packState, startFromState } from './state';
 import { CORE_VERSION } from './version';
@@ -42,12 +43,13 @@ export class Integration {
   /** Absolute step at which the run ends. */
   readonly totalSteps: number;
   readonly #model: Model;
-  readonly #work: StepWork;
+  readonly #stepper: Stepper;
+  readonly #recorder: StepRecorder;
   readonly #sections: SectionRecorder;
   readonly #moorings: MooringRecorder;
   #budget: BasinBudget;
 
-  private constructor(setup: Setup) {
+  private constructor(setup: Setup, options: StepperOptions) {
     const { layer, friction, constants, numerics } = setup;
     const { startStep, totalSteps } = stepRange(setup);
     this.setup = setup;
@@ -65,12 +67,19 @@ export class Integration {
       damping: layer.dampingPerS,
       slip: friction.slip,
       forcing: windForcing(setup, this.grid),
+      meridians: meridiansOf(this.grid, setup.output.sections),
     });
     this.#model.step = startStep;
-    this.#work = createWork(this.grid.ny);
     this.#sections = new SectionRecorder(this.#model, setup);
     this.#moorings = new MooringRecorder(this.#model, setup.output.moorings);
     this.#budget = new BasinBudget(this.#model);
+    this.#stepper = createStepper(this.#model, options);
+    this.#recorder = {
+      add: (sums) => {
+        this.#sections.add(sums);
+        this.#budget.add(sums);
+      },
+    };
   }
 
   /**
@@ -78,8 +87,8 @@ export class Integration {
    * Throws RangeError when the setup cannot be integrated (size, numbers, sections or moorings off the water) or the
    * state is missing, damaged, another one, or lies on another grid.
    */
-  static start(setup: Setup, state?: Uint8Array): Integration {
-    const run = new Integration(setup);
+  static start(setup: Setup, state?: Uint8Array, options: StepperOptions = {}): Integration {
+    const run = new Integration(setup, options);
     if (setup.start.kind === 'state') {
       if (!state)
         throw new RangeError(
@@ -98,7 +107,7 @@ export class Integration {
    * The run as it was when `checkpoint` was taken, in the middle of an output interval or not; it goes on bit by bit as
    * if it had not been interrupted. Throws RangeError when the checkpoint is damaged, or of another setup or core.
    */
-  static restore(setup: Setup, checkpoint: Uint8Array): Integration {
+  static restore(setup: Setup, checkpoint: Uint8Array, options: StepperOptions = {}): Integration {
     const { head, arrays } = unpack(checkpoint, 'checkpoint');
     const saved = head as unknown as CheckpointHead;
     if (saved.kind !== 'checkpoint') throw new RangeError(`A checkpoint is needed; a ${String(head['kind'])} arrived.`);
@@ -107,7 +116,7 @@ export class Integration {
         `The checkpoint is of core version ${saved.coreVersion}; this is ${CORE_VERSION}, which cannot continue it to the same bits.`,
       );
     if (saved.setupSha256 !== setupSha256(setup)) throw new RangeError('The checkpoint belongs to another setup.');
-    const run = new Integration(setup);
+    const run = new Integration(setup, options);
     setNineArrays(run.#model, arrays);
     run.#model.step = saved.step;
     for (const [name, slots] of run.#accumulators()) {
@@ -143,14 +152,12 @@ export class Integration {
       );
     if (!(Number.isInteger(every) && every >= 1))
       throw new RangeError(`checkEvery must be a whole number from 1 to ${CHECK_EVERY}; ${every} arrived.`);
-    for (let done = 1; done <= steps; done++) {
-      stepModel(this.#model, this.#work);
-      this.#sections.add(this.#work);
-      this.#budget.add(this.#work);
-      if ((done % every === 0 || done === steps) && !isFinite(this.#model))
-        throw new IntegrationFailure(
-          failureReport(this.#model, this.setup.numerics.stepsPerDay, every === 1, Math.min(every, done)),
-        );
+    for (let left = steps; left > 0;) {
+      const some = Math.min(left, every);
+      this.#stepper.advance(some, this.#recorder);
+      left -= some;
+      if (!isFinite(this.#model))
+        throw new IntegrationFailure(failureReport(this.#model, this.setup.numerics.stepsPerDay, every === 1, some));
     }
   }
 
@@ -167,7 +174,7 @@ export class Integration {
 
   /** The fields now in double precision, logical shapes (η [ny][nx], u [ny][nx + 1], v [ny + 1][nx]), land 0; copies. */
   fields(): Record<NativeVariable, Float64Array> {
-    const of = (variable: NativeVariable) => unpad(this.grid, variable, this.#model[variable].now);
+    const of = (variable: NativeVariable) => nativeField(this.#model, variable);
     return { eta: of('eta'), u: of('u'), v: of('v') };
   }
 
@@ -237,11 +244,11 @@ export class Integration {
   #snapshot(variable: NativeVariable): Float32Array {
     const { grid } = this;
     const [rows, columns] = shapeOf(grid, variable);
-    const data = this.#model[variable].now;
+    const values = nativeField(this.#model, variable);
     const out = new Float32Array(rows * columns);
     for (let j = 0; j < rows; j++)
       for (let i = 0; i < columns; i++)
-        out[j * columns + i] = touchesWater(grid, variable, i, j) ? data[(j + 1) * grid.stride + i + 1] : NaN;
+        out[j * columns + i] = touchesWater(grid, variable, i, j) ? values[j * columns + i] : NaN;
     return out;
   }
 }

@@ -1,6 +1,7 @@
-import { isWet, padded, type Grid } from '../grid/grid';
+import { isWet, type Grid } from '../grid/grid';
 import type { Column } from '../integration-types';
 import type { Mooring } from '../setup';
+import { etaAt, valueAt } from '../stepper/fields';
 import type { Model } from '../stepper/model';
 
 /** A mooring on the grid: the water cell that holds it. */
@@ -51,11 +52,12 @@ export class MooringRecorder {
 
   /** Values now, in the order of `columns`. */
   take(): Float64Array {
-    const { grid, eta, u, v } = this.#model;
-    const values = this.#snapped.flatMap(({ i, j }) => {
-      const k = padded(grid, i, j);
-      return [eta.now[k], 0.5 * (u.now[k] + u.now[k + 1]), 0.5 * (v.now[k] + v.now[k + grid.stride])];
-    });
+    const model = this.#model;
+    const values = this.#snapped.flatMap(({ i, j }) => [
+      etaAt(model, i, j),
+      0.5 * (valueAt(model, 'u', i, j) + valueAt(model, 'u', i + 1, j)),
+      0.5 * (valueAt(model, 'v', i, j) + valueAt(model, 'v', i, j + 1)),
+    ]);
     return Float64Array.from(values);
   }
 }

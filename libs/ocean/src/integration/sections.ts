@@ -3,8 +3,10 @@ import type { Grid } from '../grid/grid';
 import type { Column } from '../integration-types';
 import type { Section, Setup } from '../setup';
 import type { Model } from '../stepper/model';
-import { lastHalfLevel, type StepWork } from '../stepper/step';
-import { volumeNorthOf } from './budget';
+import { fieldOf } from '../stepper/fields';
+import { NONE } from '../stepper/statics';
+import type { StepSums } from '../stepper/sums';
+import { dampedVolumeRate, volumeNorthOf } from './budget';
 
 const M3S_PER_SV = 1e6;
 const W_PER_PW = 1e15;
@@ -42,25 +44,36 @@ export class SectionRecorder {
   readonly #model: Model;
   readonly #heatPerVolume: number;
   readonly #snapped: SnappedSection[];
+  readonly #damped: boolean;
 
   constructor(model: Model, setup: Pick<Setup, 'output' | 'layer' | 'constants'>) {
     this.#model = model;
+    this.#damped = model.damping > 0 || model.statics.spongeCell !== NONE;
     this.#heatPerVolume = setup.constants.heatCapacityJM3K * setup.layer.temperatureStepK;
     this.#snapped = setup.output.sections.map((section) => snapSection(model.grid, section));
     this.slots = new Float64Array(2 * SUM_SLOTS * this.#snapped.length + 1);
-    this.columns = this.#snapped.flatMap((snapped, k) => sectionColumns(snapped, k, model.damping > 0));
+    this.columns = this.#snapped.flatMap((snapped, k) => sectionColumns(snapped, k, this.#damped));
   }
 
   /** Adds the fluxes of one step. */
-  add(work: StepWork): void {
-    const { damping } = this.#model;
+  add(sums: StepSums): void {
+    const model = this.#model;
+    const { dxV, dy, ny } = model.grid;
+    let meridian = 0;
     this.#snapped.forEach(({ section, index }, k) => {
       const latitude = section.along === 'latitude';
-      addTo(this.slots, 2 * SUM_SLOTS * k, latitude ? this.#northward(index, 'used') : this.#eastward(index, 'used'));
-      if (latitude && damping > 0) {
-        let volume = 0;
-        for (let j = index; j < work.etaByRow.length; j++) volume += work.etaByRow[j];
-        addTo(this.slots, 2 * SUM_SLOTS * k + SUM_SLOTS, -damping * volume);
+      let flux = 0;
+      if (latitude) flux = sums.northward[index] * dxV[index];
+      else {
+        const column = sums.eastward[meridian++];
+        for (let j = 0; j < ny; j++) flux += column[j];
+        flux *= dy;
+      }
+      addTo(this.slots, 2 * SUM_SLOTS * k, flux * model.restThickness);
+      if (latitude && this.#damped) {
+        let rate = 0;
+        for (let j = index; j < ny; j++) rate += dampedVolumeRate(model, sums, j);
+        addTo(this.slots, 2 * SUM_SLOTS * k + SUM_SLOTS, rate);
       }
     });
     this.slots[this.slots.length - 1] += 1;
@@ -73,33 +86,38 @@ export class SectionRecorder {
     this.#snapped.forEach(({ section, index }, k) => {
       const mean = sumAt(this.slots, 2 * SUM_SLOTS * k) / steps;
       const latitude = section.along === 'latitude';
-      const now = latitude ? this.#northward(index, 'now') : this.#eastward(index, 'now');
+      const now = latitude ? this.#northward(index) : this.#eastward(index);
       values.push(mean / M3S_PER_SV, now / M3S_PER_SV, (mean * this.#heatPerVolume) / W_PER_PW);
       if (!latitude) return;
       values.push(volumeNorthOf(this.#model, index) / M3_PER_KM3);
-      if (this.#model.damping > 0) values.push(sumAt(this.slots, 2 * SUM_SLOTS * k + SUM_SLOTS) / steps / M3S_PER_SV);
+      if (this.#damped) values.push(sumAt(this.slots, 2 * SUM_SLOTS * k + SUM_SLOTS) / steps / M3S_PER_SV);
     });
     this.slots.fill(0);
     return Float64Array.from(values);
   }
 
-  /** Σ v H dx over a v row, m³/s: of the present state or of the flux that the last step used. */
-  #northward(row: number, which: 'now' | 'used'): number {
-    const { grid, restThickness, v } = this.#model;
-    const from = (row + 1) * grid.stride + 1;
+  /** Σ v H dx over a v row now, m³/s. */
+  #northward(row: number): number {
+    const { grid, restThickness } = this.#model;
+    const { data, offset, rowStride } = fieldOf(this.#model, 'v');
     let sum = 0;
-    for (let k = from; k < from + grid.nx; k++) sum += which === 'now' ? v.now[k] : lastHalfLevel(v, k);
+    for (let i = 0; i < grid.nx; i++) sum += data[offset + row * rowStride + i];
     return sum * grid.dxV[row] * restThickness;
   }
 
-  /** Σ u H dy over a u column, m³/s. */
-  #eastward(column: number, which: 'now' | 'used'): number {
-    const { grid, restThickness, u } = this.#model;
+  /** Σ u H dy over a u column now, m³/s. */
+  #eastward(column: number): number {
+    const { grid, restThickness } = this.#model;
+    const { data, offset, rowStride } = fieldOf(this.#model, 'u');
     let sum = 0;
-    for (let j = 0, k = grid.stride + column + 1; j < grid.ny; j++, k += grid.stride)
-      sum += which === 'now' ? u.now[k] : lastHalfLevel(u, k);
+    for (let j = 0; j < grid.ny; j++) sum += data[offset + j * rowStride + column];
     return sum * grid.dy * restThickness;
   }
+}
+
+/** The u columns of a setup's longitude sections, in their order. */
+export function meridiansOf(grid: Grid, sections: readonly Section[]): number[] {
+  return sections.filter(({ along }) => along === 'longitude').map((section) => snapSection(grid, section).index);
 }
 
 /** Columns of section k, named `<k>.transport` and so on. */

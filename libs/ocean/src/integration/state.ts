@@ -1,9 +1,10 @@
 import { float64Bytes, sha256Hex } from '../exact/bytes';
 import type { Grid } from '../grid/grid';
 import type { Setup } from '../setup';
-import { copyHistory, type Model } from '../stepper/model';
+import { copyHistory, fieldOf, fillSeam } from '../stepper/fields';
+import { forRuns, type Model } from '../stepper/model';
 import { pack, unpack } from './container';
-import { nineArrays, setNineArrays } from './levels';
+import { nineArrays, setNineArrays, shapeOf, STATE_VARIABLES } from './levels';
 import { CORE_VERSION } from './version';
 
 /** Head of the bytes of a last state. */
@@ -13,6 +14,8 @@ interface StateHead {
   step: number;
   stepsPerDay: number;
   restThicknessM: number;
+  /** Whether the arrays hold η or h; states before core version 2 are linear and do not say. */
+  equations?: Model['equations'];
   nx: number;
   ny: number;
   gridSha256: string;
@@ -32,6 +35,7 @@ export function packState(model: Model, stepsPerDay: number): Uint8Array {
     step: model.step,
     stepsPerDay,
     restThicknessM: model.restThickness,
+    equations: model.equations,
     nx: model.grid.nx,
     ny: model.grid.ny,
     gridSha256: gridHash(model.grid),
@@ -63,17 +67,47 @@ export function startFromState(model: Model, setup: Setup, bytes: Uint8Array): v
     throw new RangeError(
       `The start state lies on another grid (${state.nx} × ${state.ny} cells) than this setup's (${grid.nx} × ${grid.ny}): extents, spacing, coast and islands must be the same.`,
     );
-  setNineArrays(model, arrays);
-  shiftRestThickness(model, state.restThicknessM);
-  if (state.stepsPerDay !== setup.numerics.stepsPerDay)
-    for (const levels of [model.eta, model.u, model.v]) copyHistory(levels);
+  const from = state.equations ?? 'linear';
+  setNineArrays(model, arrays, from);
+  shiftThickness(
+    model,
+    (from === 'linear' ? state.restThicknessM : 0) - (model.equations === 'linear' ? model.restThickness : 0),
+  );
+  refuseBadState(model);
+  if (state.stepsPerDay !== setup.numerics.stepsPerDay) copyHistory(model);
 }
 
-/** η of the same h = H + η about this model's H; untouched, to the last bit, when H is the same. */
-function shiftRestThickness(model: Model, from: number): void {
-  const shift = from - model.restThickness;
+/** Adds `shift` to h at every water cell of the three levels; untouched, to the last bit, when it is 0. */
+function shiftThickness(model: Model, shift: number): void {
   if (shift === 0) return;
-  const { bounds } = model.cells;
-  for (const data of [model.eta.now, model.eta.previous, model.eta.before])
-    for (let s = 0; s < bounds.length; s += 2) for (let k = bounds[s]; k < bounds[s + 1]; k++) data[k] += shift;
+  for (const role of ['now', 'previous', 'before'] as const) {
+    const { data, offset, rowStride } = fieldOf(model, 'h', role);
+    for (let j = 0; j < model.grid.ny; j++)
+      forRuns(model.spans.cells, j, (first, end) => {
+        for (let i = first; i < end; i++) data[offset + j * rowStride + i] += shift;
+      });
+    fillSeam(model, 'h', role);
+  }
+}
+
+/** Throws RangeError when a value of a start state is not finite, or the layer of a nonlinear model is not thicker than 0. */
+function refuseBadState(model: Model): void {
+  for (const role of ['now', 'previous', 'before'] as const)
+    for (const variable of STATE_VARIABLES) {
+      const [rows, columns] = shapeOf(model.grid, variable);
+      const { data, offset, rowStride } = fieldOf(model, variable, role);
+      for (let j = 0; j < rows; j++)
+        for (let i = 0; i < columns; i++) {
+          const value = data[offset + j * rowStride + i];
+          if (!Number.isFinite(value))
+            throw new RangeError(
+              `The start state has ${variable} = ${value} at column ${i}, row ${j}; it must be finite.`,
+            );
+          const water = variable === 'h' && model.grid.mask[j * columns + i] === 1;
+          if (water && model.equations === 'nonlinear' && !(value > 0))
+            throw new RangeError(
+              `The start state has a layer of ${value} m at column ${i}, row ${j}; the nonlinear equations need one thicker than 0.`,
+            );
+        }
+    }
 }

@@ -1,68 +1,71 @@
-import ndarray, { type NdArray } from 'ndarray';
 import { CALM, type Forcing } from '../forcing/forcing';
-import { paddedLength, type Grid } from '../grid/grid';
+import type { Grid } from '../grid/grid';
 import { rowFactors, type RowFactors } from './coefficients';
-import { refuseBadOptions, type ModelOptions } from './model-options';
-import { cellSpans, coastCorners, uSpans, vSpans, type CoastCorners, type Spans } from './spans';
-
-/** Three time levels of a field and the buffer of the next; padded. */
-export interface Levels {
-  now: Float64Array;
-  previous: Float64Array;
-  before: Float64Array;
-  next: Float64Array;
-}
-
-export type Field = NdArray<Float64Array>;
+import { copyHistory, fieldOf, fillSeam, type StateVariable } from './fields';
+import { Arena, layoutOf, WEST, type Layout } from './layout';
+import { refuseBadOptions, type EntrainmentOptions, type ModelOptions } from './model-options';
+import { coastCorners, spansOf, type CoastCorners, type ModelSpans, type Spans } from './spans';
+import { fillStatics, reserveStatics, type Statics } from './statics';
+import { LINEAR_TERMS, reserveSums, sumsAt, type StepSums, type SumsPlace } from './sums';
 
 /**
- * The linear equations of numerics.md §1 on one grid: state, coefficients and scratch rows. `advanceModel` steps it.
- * Arrays are padded (see Grid); land and halos beyond walls stay exactly 0.
+ * The equations of numerics.md §1 on one grid: state, coefficients and scratch rows, in one memory that every stepper
+ * shares. Fields are reached through `viewOf`, `fieldOf` and `valueAt`; land and halos beyond walls stay exactly 0.
  */
 export interface Model {
   readonly grid: Grid;
+  readonly equations: 'linear' | 'nonlinear';
   readonly dt: number;
   readonly reducedGravity: number;
   readonly restThickness: number;
   readonly density: number;
   readonly rayleigh: number;
+  /** A where no map takes its place. */
   readonly viscosity: number;
   readonly damping: number;
   readonly slip: 'free' | 'none';
   readonly forcing: Forcing;
+  readonly minimumThickness: number;
+  readonly entrainment: EntrainmentOptions | null;
+  readonly stressFloor: number;
   /** Completed steps, absolute. */
   step: number;
-  readonly eta: Levels;
-  readonly u: Levels;
-  readonly v: Levels;
-  // Rings of four padded rows, filled and used up within a step:
-  /** Velocities at n + ½. */
-  readonly ut: Float64Array;
-  readonly vt: Float64Array;
-  /** D = div(ut, vt) and g′p − A D at cells; A s ζ at corners. */
-  readonly divergence: Float64Array;
-  readonly head: Float64Array;
-  readonly spin: Float64Array;
-  readonly coastCorners: CoastCorners;
+  /** Which level block is which level of time: `levelOffset`. Grows by one a step, modulo 4. */
+  phase: number;
+  readonly layout: Layout;
+  /** Levels, ring, static planes, one row of stress, sums. */
+  readonly data: Float64Array;
+  readonly statics: Statics;
   readonly rows: RowFactors;
-  readonly cells: Spans;
-  readonly uPoints: Spans;
-  readonly vPoints: Spans;
-  /** Factors of the forcing bases and one row of τ/(ρ0 H). */
+  readonly spans: ModelSpans;
+  readonly coastCorners: CoastCorners;
+  /** Factors of the forcing bases at n + ½. */
   readonly factors: Float64Array;
-  readonly stressRow: Float64Array;
+  /** Offset of one padded row of τ/(ρ0 H) (linear) or τ/ρ0 (nonlinear). */
+  readonly stress: number;
+  readonly sumsPlace: SumsPlace;
+  /** Views of the step's sums; written when a step is asked for them. */
+  readonly sums: StepSums;
 }
 
 /** A model at rest at step 0. Throws RangeError naming a coefficient that is not finite or has the wrong sign. */
 export function createModel(options: ModelOptions): Model {
   refuseBadOptions(options);
-  const { grid, dt, reducedGravity, restThickness } = options;
+  const { grid, dt, reducedGravity, restThickness, equations = 'linear' } = options;
   const { density = 1025, rayleigh = 0, viscosity = 0, damping = 0, slip = 'free', forcing = CALM } = options;
-  const field = () => new Float64Array(paddedLength(grid));
-  const levels = (): Levels => ({ now: field(), previous: field(), before: field(), next: field() });
-  const ring = () => new Float64Array(4 * grid.stride);
+  const { minimumThickness = 0, entrainment = null, stressFloor = 0, meridians = [] } = options;
+  const layout = layoutOf(grid, equations);
+  const arena = new Arena(layout.length);
+  const { statics, fills } = reserveStatics(arena, layout, options, forcing);
+  const stress = arena.reserve(layout.pitch);
+  const sumsPlace = reserveSums(arena, grid.ny, LINEAR_TERMS, meridians);
+  const bytes = 8 * arena.length;
+  const { buffer, byteOffset } = options.allocate?.(bytes) ?? { buffer: new ArrayBuffer(bytes), byteOffset: 0 };
+  const data = new Float64Array(buffer, byteOffset, arena.length);
+  fillStatics(data, layout, grid.periodic, fills);
   return {
     grid,
+    equations,
     dt,
     reducedGravity,
     restThickness,
@@ -72,27 +75,27 @@ export function createModel(options: ModelOptions): Model {
     damping,
     slip,
     forcing,
+    minimumThickness,
+    entrainment,
+    stressFloor,
     step: 0,
-    eta: levels(),
-    u: levels(),
-    v: levels(),
-    ut: ring(),
-    vt: ring(),
-    divergence: ring(),
-    head: ring(),
-    spin: ring(),
-    coastCorners: coastCorners(grid),
+    phase: 0,
+    layout,
+    data,
+    statics,
     rows: rowFactors(grid),
-    cells: cellSpans(grid),
-    uPoints: uSpans(grid),
-    vPoints: vSpans(grid),
+    spans: spansOf(grid),
+    coastCorners: coastCorners(grid),
     factors: new Float64Array(forcing.bases.length),
-    stressRow: new Float64Array(grid.stride),
+    stress,
+    sumsPlace,
+    sums: sumsAt(data, sumsPlace, grid.ny),
   };
 }
 
 /** Values of an initial state: numbers at (column, row) of the field's own points; left out means 0. */
 export interface InitialValues {
+  /** h − H, m. */
   eta?: (i: number, j: number) => number;
   u?: (i: number, j: number) => number;
   v?: (i: number, j: number) => number;
@@ -100,48 +103,36 @@ export interface InitialValues {
 
 /**
  * Sets the present state on water points and copies it to the two levels before (one local error of order dt²).
- * Throws RangeError when a value is not finite.
+ * Throws RangeError when a value is not finite, or a nonlinear layer would be no thicker than 0.
  */
 export function setState(model: Model, values: InitialValues): void {
-  const fill = (name: 'eta' | 'u' | 'v', levels: Levels, spans: Spans) => {
-    const { stride } = model.grid;
-    levels.now.fill(0);
+  const base = model.equations === 'nonlinear' ? model.restThickness : 0;
+  const fill = (name: 'eta' | 'u' | 'v', variable: StateVariable, spans: Spans, rest: number) => {
+    const { data, offset, rowStride } = fieldOf(model, variable);
     const at = values[name];
-    if (at)
-      for (let k = 0; k < spans.bounds.length; k += 2)
-        for (let p = spans.bounds[k]; p < spans.bounds[k + 1]; p++) {
-          const value = at((p % stride) - 1, Math.floor(p / stride) - 1);
+    for (let j = 0; j + 1 < spans.rowStart.length; j++)
+      forRuns(spans, j, (first, end) => {
+        for (let i = first; i < end; i++) {
+          const value = at?.(i, j) ?? 0;
           if (!Number.isFinite(value))
             throw new RangeError(`The start state has ${name} = ${value} at a water point; it must be finite.`);
-          levels.now[p] = value;
+          if (rest > 0 && !(rest + value > 0))
+            throw new RangeError(
+              `The start state has a layer of ${rest + value} m at column ${i}, row ${j}; it must be thicker than 0.`,
+            );
+          data[offset + j * rowStride + i] = rest > 0 ? rest + value : value; // 0 + (−0) would not be −0
         }
-    fillSeam(model.grid, levels.now);
-    copyHistory(levels);
+      });
+    fillSeam(model, variable);
   };
-  fill('eta', model.eta, model.cells);
-  fill('u', model.u, model.uPoints);
-  fill('v', model.v, model.vPoints);
+  fill('eta', 'h', model.spans.cells, base);
+  fill('u', 'u', model.spans.uPoints, 0);
+  fill('v', 'v', model.spans.vPoints, 0);
+  copyHistory(model);
 }
 
-/** Rebuilds the two older levels as copies of the present one. */
-export function copyHistory(levels: Levels): void {
-  levels.previous.set(levels.now);
-  levels.before.set(levels.now);
-}
-
-/** Periodic copies of the first and last columns into the halo; nothing on a closed grid. */
-export function fillSeam(grid: Grid, data: Float64Array): void {
-  if (!grid.periodic) return;
-  const { nx, stride } = grid;
-  for (let base = 0; base < data.length; base += stride) {
-    data[base] = data[base + nx];
-    data[base + nx + 1] = data[base + 1];
-  }
-}
-
-/** Logical views without halos: η and cells [ny][nx], u [ny][nx + 1], v [ny + 1][nx]; they share the data. */
-export function viewOf(grid: Grid, variable: 'eta' | 'u' | 'v', data: Float64Array): Field {
-  const { nx, ny, stride } = grid;
-  const shape = variable === 'eta' ? [ny, nx] : variable === 'u' ? [ny, nx + 1] : [ny + 1, nx];
-  return ndarray(data, shape, [stride, 1], stride + 1);
+/** Calls `run` with the first and the end column (cells counted from 0) of each run of row j. */
+export function forRuns(spans: Spans, j: number, run: (first: number, end: number) => void): void {
+  for (let s = spans.rowStart[j]; s < spans.rowStart[j + 1]; s++)
+    run(spans.bounds[2 * s] - WEST, spans.bounds[2 * s + 1] - WEST);
 }
