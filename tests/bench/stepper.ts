@@ -1,92 +1,278 @@
 import {
-  buildGrid,
   createModel,
   Integration,
   SECONDS_PER_DAY,
-  stepModel,
+  buildGrid,
   windForcing,
   type Model,
+  type ModelOptions,
   type Setup,
 } from '@halfdeep/ocean';
+import { setState } from '../../libs/ocean/src/stepper/model';
+import { createStepper, type Stepper } from '../../libs/ocean/src/stepper/stepper';
 import { corvaneForCheck } from '../../libs/ocean/src/testing/setups';
 import { timed } from './cpu';
+import { differenceFrom, NativeStepper, numpyCommand, type NativePrograms, type Spent } from './native';
 
-/** Millions of cell-steps a second of CPU, dry cells counted: the best of interleaved chunks. */
+export type Equations = 'linear' | 'nonlinear';
+export const GRIDS = [
+  [128, 96],
+  [300, 200],
+  [1000, 600],
+  [2000, 1200],
+] as const;
+/** The grids whose checkpoints are timed. */
+const CHECKPOINT_GRIDS = GRIDS.slice(0, 3);
+
+/** What is measured on each grid; `simd` steps by the compiled kernel, `native` and `sse2` are the C reference. */
+export const STEPPERS = ['simd', 'reference', 'native', 'sse2', 'numpy', 'numpyPlain'] as const;
+export type StepperName = (typeof STEPPERS)[number];
+
+/** One grid of one mode. Millions of cell-steps a second of CPU, dry cells counted: the best of interleaved chunks. */
 export interface StepperRow {
   grid: string;
   cells: number;
-  /** The step alone. */
-  plain: number;
+  /** Of the stepper that runs take by default. */
+  mcs: number;
+  kernel: 'simd' | 'reference';
+  /** Of every stepper; null where it cannot run here. */
+  speeds: Record<StepperName, number | null>;
+  /** mcs over the speed of each; null where there is none. */
+  vsNativeC: number | null;
+  vsSse2C: number | null;
+  vsNumPy: number | null;
+  vsNumPyPlain: number | null;
+  vsReference: number | null;
+  /** Reference over native C. */
+  referenceVsNativeC: number | null;
+  /** Two threads over one, by the clock on the wall; null where the kernel has one thread. */
+  threads2: number | null;
   /** With the work of every term and the sections added up every step, and the state checked: what a run does. */
   recording: number;
-  /** plain / recording. */
+  /** mcs / recording. */
   factor: number;
+  /** Bytes of the model's memory a cell. */
+  bytesPerCell: number;
+  /** Bytes that a step by itself moves between memory and core for a cell: nine values read, three written. */
+  movedPerCellStep: number;
+  /** mcs times those bytes over STREAM's bandwidth; more than 1 when several steps are made while rows are in cache. */
+  streamFraction: number | null;
+  /** Whether every stepper left the same bits as the reference. */
+  sameBits: boolean;
 }
 
-const GRIDS = [
-  [128, 96],
-  [240, 140],
-  [300, 200],
-  [1000, 600],
-] as const;
-const ROUNDS = 5;
-/** Cell-steps of one chunk. */
-const CHUNK = 1.2e7;
-
 /** The Corvane setup on nx × ny cells, with a step that is stable there and a length beyond what the bench steps. */
-export function corvaneOn(nx: number, ny: number): Setup {
+export function corvaneOn(nx: number, ny: number, equations: Equations = 'linear'): Setup {
   const setup = corvaneForCheck();
   const extent = { zonal: 60, meridional: 35 };
   const coarsest = Math.max(extent.zonal / nx, extent.meridional / ny) / 0.25;
   const finest = Math.min(extent.zonal / nx, extent.meridional / ny) / 0.25;
+  const perDay = equations === 'linear' ? 4 : 5;
   return {
     ...setup,
+    layer: {
+      ...setup.layer,
+      minimumThicknessM: 20,
+      entrainment: equations === 'linear' ? null : { onsetThicknessM: 60, timescaleDays: 10, detrainment: 'none' },
+    },
     friction: { ...setup.friction, viscosityM2S: 4000 * finest },
     numerics: {
-      equations: 'linear',
+      equations,
       spacingLongitudeDeg: extent.zonal / nx,
       spacingLatitudeDeg: extent.meridional / ny,
-      stepsPerDay: 4 * Math.ceil((4 * Math.max(1, coarsest)) / Math.min(1, finest)),
+      stepsPerDay: 4 * Math.ceil((perDay * Math.max(1, coarsest)) / Math.min(1, finest)),
     },
   };
 }
 
-export async function benchStepper(): Promise<StepperRow[]> {
-  const rows: StepperRow[] = [];
-  for (const [nx, ny] of GRIDS) {
-    const setup = corvaneOn(nx, ny);
-    const model = plainModel(setup);
-    const run = Integration.start(setup);
-    const cells = nx * ny;
-    const steps = Math.max(20, 20 * Math.round(CHUNK / cells / 20));
-    const best = { plain: 0, recording: 0 };
-    for (let round = 0; round < ROUNDS; round++) {
-      const plain = await timed(() => {
-        for (let n = 0; n < steps; n++) stepModel(model);
-      });
-      const recording = await timed(() => run.advance(steps));
-      best.plain = Math.max(best.plain, (cells * steps) / plain / 1e6);
-      best.recording = Math.max(best.recording, (cells * steps) / recording / 1e6);
-    }
-    rows.push({ grid: `${nx} × ${ny}`, cells, ...best, factor: best.plain / best.recording });
-  }
-  return rows;
-}
-
-function plainModel(setup: Setup): Model {
+/** Options of a model of a setup without sponges and maps of viscosity, which is what the references know. */
+function optionsOf(setup: Setup): ModelOptions {
   const grid = buildGrid(setup);
-  return createModel({
+  const { layer, numerics, wind } = setup;
+  const { entrainment } = layer;
+  return {
     grid,
-    dt: SECONDS_PER_DAY / setup.numerics.stepsPerDay,
-    reducedGravity: setup.layer.reducedGravityMS2,
-    restThickness: setup.layer.restThicknessM,
+    equations: numerics.equations,
+    dt: SECONDS_PER_DAY / numerics.stepsPerDay,
+    reducedGravity: layer.reducedGravityMS2,
+    restThickness: layer.restThicknessM,
     density: setup.constants.densityKgM3,
     rayleigh: setup.friction.rayleighPerS,
     viscosity: setup.friction.viscosityM2S,
-    damping: setup.layer.dampingPerS,
+    damping: layer.dampingPerS,
     slip: setup.friction.slip,
     forcing: windForcing(setup, grid),
+    minimumThickness: numerics.equations === 'nonlinear' ? layer.minimumThicknessM : 0,
+    entrainment:
+      numerics.equations === 'nonlinear' && entrainment
+        ? {
+            onsetThickness: entrainment.onsetThicknessM,
+            timescale: entrainment.timescaleDays * SECONDS_PER_DAY,
+            detrainment: entrainment.detrainment,
+          }
+        : null,
+    stressFloor: wind.stressFloorM,
+  };
+}
+
+/** A model in motion: a bump and currents, so that no stepper works on zeros (and none on denormal numbers). */
+function movingModel(setup: Setup): Model {
+  const model = createModel(optionsOf(setup));
+  const { nx, ny } = model.grid;
+  const wave = (i: number, j: number) => Math.sin((6.28 * i) / nx + 1) * Math.cos((9.42 * j) / ny);
+  setState(model, {
+    eta: (i, j) => 8 * wave(i, j),
+    u: (i, j) => 0.05 * wave(i + nx / 3, j),
+    v: (i, j) => 0.03 * wave(i, j + ny / 4),
   });
+  return model;
+}
+
+/** A stepper on trial: `run` makes steps and says what they took. */
+interface Runner {
+  name: StepperName;
+  run: (steps: number) => Promise<Spent>;
+  /** What differs from the reference after the same number of steps, or null. */
+  difference: (reference: Model) => Promise<string | null>;
+  close: () => Promise<void>;
+}
+
+async function inProcess(name: 'simd' | 'reference', setup: Setup): Promise<{ runner: Runner; model: Model }> {
+  const model = movingModel(setup);
+  const stepper: Stepper = createStepper(model, { kernel: name });
+  const runner: Runner = {
+    name,
+    run: async (steps) => {
+      const wall = performance.now();
+      const cpu = await timed(() => stepper.advance(steps));
+      return { cpu, wall: (performance.now() - wall) / 1000 };
+    },
+    difference: async (reference) => sameLevels(reference, model),
+    close: async () => undefined,
+  };
+  return { runner, model };
+}
+
+/** Sentence about the first of the levels' numbers that differs, or null. */
+function sameLevels(a: Model, b: Model): string | null {
+  for (const offset of a.layout.levels)
+    for (let k = offset; k < offset + a.layout.levelLength; k++)
+      if (!Object.is(a.data[k], b.data[k])) return `number ${k} is ${b.data[k]} against ${a.data[k]}`;
+  return null;
+}
+
+async function inChild(name: StepperName, command: readonly string[], setup: Setup): Promise<Runner> {
+  const stepper = await NativeStepper.start(command, movingModel(setup));
+  return {
+    name,
+    run: (steps) => stepper.run(steps),
+    difference: (reference) => differenceFrom(reference, stepper, name.startsWith('numpy') ? 'alike' : 'exact'),
+    close: () => stepper.close(),
+  };
+}
+
+const ROUNDS = 5;
+/** Cell-steps of one chunk. */
+const CHUNK: Record<StepperName, number> = {
+  simd: 2.4e7,
+  reference: 1e7,
+  native: 2.4e7,
+  sse2: 2.4e7,
+  numpy: 4e6,
+  numpyPlain: 4e6,
+};
+/** Whole numbers of this many steps: the compiled kernel makes four steps a sweep out of cache. */
+const STEPS_OF = 4;
+
+function stepsOf(name: StepperName, cells: number): number {
+  return STEPS_OF * Math.max(1, Math.round(CHUNK[name] / cells / STEPS_OF));
+}
+
+/** All steppers on one grid, chunk by chunk in turn. `bandwidth`: of STREAM, bytes a second. */
+export async function benchGrid(
+  equations: Equations,
+  [nx, ny]: readonly [number, number],
+  programs: NativePrograms | null,
+  bandwidth: number | null,
+): Promise<StepperRow> {
+  const setup = corvaneOn(nx, ny, equations);
+  const cells = nx * ny;
+  const runners: Runner[] = [];
+  try {
+    const { runner: referenceRunner, model } = await inProcess('reference', setup);
+    runners.push(referenceRunner);
+    if (hasKernel(setup)) runners.push((await inProcess('simd', setup)).runner);
+    if (programs)
+      for (const name of ['native', 'sse2'] as const) runners.push(await inChild(name, [programs[name]], setup));
+    for (const [name, style] of [
+      ['numpy', 'out'],
+      ['numpyPlain', 'plain'],
+    ] as const) {
+      const command = numpyCommand(style);
+      if (command) runners.push(await inChild(name, command, setup));
+    }
+    // First the proof that all of them compute the same, which also warms them up.
+    const warm = Math.max(8, 4 * Math.round(4e5 / cells));
+    for (const runner of runners) await runner.run(warm);
+    for (const runner of runners) {
+      const difference = await runner.difference(model);
+      if (difference !== null)
+        throw new Error(`${equations}, ${nx} × ${ny}: ${runner.name} differs from the reference: ${difference}.`);
+    }
+    const run = Integration.start(setup);
+    const best = new Map<StepperName | 'recording', number>();
+    const keep = (name: StepperName | 'recording', steps: number, seconds: number) =>
+      best.set(name, Math.max(best.get(name) ?? 0, (cells * steps) / seconds / 1e6));
+    for (let round = 0; round < ROUNDS; round++) {
+      for (const { name, run: advance } of runners) {
+        const steps = stepsOf(name, cells);
+        keep(name, steps, (await advance(steps)).cpu);
+      }
+      const steps = 20 * Math.max(1, Math.round(CHUNK.reference / cells / 20));
+      keep('recording', steps, await timed(() => run.advance(steps)));
+    }
+    const speeds = Object.fromEntries(STEPPERS.map((name) => [name, best.get(name) ?? null])) as Record<
+      StepperName,
+      number | null
+    >;
+    const kernel = speeds.simd === null ? 'reference' : 'simd';
+    const mcs = speeds[kernel]!;
+    const over = (name: StepperName) => (speeds[name] === null ? null : mcs / speeds[name]);
+    const recording = best.get('recording')!;
+    const moved = movedPerCellStep(model);
+    return {
+      grid: `${nx}x${ny}`,
+      cells,
+      mcs,
+      kernel,
+      speeds,
+      vsNativeC: over('native'),
+      vsSse2C: over('sse2'),
+      vsNumPy: over('numpy'),
+      vsNumPyPlain: over('numpyPlain'),
+      vsReference: over('reference'),
+      referenceVsNativeC: speeds.native === null ? null : speeds.reference! / speeds.native,
+      threads2: null,
+      recording,
+      factor: mcs / recording,
+      bytesPerCell: model.data.byteLength / cells,
+      movedPerCellStep: moved,
+      streamFraction: bandwidth === null ? null : (mcs * 1e6 * moved) / bandwidth,
+      sameBits: true,
+    };
+  } finally {
+    for (const runner of runners) await runner.close();
+  }
+}
+
+function hasKernel(_setup: Setup): boolean {
+  return false;
+}
+
+/** Three levels of h, u and v read and one written; fields of stress, one a basis and component, read. */
+function movedPerCellStep({ statics }: Model): number {
+  const fields = [...statics.tauX, ...statics.tauY].filter((plane) => plane >= 0).length;
+  return 8 * (9 + 3 + fields);
 }
 
 /** Size of a checkpoint and CPU seconds to make and to restore one. */
@@ -99,11 +285,11 @@ export interface CheckpointRow {
 
 export async function benchCheckpoints(): Promise<CheckpointRow[]> {
   const rows: CheckpointRow[] = [];
-  for (const [nx, ny] of GRIDS) {
+  for (const [nx, ny] of CHECKPOINT_GRIDS) {
     const setup = corvaneOn(nx, ny);
     const run = Integration.start(setup);
     run.advance(20);
-    const row = { grid: `${nx} × ${ny}`, megabytes: 0, makeSeconds: Infinity, restoreSeconds: Infinity };
+    const row = { grid: `${nx}x${ny}`, megabytes: 0, makeSeconds: Infinity, restoreSeconds: Infinity };
     for (let round = 0; round < 3; round++) {
       let bytes = new Uint8Array();
       row.makeSeconds = Math.min(
