@@ -16,11 +16,15 @@ function wanted() {
   return hash.digest('hex');
 }
 
-/** True when the packages were put there by hand (npm ci) after the lock file was written, and sqlite3 loads. */
-function installedByHand() {
+/** True when the packages were put there (npm ci) after the lock file was written. */
+function packagesThere() {
   const hidden = join(root, 'node_modules', '.package-lock.json');
-  if (!existsSync(hidden) || !existsSync(binding)) return false;
-  if (statSync(hidden).mtimeMs < statSync(join(root, 'package-lock.json')).mtimeMs) return false;
+  return existsSync(hidden) && statSync(hidden).mtimeMs >= statSync(join(root, 'package-lock.json')).mtimeMs;
+}
+
+/** True when that was done by hand, and sqlite3 loads. */
+function installedByHand() {
+  if (!packagesThere() || !existsSync(binding)) return false;
   return spawnSync(process.execPath, ['-e', 'require("sqlite3")'], { cwd: root }).status === 0;
 }
 
@@ -52,19 +56,31 @@ function checkCompiler() {
   return headers ? { npm_config_nodedir: prefix } : {};
 }
 
-export async function install() {
+// NODE_ENV=production would leave the build tools out.
+const quiet = ['--no-audit', '--no-fund', '--no-progress', '--loglevel=error'];
+async function installPackages(env) {
+  if ((await exitCode('npm', ['ci', '--ignore-scripts', '--include=dev', ...quiet], { env })) !== 0)
+    stop('The packages could not be installed; the message above says why.');
+}
+
+/** `database: false`: the packages alone, for what needs no database; sqlite3 is not compiled then. */
+export async function install({ database = true } = {}) {
   const [major, minor] = process.versions.node.split('.').map(Number);
   if (major < 20 || (major === 20 && minor < 19))
     stop(`Halfdeep needs Node.js 20.19 or newer; this is ${process.versions.node}.`);
   const stamp = wanted();
   if (existsSync(stampFile) && readFileSync(stampFile, 'utf8') === stamp && existsSync(binding)) return;
+  if (!database) {
+    if (!packagesThere()) {
+      console.log('Installing the packages …');
+      await installPackages(process.env);
+    }
+    return;
+  }
   if (!installedByHand()) {
     console.log('Installing the packages; the database driver is compiled, which takes a minute or two …');
     const env = { ...process.env, ...checkCompiler(), CFLAGS: '-O1', CXXFLAGS: '-O1' };
-    const quiet = ['--no-audit', '--no-fund', '--no-progress', '--loglevel=error'];
-    // NODE_ENV=production would leave the build tools out.
-    if ((await exitCode('npm', ['ci', '--ignore-scripts', '--include=dev', ...quiet], { env })) !== 0)
-      stop('The packages could not be installed; the message above says why.');
+    await installPackages(env);
     env.npm_config_build_from_source = 'sqlite3';
     if ((await exitCode('npm', ['rebuild', 'sqlite3', ...quiet], { env })) !== 0 || !existsSync(binding))
       stop('The database driver could not be compiled; the message above says why.');
