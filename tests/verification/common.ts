@@ -1,4 +1,4 @@
-import { createModel, type Grid, type Model, type ModelOptions } from '@halfdeep/ocean';
+import { createModel, createStepper, type Grid, type Model, type ModelOptions, type Stepper } from '@halfdeep/ocean';
 
 // Constants that most cases share: c = √(g′H) = 2.5 m/s exactly.
 export const g = 0.04;
@@ -27,6 +27,15 @@ export function stepsFor(duration: number, longest: number): { steps: number; dt
 /** A model with the common layer. */
 export function commonModel(options: Omit<ModelOptions, 'reducedGravity' | 'restThickness' | 'density'>): Model {
   return createModel({ reducedGravity: g, restThickness: H, density: rho0, ...options });
+}
+
+const steppers = new WeakMap<Model, Stepper>();
+
+/** Makes `steps` steps of a model with the fastest kernel that suits it. */
+export function advance(model: Model, steps = 1): void {
+  let stepper = steppers.get(model);
+  if (!stepper) steppers.set(model, (stepper = createStepper(model)));
+  stepper.advance(steps);
 }
 
 /** Relative L2 error of found against expected. */

@@ -1,7 +1,22 @@
 import { Matrix, solve } from 'ml-matrix';
 import { describe, expect, it } from 'vitest';
 import { forcingFromFunctions, planeGrid, setState, valueAt, type Grid } from '@halfdeep/ocean';
-import { advance, beta, c, commonModel, commonStep, DAY, g, H, harmonicOf, L, order, rho0, stepsFor, T } from './common';
+import {
+  advance,
+  beta,
+  c,
+  commonModel,
+  commonStep,
+  DAY,
+  g,
+  H,
+  harmonicOf,
+  L,
+  order,
+  rho0,
+  stepsFor,
+  T,
+} from './common';
 import { convergencePlate, profilePlate } from './plates';
 import { proveCase } from './record';
 
@@ -176,10 +191,15 @@ describe('wind without pumping, τx = a y', () => {
         ...(id !== 'v' && { order: order(coarse[id], fine[id]), orderRange: [1.7, 2.3] as [number, number] }),
         resolution: id === 'v' ? 'dy = L/8' : resolution,
         ...(id === 'u' && {
-          plate: convergencePlate('Errors of the seasonal response to τx = a y against the spacing.', 'spacing, L', [1 / 8, 1 / 16], [
-            { name: 'u', values: [coarse.u, fine.u] },
-            { name: 'η', values: [coarse.eta, fine.eta] },
-          ]),
+          plate: convergencePlate(
+            'Errors of the seasonal response to τx = a y against the spacing.',
+            'spacing, L',
+            [1 / 8, 1 / 16],
+            [
+              { name: 'u', values: [coarse.u, fine.u] },
+              { name: 'η', values: [coarse.eta, fine.eta] },
+            ],
+          ),
         }),
       });
   });
@@ -242,11 +262,15 @@ describe('wind without pumping, τx = a y', () => {
           tolerance: 0.05,
           resolution: 'dx = 50 km, closed basin',
           ...(k === 0 && {
-            plate: profilePlate('Northward transport per width along the equator on day 60, and −a/(ρ0 β).', ['eastward, km', 'V, m²/s'], [
-              { name: '−a/(ρ0 β)', role: 'expected', x: [0, 8000], y: [PER_WIDTH, PER_WIDTH] },
-              // The western boundary current, a hundred times as strong, is left out.
-              { name: 'found', role: 'found', x: along.map((_v, i) => 50 * (i + 14.5)), y: along },
-            ]),
+            plate: profilePlate(
+              'Northward transport per width along the equator on day 60, and −a/(ρ0 β).',
+              ['eastward, km', 'V, m²/s'],
+              [
+                { name: '−a/(ρ0 β)', role: 'expected', x: [0, 8000], y: [PER_WIDTH, PER_WIDTH] },
+                // The western boundary current, a hundred times as strong, is left out.
+                { name: 'found', role: 'found', x: along.map((_v, i) => 50 * (i + 14.5)), y: along },
+              ],
+            ),
           }),
         }),
       );

@@ -43,10 +43,14 @@ describe('Stommel gyre (Stommel 1948)', () => {
       obtained: fine.transport,
       tolerance: 4e-3,
       resolution: 'dx = 25 km',
-      plate: profilePlate('Northward velocity across the middle of the Stommel gyre, found at 25 km and exact.', ['eastward, km', 'v, m/s'], [
-        { name: 'exact', role: 'expected', x: axis(25), y: axis(25).map((x) => exact.v(x * 1e3, SIDE / 2)) },
-        { name: 'found', role: 'found', x: axis(25), y: fine.across },
-      ]),
+      plate: profilePlate(
+        'Northward velocity across the middle of the Stommel gyre, found at 25 km and exact.',
+        ['eastward, km', 'v, m/s'],
+        [
+          { name: 'exact', role: 'expected', x: axis(25), y: axis(25).map((x) => exact.v(x * 1e3, SIDE / 2)) },
+          { name: 'found', role: 'found', x: axis(25), y: fine.across },
+        ],
+      ),
     });
     expect(miss(middle)).toBeLessThan(1.2e-2);
     expect(miss(coarse)).toBeLessThan(0.1);
@@ -62,10 +66,15 @@ describe('Stommel gyre (Stommel 1948)', () => {
       order: order(middle.psi, fine.psi),
       orderRange: [1.8, 2.2],
       resolution: 'dx = 25 km; order from 50 and 25 km',
-      plate: convergencePlate('Errors of the Stommel gyre against the spacing.', 'spacing, km', [100, 50, 25], [
-        { name: 'ψ, L2', values: runs.map(({ psi }) => psi) },
-        { name: 'transport', values: runs.map(miss) },
-      ]),
+      plate: convergencePlate(
+        'Errors of the Stommel gyre against the spacing.',
+        'spacing, km',
+        [100, 50, 25],
+        [
+          { name: 'ψ, L2', values: runs.map(({ psi }) => psi) },
+          { name: 'transport', values: runs.map(miss) },
+        ],
+      ),
     });
   });
 });
