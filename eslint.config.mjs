@@ -10,7 +10,13 @@ const boundary = (files, patterns) => ({
 const ours = (names, message) => ({ group: names.flatMap((n) => [`@halfdeep/${n}`, `@halfdeep/${n}/*`]), message });
 
 export default tseslint.config(
-  { ignores: ['dist/', 'var/', 'node_modules/', '.angular/', 'coverage/', 'test-results/', 'playwright-report/'] },
+  {
+    ignores: [
+      ...['dist/', 'var/', 'node_modules/', '.angular/', 'coverage/', 'test-results/', 'playwright-report/'],
+      // Compiled by AssemblyScript, and what that makes.
+      ...['**/*.as.ts', 'libs/ocean/src/kernel/generated/'],
+    ],
+  },
   {
     files: ['**/*.ts'],
     extends: [eslint.configs.recommended, ...tseslint.configs.recommendedTypeChecked, ...tseslint.configs.stylistic],

@@ -2,9 +2,16 @@
 import { pathToFileURL } from 'node:url';
 import { join } from 'node:path';
 import { root, run } from './run.mjs';
+import { buildKernel } from './build-kernel.mjs';
 import { digest, isFresh, markBuilt } from './stale.mjs';
 
-const common = ['package-lock.json', 'tsconfig.base.json', 'libs/ocean/src', 'libs/contracts/src'];
+const common = [
+  'package-lock.json',
+  'tsconfig.base.json',
+  'libs/workspace/build-kernel.mjs',
+  'libs/ocean/src',
+  'libs/contracts/src',
+];
 const inputs = {
   web: [...common, 'angular.json', 'apps/web/tsconfig.app.json', 'apps/web/src', 'apps/web/public', 'fonts'],
   server: [...common, 'libs/store/src', 'libs/queue/src', 'apps/api/src', 'worker/src', 'libs/workspace/build.mjs'],
@@ -31,6 +38,7 @@ async function buildServer() {
 
 /** Builds every target that is not fresh. */
 export async function buildStale() {
+  await buildKernel();
   const server = digest(inputs.server);
   if (!isFresh('server', server)) {
     console.log('Building the server …');

@@ -8,18 +8,21 @@ function* filesUnder(path) {
   for (const entry of readdirSync(path, { withFileTypes: true })) {
     const child = join(path, entry.name);
     if (entry.isDirectory()) {
-      if (entry.name !== 'node_modules') yield* filesUnder(child);
+      if (!['node_modules', 'generated'].includes(entry.name)) yield* filesUnder(child);
     } else if (!/\.(spec|test)\.ts$/.test(entry.name)) yield child;
   }
 }
 
-/** SHA-256 over names and contents of everything below the given files and folders, tests left out. */
-export function digest(paths) {
+/**
+ * SHA-256 over names and contents of everything below the given files and folders; tests and what is generated left out.
+ * `takes` may leave out more.
+ */
+export function digest(paths, takes = () => true) {
   const hash = createHash('sha256').update(process.versions.node);
   for (const path of paths) {
     const full = join(root, path);
     const files = /\.[a-z]+$/.test(path) ? [full] : [...filesUnder(full)].sort();
-    for (const file of files) hash.update(relative(root, file)).update(readFileSync(file));
+    for (const file of files.filter(takes)) hash.update(relative(root, file)).update(readFileSync(file));
   }
   return hash.digest('hex');
 }
@@ -28,6 +31,10 @@ const stampOf = (target) => join(root, 'dist', `.${target}-built-from`);
 
 export function isFresh(target, wanted) {
   return existsSync(stampOf(target)) && readFileSync(stampOf(target), 'utf8') === wanted;
+}
+
+export function existsAll(files) {
+  return files.every((file) => existsSync(file));
 }
 
 export function markBuilt(target, wanted) {
