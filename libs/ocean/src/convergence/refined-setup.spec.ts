@@ -66,6 +66,19 @@ describe('refinedSetup', () => {
     expect(refinedSetup(withBasin({ islands: [] }), 2, 'same').setup.basin.coastSpacing).toBeNull();
   });
 
+  it('divides the land cells of the parent 2 × 2 when the coast stays', () => {
+    const parent = { ...corvaneForCheck(), output: { ...corvaneForCheck().output, moorings: [] } };
+    const coarse = buildGrid(parent);
+    const fine = buildGrid(refinedSetup(parent, 2, 'same').setup);
+    const divided = Uint8Array.from(
+      { length: fine.nx * fine.ny },
+      (_, k) => coarse.mask[(Math.floor(k / fine.nx) >> 1) * coarse.nx + ((k % fine.nx) >> 1)],
+    );
+    expect(fine.mask.every((wet, k) => wet === divided[k])).toBe(true);
+    const anew = buildGrid(refinedSetup(parent, 2, 'anew').setup);
+    expect(anew.mask.every((wet, k) => wet === divided[k])).toBe(false);
+  });
+
   it('keeps the edges that snapping gave the parent, and its coast on its line', () => {
     const parent = withBasin({
       southDeg: -8.2,

@@ -1,11 +1,11 @@
 import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
 import { type Run } from '@halfdeep/contracts';
-import { buildGrid } from '@halfdeep/ocean';
 import { formatNumber, formatQuantity } from '../core/format';
 import { type GrowingSlice } from '../core/growing-rows';
 import { type PlotLink } from '../shared/plate/plot-link';
 import { VerdictSign } from '../shared/verdict/verdict';
 import { CLOSES_BELOW, columnIndex, energyClosure, largestMassResidual } from './energy-closure';
+import { restMassGt } from './rest-mass';
 import { sameSetup } from './same-setup';
 import { type CurveSpec, SeriesPlate } from './series-plate';
 
@@ -13,7 +13,6 @@ const SECONDS_PER_DAY = 86_400;
 /** PJ an interval to GW; Gt an interval to thousands of tonnes a second. */
 const GW_PER_PJ_A_SECOND = 1e6;
 const KT_PER_GT = 1e6;
-const KG_PER_GT = 1e12;
 
 /** Energy and mass of the basin: what goes in, what comes out, and what is not accounted for. */
 @Component({
@@ -106,13 +105,7 @@ export class BudgetPlates {
   });
 
   /** Mass of the layer at rest is what a residual of mass is held against, Gt. */
-  private readonly restMass = computed(() => {
-    const { constants, layer } = this.setup();
-    const { nx, ny, mask, dxC, dy } = buildGrid(this.setup());
-    let area = 0;
-    for (let j = 0; j < ny; j++) for (let i = 0; i < nx; i++) area += (mask[j * nx + i] ?? 0) * (dxC[j] ?? 0) * dy;
-    return (area * layer.restThicknessM * constants.densityKgM3) / KG_PER_GT;
-  });
+  private readonly restMass = computed(() => restMassGt(this.setup()));
   private readonly massResidual = computed(() => largestMassResidual(this.slice()));
   protected readonly massCloses = computed(() => this.massResidual() / this.restMass() < CLOSES_BELOW);
   protected readonly mass = computed<CurveSpec[]>(() => {

@@ -20,6 +20,7 @@ import { DataState } from '../shared/data-state/data-state';
 import { PlotLink } from '../shared/plate/plot-link';
 import { ProblemMessage } from '../shared/problem-message/problem-message';
 import { BudgetPlates } from './budget-plates';
+import { Evidence } from './evidence/evidence';
 import { HovmollerPlate } from './hovmoller-plate';
 import { MapPlate } from './map-plate';
 import { MooringPlates } from './mooring-plates';
@@ -32,6 +33,7 @@ const PARTS = [
   { id: 'transports', name: 'Transports' },
   { id: 'budgets', name: 'Budgets' },
   { id: 'moorings', name: 'Moorings' },
+  { id: 'evidence', name: 'Evidence' },
   { id: 'setup-and-descent', name: 'Setup and descent' },
 ] as const;
 
@@ -41,6 +43,7 @@ const PARTS = [
   imports: [
     BudgetPlates,
     DataState,
+    Evidence,
     HovmollerPlate,
     MapPlate,
     MooringPlates,
