@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { buildGrid, deriveMap, Integration, stressAt, type Setup, type WindComponent } from '@halfdeep/ocean';
 import { corvaneForCheck, smallSetup } from '../../libs/ocean/src/testing/setups';
+import { proveCase } from './record';
 
 // Facts of the trade (common practice, no source).
 const NEVER = { amplitude: 0, peakDay: 0 };
@@ -40,18 +41,28 @@ function interiorTransport(setup: Setup, latitudes: number[]): number[] {
 }
 
 describe('facts of the trade', () => {
-  it('transport is to the right of the wind north of the equator and to the left of it south', () => {
+  it('transport is to the right of the wind north of the equator and to the left of it south', (context) => {
     const uniform = basinWith({ kind: 'uniform', eastwardNM2: 0.03, northwardNM2: 0 }, 20);
     const [north, south] = interiorTransport(uniform, [10, -10]);
     expect(north).toBeLessThan(0); // right of eastward
     expect(south).toBeGreaterThan(0); // left of eastward
     // In magnitude the Ekman transport τx/(ρ0 f), before Rossby waves have brought the Sverdrup balance.
     const f = 2 * 7.2921e-5 * (10 / 180) * Math.PI;
-    expect(Math.abs(north / (-0.03 / (1025 * f)) - 1)).toBeLessThan(0.15);
-    expect(Math.abs(south / (0.03 / (1025 * f)) - 1)).toBeLessThan(0.15);
+    for (const [id, obtained, expected] of [
+      ['10° N', north, -0.03 / (1025 * f)],
+      ['10° S', south, 0.03 / (1025 * f)],
+    ] as const)
+      proveCase(context, 'y', {
+        id: `Ekman ${id}`,
+        quantity: `northward transport under an eastward wind at ${id}, m²/s`,
+        expected,
+        obtained,
+        tolerance: 0.15,
+        resolution: 'half a degree, mean of days 10 to 20',
+      });
   });
 
-  it('wind that is linear in latitude about the equator pumps nothing and still carries water across', () => {
+  it('wind that is linear in latitude about the equator pumps nothing and still carries water across', (context) => {
     const shear = {
       kind: 'linearShear',
       stressNM2: 0.03,
@@ -69,10 +80,19 @@ describe('facts of the trade', () => {
         expect(Math.abs(w)).toBeLessThan(1e-18);
     });
     const expected = -(0.03 / 1.5e6) / (1025 * grid.beta);
-    for (const found of interiorTransport(setup, [-5, 0, 5])) expect(Math.abs(found / expected - 1)).toBeLessThan(0.05);
+    interiorTransport(setup, [-5, 0, 5]).forEach((obtained, k) =>
+      proveCase(context, 'y', {
+        id: `no pumping ${['5° S', 'equator', '5° N'][k]}`,
+        quantity: `northward transport under τx = a y at ${['5° S', 'the equator', '5° N'][k]}, m²/s`,
+        expected,
+        obtained,
+        tolerance: 0.05,
+        resolution: 'mean of days 30 to 60',
+      }),
+    );
   });
 
-  it('blows from the winter into the summer hemisphere and carries the layer the other way, both reversed half a year later', () => {
+  it('blows from the winter into the summer hemisphere and carries the layer the other way, both reversed half a year later', (context) => {
     const setup = corvaneForCheck();
     setup.numerics = { ...setup.numerics, spacingLongitudeDeg: 1, spacingLatitudeDeg: 0.5, stepsPerDay: 8 };
     setup.friction = { ...setup.friction, viscosityM2S: 20_000 };
@@ -98,8 +118,23 @@ describe('facts of the trade', () => {
       months.push(run.takeSections()[transport]);
     }
     // Southward in northern summer (June to August), northward half a year later.
-    for (const month of [5, 6, 7]) expect(months[month]).toBeLessThan(-2);
-    for (const month of [11, 0, 1]) expect(months[month]).toBeGreaterThan(2);
+    const resolution = '1° × 0.5°, monthly means of the second year';
+    proveCase(context, 'y', {
+      id: 'northern summer',
+      quantity: 'largest monthly transport across the equator, June to August, Sv, at most',
+      expected: -2,
+      obtained: Math.max(...[5, 6, 7].map((month) => months[month])),
+      kind: 'atMost',
+      resolution,
+    });
+    proveCase(context, 'y', {
+      id: 'northern winter',
+      quantity: 'least monthly transport across the equator, December to February, Sv, at least',
+      expected: 2,
+      obtained: Math.min(...[11, 0, 1].map((month) => months[month])),
+      kind: 'atLeast',
+      resolution,
+    });
   });
 
   describe('a linear run', () => {
@@ -111,15 +146,23 @@ describe('facts of the trade', () => {
       const { eta, u, v } = run.fields();
       return [...eta, ...u, ...v];
     };
-    it('answers a scaled wind in exact proportion', () => {
+    it('answers a scaled wind in exact proportion', (context) => {
       const once = stateWith(() => undefined);
       const twice = stateWith((setup) => scaleWind(setup, 2));
       once.forEach((value, k) => expect(twice[k]).toBe(2 * value));
       const more = stateWith((setup) => scaleWind(setup, 1.2));
       const largest = once.reduce((most, value) => Math.max(most, Math.abs(value)), 0);
-      once.forEach((value, k) => expect(Math.abs(more[k] - 1.2 * value)).toBeLessThan(1e-12 * largest));
+      proveCase(context, 'y', {
+        id: 'proportion',
+        quantity: 'state under 1.2 times the wind less 1.2 times the state, over the largest value',
+        expected: 0,
+        obtained: once.reduce((most, value, k) => Math.max(most, Math.abs(more[k] - 1.2 * value)), 0) / largest,
+        kind: 'absolute',
+        tolerance: 1e-12,
+        resolution: '20 days',
+      });
     });
-    it('is affine in the seasonal strength: strong − control = control − weak', () => {
+    it('is affine in the seasonal strength: strong − control = control − weak', (context) => {
       const [weak, control, strong] = [0.8, 1, 1.2].map((s) =>
         stateWith((setup) => {
           setup.wind.seasonalStrength = s;
@@ -127,9 +170,17 @@ describe('facts of the trade', () => {
       );
       const largest = strong.reduce((most, value, k) => Math.max(most, Math.abs(value - control[k])), 0);
       expect(largest).toBeGreaterThan(0);
-      control.forEach((value, k) =>
-        expect(Math.abs(strong[k] - value - (value - weak[k]))).toBeLessThan(1e-11 * largest),
-      );
+      proveCase(context, 'y', {
+        id: 'affine',
+        quantity: '(strong − control) − (control − weak) over the largest difference',
+        expected: 0,
+        obtained:
+          control.reduce((most, value, k) => Math.max(most, Math.abs(strong[k] - value - (value - weak[k]))), 0) /
+          largest,
+        kind: 'absolute',
+        tolerance: 1e-11,
+        resolution: '20 days, seasonal strength 0.8, 1, 1.2',
+      });
     });
   });
 });
