@@ -72,3 +72,4 @@ export {
 } from './convergence/refined-setup';
 export { transportMeasures, type TransportMeasures } from './convergence/transport-measures';
 export { sketchSetup, SKETCH_WORK, type Sketch } from './sketch/sketch-setup';
+export { SketchRun, type SketchLine, type SketchRows } from './sketch/sketch-run';

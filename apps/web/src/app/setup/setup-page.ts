@@ -41,6 +41,8 @@ import { StartSection } from './sections/start-section';
 import { WindSection } from './sections/wind-section';
 import { SetupContents } from './setup-contents';
 import { SetupDraft } from './setup-draft';
+import { SketchRunner } from './sketch/sketch-runner';
+import { SketchSection } from './sketch/sketch-section';
 import { hasShapeOfSetup, readSetupFile, setupFileName, writeSetupFile } from './setup-file';
 
 /** How long after the last key the form is kept. */
@@ -71,13 +73,14 @@ interface Notice {
     PreflightColumn,
     RouterLink,
     SetupContents,
+    SketchSection,
     StartSection,
     TextField,
     WindSection,
   ],
   templateUrl: './setup-page.html',
   styleUrl: './setup-page.scss',
-  providers: [SetupDraft, PreflightRunner, RemedyActions],
+  providers: [SetupDraft, PreflightRunner, RemedyActions, SketchRunner],
   changeDetection: ChangeDetectionStrategy.OnPush,
   host: { '(document:keydown.f6)': 'swap($event)', '(document:keydown.shift.f6)': 'swap($event)' },
 })
@@ -240,6 +243,12 @@ export class SetupPage {
   protected async keepAsDraft(): Promise<void> {
     this.keep();
     await this.router.navigate(['/experiments', this.id()]);
+  }
+
+  /** Begins a sketch and brings it into view; the focus stays on the button. */
+  protected showSketch(sketch: SketchSection): void {
+    sketch.start();
+    document.getElementById('sketch')?.scrollIntoView({ block: 'start' });
   }
 
   /** F6: from the form to preflight and back to the field that was left. */

@@ -18,6 +18,7 @@ import { ProblemMessage } from '../../shared/problem-message/problem-message';
 import { Quantity } from '../../shared/quantity/quantity';
 import { VerdictSign } from '../../shared/verdict/verdict';
 import { SetupDraft } from '../setup-draft';
+import { SketchRunner } from '../sketch/sketch-runner';
 import { checkNumbers, splitUnit, verdictWords } from './check-words';
 import { PreflightRunner } from './preflight-runner';
 import { RemedyActions } from './remedy-actions';
@@ -35,6 +36,7 @@ export class PreflightColumn {
   protected readonly draft = inject(SetupDraft);
   protected readonly runner = inject(PreflightRunner);
   protected readonly remedies = inject(RemedyActions);
+  protected readonly sketch = inject(SketchRunner);
   readonly queue = input<QueueSummary | null>(null);
   /** Why this person or this moment cannot queue, beyond what the setup says; '' when nothing stands in the way. */
   readonly hindrance = input('');
@@ -42,6 +44,7 @@ export class PreflightColumn {
   readonly problem = input<ApiProblem | null>(null);
   readonly queued = output<void>();
   readonly kept = output<void>();
+  readonly sketched = output<void>();
   /** On a narrow screen the sheet shows the refusals alone until it is opened. */
   protected readonly open = signal(false);
   private readonly heading = viewChild.required<ElementRef<HTMLElement>>('heading');
@@ -96,6 +99,13 @@ export class PreflightColumn {
     if (this.draft.label().trim() === '') return 'It needs a label.';
     if (!this.result() || this.runner.stale()) return 'Preflight is still reading the setup.';
     return this.sending() ? 'It is on its way to the queue.' : '';
+  });
+
+  protected readonly sketchWords = computed(() => {
+    if (this.draft.setup() === null) return 'It can be sketched once every field can be read.';
+    if (this.sketch.busy()) return 'A sketch is being drawn, below the form.';
+    if (this.sketch.outdated()) return 'The sketch below the form is outdated.';
+    return 'A coarse version, a few seconds in this browser.';
   });
 
   /** Takes the focus, for F6. */

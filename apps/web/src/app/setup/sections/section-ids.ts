@@ -1,4 +1,4 @@
-/** The sections of the form in the order of the physics. */
+/** The sections of the form in the order of the physics; behind them the sketch, which holds no field. */
 export const SECTIONS = [
   { id: 'basin', title: 'Basin', holds: ['/basin'] },
   { id: 'layer', title: 'Layer', holds: ['/layer'] },
@@ -8,13 +8,15 @@ export const SECTIONS = [
   { id: 'numerics', title: 'Numerics', holds: ['/numerics'] },
   { id: 'output', title: 'Length and output', holds: ['/length', '/output'] },
   { id: 'constants', title: 'Constants', holds: ['/constants', '/schemaVersion'] },
+  { id: 'sketch', title: 'Sketch', holds: [] },
 ] as const;
 export type SectionId = (typeof SECTIONS)[number]['id'];
 
 /** The section that holds a field, or null for what is not of the setup. */
 export function sectionOf(pointer: string): SectionId | null {
   return (
-    SECTIONS.find(({ holds }) => holds.some((place) => pointer === place || pointer.startsWith(`${place}/`)))?.id ??
-    null
+    SECTIONS.find(({ holds }: { holds: readonly string[] }) =>
+      holds.some((place) => pointer === place || pointer.startsWith(`${place}/`)),
+    )?.id ?? null
   );
 }
