@@ -114,7 +114,7 @@ describe('preflight of any setup that the schema accepts', () => {
         const result = preflight(setup);
         const ids = refused(setup, {});
         if (result.cost.cells > 20_000 && result.cost.cells <= LIMITS.cells.max) return;
-        const beyond = ids.filter((id) => ['cells', 'spacing', 'water'].includes(id));
+        const beyond = ids.filter((id) => ['cells', 'spacing', 'water', 'coast-cells'].includes(id));
         if (beyond.length > 0) {
           unbuilt++;
           expect(() => buildGrid(setup)).toThrow(RangeError);

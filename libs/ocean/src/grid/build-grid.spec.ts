@@ -122,7 +122,10 @@ describe('the grid of the coast', () => {
     islands: [{ kind: 'polygon', name: '', points: isle }],
   };
   const with2 = (basin: Partial<Basin>, spacing: number, coast: number | null) =>
-    gridOf({ ...land, ...basin, coastSpacing: coast && { longitudeDeg: coast, latitudeDeg: coast } }, spacing);
+    gridOf(
+      { ...land, ...basin, coastSpacing: coast === null ? null : { longitudeDeg: coast, latitudeDeg: coast } },
+      spacing,
+    );
   it.each([2, 3])('divides each land cell of a grid %i times as coarse', (factor) => {
     const coarse = with2({}, 0.5, null);
     const fine = with2({}, 0.5 / factor, 0.5);

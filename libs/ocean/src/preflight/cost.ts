@@ -5,6 +5,13 @@ import type { LandRows } from './land-rows';
 
 /** Cell-steps a second of one core, assumed when the machine's own speed is not known. */
 export const ASSUMED_CELL_STEPS_PER_SECOND = 30e6;
+/**
+ * Work of a nonlinear step over that of a linear one, and what each budget of every term adds: of the kernels' own
+ * operation counts until a machine's bench says better.
+ */
+const NONLINEAR_WORK = 1.6;
+const MOMENTUM_WORK = 0.4;
+const VORTICITY_WORK = 0.4;
 /** Keys, page headers and the write-ahead log of a run file, over its data. */
 const FILE_OVERHEAD = 1.05;
 const BUDGET_COLUMNS = 13;
@@ -34,9 +41,16 @@ export function costOf(setup: Setup, layout: GridLayout, land: LandRows, context
     cells,
     wetCells: land.wetCells(),
     steps,
-    seconds: (cells * steps) / cellStepsPerSecond,
+    seconds: (cells * steps * workOf(setup)) / cellStepsPerSecond,
     diskBytes: Math.ceil(FILE_OVERHEAD * (frames * points * 4 + seriesValues * 8) + checkpoints),
     frames,
     cellStepsPerSecond,
   };
+}
+
+/** Work of a cell-step over that of a plain linear one. */
+function workOf({ numerics, output }: Setup): number {
+  const equations = numerics.equations === 'nonlinear' ? NONLINEAR_WORK : 1;
+  const budgets = (output.momentumBudget ? MOMENTUM_WORK : 0) + (output.vorticityBudget ? VORTICITY_WORK : 0);
+  return equations + budgets;
 }

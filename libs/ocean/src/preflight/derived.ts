@@ -2,7 +2,8 @@ import { SECONDS_PER_DAY } from '../forcing/season';
 import type { DerivedNumber } from '../preflight-types';
 import type { Case } from './draft';
 import { polewardWords } from './rules/resolution';
-import { SECONDS_PER_YEAR } from './scales';
+import { nonlinearThinning } from './rules/season-and-length';
+import { SECONDS_PER_YEAR, type Place } from './scales';
 import { stepNumbers } from './step-limits';
 
 /**
@@ -11,13 +12,15 @@ import { stepNumbers } from './step-limits';
  */
 export function derivedNumbers(of: Case): DerivedNumber[] {
   const { scales } = of;
-  const { c, beta, f0, Lx, trapping, munk, stommel, fMax } = scales;
-  const { S, F, nuS, combined } = stepNumbers(scales.rates, scales.dt);
+  const { c, beta, f0, Lx, trapping, munk, stommel, fMax, poleward, home } = scales;
+  const { S, F, nuS, combined, flow } = stepNumbers(scales.rates, scales.dt);
   const edge = polewardWords(of);
   const days = (seconds: number) => seconds / SECONDS_PER_DAY;
   const equatorial = scales.holdsEquator;
-  const fHome = equatorial ? fMax : Math.abs(f0) || fMax;
-  const home = equatorial && edge ? `, ${edge}` : '';
+  const nonlinear = of.setup.numerics.equations === 'nonlinear';
+  const change = (e: number) => (nonlinear ? nonlinearThinning(e) : e);
+  const fHome = equatorial ? fMax : Math.abs(home.f) || fMax;
+  const homeWords = equatorial && edge ? `, ${edge}` : '';
   const number = (id: string, label: string, symbol: string, value: number | null, unit: string) => ({
     id,
     label,
@@ -26,7 +29,7 @@ export function derivedNumbers(of: Case): DerivedNumber[] {
     value: (value ?? NaN) + 0,
     unit,
   });
-  const crossing = (f: number) => (beta > 0 ? (Lx * f * f) / (beta * c * c) : null);
+  const crossing = (at: Place, f: number) => (at.beta > 0 ? (at.Lx * f * f) / (at.beta * c * c) : null);
   const gyre = munk !== null && munk > 0 ? ['munkWidth', 'stommelWidth'] : ['stommelWidth', 'munkWidth'];
 
   const numbers: Record<string, DerivedNumber> = Object.fromEntries(
@@ -40,19 +43,19 @@ export function derivedNumbers(of: Case): DerivedNumber[] {
       number('kelvinCrossing', 'Kelvin crossing', 'Lx/c', days(Lx / c), 'd'),
       equatorial
         ? number('rossbyCrossing', 'Rossby, n = 1', '3Lx/c', days((3 * Lx) / c), 'd')
-        : number('rossbyCrossing', 'Rossby crossing', 'Lx f²/(βc²)', nullable(crossing(fHome), days), 'd'),
+        : number('rossbyCrossing', 'Rossby crossing', 'Lx f²/(βc²)', nullable(crossing(home, fHome), days), 'd'),
       number(
         'adjustment',
         `adjustment at ${edge}`,
         'Lx f²/(βc²)',
         // Nothing crosses from wall to wall where there is no wall.
-        of.setup.basin.zonallyPeriodic ? null : nullable(crossing(fMax), (s) => s / SECONDS_PER_YEAR),
+        of.setup.basin.zonallyPeriodic ? null : nullable(crossing(poleward, fMax), (s) => s / SECONDS_PER_YEAR),
         'y',
       ),
       number('memory', 'memory of the layer', 'm', days(scales.memory), 'd'),
-      number('inertialPeriod', `inertial period${home}`, '2π/|f|', days((2 * Math.PI) / fHome), 'd'),
+      number('inertialPeriod', `inertial period${homeWords}`, '2π/|f|', days((2 * Math.PI) / fHome), 'd'),
       number('equatorialTime', 'equatorial time', 'T', equatorial ? days(1 / Math.sqrt(beta * c)) : null, 'd'),
-      number('beta', 'gradient of f', 'β', beta > 0 ? beta : null, '1/(m s)'),
+      number('beta', 'gradient of f', 'β', beta > 0 ? home.beta : null, '1/(m s)'),
       number('f', 'Coriolis parameter', 'f', beta > 0 ? null : f0, '1/s'),
       number('fSouth', 'f at the south wall', '', beta > 0 ? scales.fSouth : null, '1/s'),
       number('fNorth', 'f at the north wall', '', beta > 0 ? scales.fNorth : null, '1/s'),
@@ -61,18 +64,27 @@ export function derivedNumbers(of: Case): DerivedNumber[] {
         'rossbySpeed',
         equatorial ? 'Rossby speed, n = 1' : 'Rossby speed',
         equatorial ? 'c/3' : 'βc²/f²',
-        equatorial ? c / 3 : beta > 0 ? (beta * c * c) / (fHome * fHome) : null,
+        equatorial ? c / 3 : beta > 0 ? (home.beta * c * c) / (fHome * fHome) : null,
         'm/s',
       ),
       number('dx', 'cell, zonal', 'dx', scales.dx / 1000, 'km'),
+      number(
+        'dxSmallest',
+        `cell, zonal, ${edge}`,
+        'dx',
+        scales.dxSmallest < scales.dx ? scales.dxSmallest / 1000 : null,
+        'km',
+      ),
       number('dy', 'cell, meridional', 'dy', scales.dy / 1000, 'km'),
       number('dt', 'step', 'dt', scales.dt, 's'),
       number('S', 'gravity number', 'S', S, ''),
       number('F', 'rotation number', 'F', F, ''),
       number('nuS', 'viscosity number', 'νS', nuS, ''),
       number('combined', 'waves and viscosity', '(S/S₀)² + νS/0.16', combined, ''),
+      number('froude', 'expected currents over the wave speed', 'Fr', nonlinear ? scales.rates.froude : null, ''),
+      number('flow', 'waves on the flow', 'S(1 + 2Fr)', nonlinear ? flow : null, ''),
       number('largestStress', 'largest stress', '|τ|', of.wind.stress, 'N/m²'),
-      number('thinning', 'thickness change by the wind', '|η|/H', of.wind.thinning, ''),
+      number('thinning', 'thickness change by the wind', '|η|/H', nullable(of.wind.thinning, change), ''),
     ].map((entry) => [entry.id, entry]),
   );
   const first = ['waveSpeed', 'trappingScale', 'deformationRadius', gyre[0], 'kelvinCrossing', 'rossbyCrossing'];

@@ -1,5 +1,6 @@
 import type { Check, Cost, PreflightContext, Remedy, Verdict } from '../preflight-types';
 import type { Setup } from '../setup';
+import type { GridLayout } from '../grid/grid-layout';
 import type { LandRows } from './land-rows';
 import type { Scales } from './scales';
 import type { WindEstimate } from './thinning';
@@ -10,6 +11,9 @@ export interface Case {
   context: PreflightContext;
   scales: Scales;
   land: LandRows;
+  /** The grid of the coast where that is not the run's own, and what it does to the run's. */
+  coast: GridLayout | null;
+  coastNotes: string[];
   cost: Cost;
   wind: WindEstimate;
   /** Largest |η|/H that the start brings with it; null where not known. */

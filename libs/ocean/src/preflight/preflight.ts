@@ -1,5 +1,6 @@
 import type { Check, Preflight, PreflightContext, Remedy, Verdict } from '../preflight-types';
 import type { Setup } from '../setup';
+import { coastLayout, coastNotes } from '../grid/coast-grid';
 import { costOf } from './cost';
 import { derivedNumbers } from './derived';
 import type { Case, Draft, Rule } from './draft';
@@ -9,24 +10,28 @@ import * as resolution from './rules/resolution';
 import * as length from './rules/season-and-length';
 import * as size from './rules/size';
 import * as places from './rules/start-and-places';
+import * as sponges from './rules/sponges';
 import * as step from './rules/step';
 import { scalesOf } from './scales';
 import { proposedSteps } from './step-limits';
-import { startThinning, windEstimate } from './thinning';
+import { startThinning } from './thinning';
 
-/** Every rule of numerics.md §5 and §10 that a linear run can meet, in the order in which equals are shown. */
+/** Every rule of numerics.md §5 and §10, in the order in which equals are shown. */
 const RULES: readonly Rule[] = [
   size.gridSize,
   size.spacingRange,
+  size.coastGridSize,
   size.water,
   step.stepAgainstGravity,
   step.stepAgainstRotation,
   step.stepAgainstViscosity,
   step.stepAgainstBoth,
+  step.stepAgainstFlow,
   resolution.equatorialResolution,
   resolution.coastalWaves,
   resolution.wallLayer,
   resolution.polewardWalls,
+  sponges.spongeRow,
   length.thinning,
   length.lengthAgainstMemory,
   length.wholeIntervals,
@@ -63,25 +68,28 @@ export function preflight(setup: Setup, context: PreflightContext = {}): Preflig
     checks: checks.sort((a, b) => RANK[a.verdict] - RANK[b.verdict] || b.ratio - a.ratio),
     cost,
     grid: { nx: layout.nx, ny: layout.ny, dxM: scales.dx, dyM: scales.dy, dtS: scales.dt },
-    notes: layout.notes,
+    notes: [...layout.notes, ...given.coastNotes],
     proposedStepsPerDay: proposedSteps(scales.rates),
   };
 }
 
 function caseOf(setup: Setup, context: PreflightContext, like?: Case): Case {
-  const scales = scalesOf(setup);
   // What a remedy leaves alone is not worked out again.
   const sameBasin = like !== undefined && like.setup.basin === setup.basin;
-  const sameGrid = sameBasin && like.scales.dx === scales.dx && like.scales.dy === scales.dy;
-  const land = sameGrid ? like.land : new LandRows(setup.basin, scales.layout);
   const sameWind = sameBasin && like.setup.wind === setup.wind && like.setup.layer === setup.layer;
+  const scales = scalesOf(setup, sameWind ? like.wind : undefined);
+  const sameGrid = sameBasin && like.scales.dx === scales.dx && like.scales.dy === scales.dy;
+  const land = sameGrid ? like.land : LandRows.of(setup, scales.layout);
+  const coast = coastLayout(setup);
   return {
     setup,
     context,
     scales,
     land,
+    coast,
+    coastNotes: coast ? coastNotes(scales.layout, coast) : [],
     cost: costOf(setup, scales.layout, land, context),
-    wind: sameWind ? like.wind : windEstimate(setup, scales),
+    wind: scales.wind,
     startThinning: startThinning(setup),
   };
 }

@@ -33,6 +33,9 @@ const RANGES: Record<string, { min: number; max: number }> = {
   '/basin/southDeg': LIMITS.latitude,
   '/basin/northDeg': LIMITS.latitude,
   '/start/wavelengthDeg': LIMITS.startLength,
+  '/layer/minimumThicknessM': LIMITS.minimumThickness,
+  '/basin/coastSpacing/longitudeDeg': LIMITS.spacing,
+  '/basin/coastSpacing/latitudeDeg': LIMITS.spacing,
 };
 
 /** True when every changed field stays inside its hard limit. */
@@ -74,7 +77,8 @@ export function stepRemedies(setup: Setup, scales: Scales): Remedy[] {
       changes: [{ pointer: '/friction/viscosityM2S', value }],
     });
   });
-  return setup.friction.viscosityM2S > 0 ? [...weaker, ...coarser] : coarser;
+  const plain = setup.friction.viscosityPatches.length === 0;
+  return setup.friction.viscosityM2S > 0 && plain ? [...weaker, ...coarser] : coarser;
 }
 
 /** Cells no larger than `metres` both ways, as degrees that read well and fill the basin. */
@@ -112,10 +116,23 @@ export function spacingRemedy(setup: Setup, longitudeDeg: number, latitudeDeg: n
     { pointer: '/numerics/spacingLatitudeDeg', value: latitudeDeg, was: spacingLatitudeDeg },
   ].filter(({ value, was }) => value !== was);
   const sizes = [...new Set(changes.map(({ value }) => `${readable(value, 4)}°`))].join(' by ');
+  // A coast on a grid that no longer nests goes back to the run's own.
+  const coast = setup.basin.coastSpacing;
+  const loose =
+    coast !== null && !(isWhole(coast.longitudeDeg / longitudeDeg) && isWhole(coast.latitudeDeg / latitudeDeg));
   return withFittingSteps(setup, {
-    label: `Use ${sizes} cells`,
-    changes: changes.map(({ pointer, value }) => ({ pointer, value })),
+    label: loose ? `Use ${sizes} cells, for the coast too` : `Use ${sizes} cells`,
+    changes: [
+      ...changes.map(({ pointer, value }) => ({ pointer, value })),
+      ...(loose ? [{ pointer: '/basin/coastSpacing', value: null }] : []),
+    ],
   });
+}
+
+/** A whole number, or one over a whole number, to round-off. */
+function isWhole(quotient: number): boolean {
+  const factor = Math.max(quotient, 1 / quotient);
+  return Math.abs(factor - Math.round(factor)) <= 1e-9 * factor;
 }
 
 /** Rounds to two digits, upwards or downwards in size. */

@@ -1,7 +1,8 @@
 import { evaluatePattern, variesZonally } from '../forcing/pattern';
-import { planeOf } from '../grid/build-grid';
+import { DAYS_PER_YEAR, SECONDS_PER_DAY } from '../forcing/season';
+import { spongeDepth, windTaper } from '../forcing/sponges';
 import type { Setup, WindComponent, WindPattern } from '../setup';
-import { SECONDS_PER_YEAR, type Scales } from './scales';
+import type { Place, ScalesBeforeWind } from './scales';
 
 /** Latitudes at which the estimate is taken at most, besides those that the patterns themselves ask for. */
 const MAX_ROWS = 160;
@@ -10,12 +11,14 @@ const MAX_PATCHES = 10;
 /** Half-width of the differences that give the curl, degrees: far below any length scale, far above rounding. */
 const DIFFERENCE_DEG = 1e-4;
 
-/** What a wind does to a linear layer, estimated before the run. */
+/** What a wind does to the layer, estimated before the run from linear theory. */
 export interface WindEstimate {
   /** e of numerics.md §10, the largest expected |η|/H; null without β. */
   thinning: number | null;
   /** Largest stress over the basin and the year that the amplitudes allow, N/m². */
   stress: number;
+  /** Largest expected speed over c (numerics.md §5), ≥ 0. */
+  froude: number;
 }
 
 /**
@@ -23,11 +26,15 @@ export interface WindEstimate {
  * τx X/(g′ρ0H²), elsewhere f² wE X/(g′βH²), wE = curl(τ/(ρ0 f)). X = Lx for a steady part, min(Lx, 2βc²/(f²ω)) for a
  * harmonic, and no more than √(2π) widths of a patch (its integral along longitude). A northward stress at the equator
  * is held by a slope over 2 L_eq instead of X.
+ *
+ * The Froude number is the largest of |τ| T/(ρ0Hc) with T = 1/√(βc) (1/|f| without β), of the Sverdrup zonal speed
+ * X |∂²τx/∂y²|/(ρ0βH) over c, and of |τ| X/(ρ0g′H²): numerics.md §5. Inside sponges the layer is damped: nothing is
+ * estimated there but the stress that they leave.
  */
-export function windEstimate(setup: Setup, scales: Scales): WindEstimate {
-  const { trapping, beta, layout, f0 } = scales;
+export function windEstimate(setup: Setup, scales: ScalesBeforeWind): WindEstimate {
+  const { trapping, layout, c } = scales;
+  const { basin, constants } = setup;
   const profiles = setup.wind.components.map((component) => profileOf(component, setup, scales));
-  const { referenceDeg } = planeOf(setup);
   const south = layout.meridional.start;
   const north = south + layout.ny * layout.meridional.spacing;
   const west = layout.zonal.start;
@@ -44,33 +51,50 @@ export function windEstimate(setup: Setup, scales: Scales): WindEstimate {
     }),
   );
   const { reducedGravityMS2: gPrime, restThicknessM: H } = setup.layer;
-  const [push, sumX, sumY] = [new Float64Array(n), new Float64Array(n), new Float64Array(n)];
-  let thinning = 0;
-  let stress = 0;
+  const density = constants.densityKgM3;
+  const taper = windTaper(basin);
+  const sphere = basin.geometry === 'spherical';
+  const damped = (longitude: number, latitude: number) =>
+    basin.sponges.some((sponge) => spongeDepth(sponge, basin, longitude, latitude) > 0);
+  const [push, slope, speed, sumX, sumY] = [0, 1, 2, 3, 4].map(() => new Float64Array(n));
+  let [thinning, stress, froude] = [0, 0, 0];
   for (const latitude of sampleLatitudes(setup, south, north, layout.ny)) {
-    const f = f0 + beta * (latitude - referenceDeg) * scales.metresPerDegreeLatitude;
-    const equatorial = trapping !== null && Math.abs(f) < beta * trapping;
-    for (const sums of [push, sumX, sumY]) sums.fill(0);
+    const place = scales.at(latitude);
+    const { f, beta } = place;
+    // A degree of longitude here over one where the slopes along it were taken.
+    const shrunk = place.dx / scales.dx;
+    const away = (step: number) => (sphere ? scales.at(latitude + step).dx / place.dx : 1);
+    const [toSouth, toNorth] = [away(-DIFFERENCE_DEG), away(DIFFERENCE_DEG)];
+    const equatorial = trapping !== null && Math.abs(f) < scales.beta * trapping;
+    for (const sums of [push, slope, speed, sumX, sumY]) sums.fill(0);
     profiles.forEach((profile, k) => {
-      const { taux, tauy, dTauxDy } = profile.across(latitude);
-      const reach = profile.reach(f);
+      const { taux, tauy, dTauxDy, curvature } = profile.across(latitude, toSouth, toNorth);
+      const reach = profile.reach(place);
       const across = 2 * (trapping ?? 0) * profile.strength;
       for (let i = 0; i < n; i++) {
         const factor = factors[k * n + i];
+        const held = Math.abs(taux * factor) * reach + Math.abs(tauy * factor) * (trapping === null ? reach : across);
         sumX[i] += Math.abs(taux * factor) * profile.strength;
         sumY[i] += Math.abs(tauy * factor) * profile.strength;
+        slope[i] += held;
+        speed[i] += Math.abs(curvature * factor) * reach;
         push[i] += equatorial
-          ? Math.abs(taux * factor) * reach + Math.abs(tauy * factor) * across
-          : Math.abs(f * (tauy * slopes[k * n + i] - dTauxDy * factor) + beta * taux * factor) * reach;
+          ? held
+          : Math.abs(f * ((tauy * slopes[k * n + i]) / shrunk - dTauxDy * factor) + beta * taux * factor) * reach;
       }
     });
-    const scale = gPrime * setup.constants.densityKgM3 * H * H * (equatorial ? 1 : beta);
+    const scale = gPrime * density * H * H;
+    const adjustment = beta > 0 ? 1 / Math.sqrt(beta * c) : f === 0 ? 0 : 1 / Math.abs(f);
     for (let i = 0; i < n; i++) {
-      stress = Math.max(stress, Math.hypot(sumX[i], sumY[i]));
-      if (trapping !== null) thinning = Math.max(thinning, push[i] / scale);
+      const size = Math.hypot(sumX[i], sumY[i]);
+      stress = Math.max(stress, taper ? taper.at(longitudes[i], latitude) * size : size);
+      if (damped(longitudes[i], latitude)) continue;
+      if (trapping !== null) thinning = Math.max(thinning, push[i] / (equatorial ? scale : scale * beta));
+      const sverdrup = beta > 0 ? speed[i] / (density * beta * H * c) : 0;
+      froude = Math.max(froude, (size * adjustment) / (density * H * c), sverdrup, slope[i] / scale);
     }
   }
-  return { thinning: trapping === null ? null : thinning, stress };
+  return { thinning: trapping === null ? null : thinning, stress, froude };
 }
 
 /** The largest |η|/H that an analytic start brings with it; 0 at rest, null when it comes from another run. */
@@ -80,45 +104,58 @@ export function startThinning({ start, layer }: Setup): number | null {
 }
 
 interface Profile {
-  /** Stress along the pattern's own meridian, N/m², and its northward derivative, N/m³. */
-  across: (latitudeDeg: number) => { taux: number; tauy: number; dTauxDy: number };
+  /**
+   * Stress along the pattern's own meridian, N/m², its northward derivative (on a sphere ∂(cos φ τx)/cos φ), N/m³, and
+   * its second one. toSouth, toNorth: cos φ a difference away over cos φ here.
+   */
+  across: (
+    latitudeDeg: number,
+    toSouth: number,
+    toNorth: number,
+  ) => { taux: number; tauy: number; dTauxDy: number; curvature: number };
   /** Factor from there to another longitude, and its eastward derivative, 1/m. */
   along: (longitudeDeg: number) => { factor: number; slope: number };
-  /** Σ |season part| X at a Coriolis parameter, m. */
-  reach: (f: number) => number;
+  /** Σ |season part| X at a place, m. */
+  reach: (place: Place) => number;
   /** Σ |season part|. */
   strength: number;
 }
 
-function profileOf(component: WindComponent, setup: Setup, scales: Scales): Profile {
+function profileOf(component: WindComponent, setup: Setup, scales: ScalesBeforeWind): Profile {
   const { pattern, season } = component;
   const radius = setup.constants.earthRadiusM;
   const home = variesZonally(pattern) && 'longitudeDeg' in pattern ? pattern.longitudeDeg : scales.layout.zonal.start;
   const widest = 'widthLongitudeDeg' in pattern ? Math.sqrt(2 * Math.PI) * pattern.widthLongitudeDeg : Infinity;
-  const across = (latitude: number) => {
+  const step = DIFFERENCE_DEG * scales.metresPerDegreeLatitude;
+  const across = (latitude: number, toSouth: number, toNorth: number) => {
     const at = evaluatePattern(pattern, home, latitude, radius);
     const above = evaluatePattern(pattern, home, latitude + DIFFERENCE_DEG, radius).taux;
     const below = evaluatePattern(pattern, home, latitude - DIFFERENCE_DEG, radius).taux;
-    return { ...at, dTauxDy: (above - below) / (2 * DIFFERENCE_DEG * scales.metresPerDegreeLatitude) };
+    return {
+      ...at,
+      dTauxDy: (toNorth * above - toSouth * below) / (2 * step),
+      curvature: (above - 2 * at.taux + below) / (step * step),
+    };
   };
   const strength = setup.wind.seasonalStrength;
-  const yearly = (2 * Math.PI) / SECONDS_PER_YEAR;
+  const yearly = (2 * Math.PI) / (DAYS_PER_YEAR * SECONDS_PER_DAY);
   const parts = [
     { size: Math.abs(season.mean), omega: 0 },
     { size: Math.abs(strength * season.annual.amplitude), omega: yearly },
     { size: Math.abs(strength * season.semiannual.amplitude), omega: 2 * yearly },
   ].filter(({ size }) => size > 0);
-  const { Lx, beta, c } = scales;
-  const bound = Math.min(Lx, widest * scales.metresPerDegreeLongitude);
+  const { c, dx } = scales;
   return {
     across,
     along: zonalFactor(pattern, radius, scales.metresPerDegreeLongitude),
-    reach: (f) =>
-      parts.reduce(
-        (sum, { size, omega }) =>
-          sum + size * (omega === 0 || f === 0 ? bound : Math.min(bound, (2 * beta * c * c) / (f * f * omega))),
-        0,
-      ),
+    reach: (place) => {
+      const bound = Math.min(place.Lx, (widest * scales.metresPerDegreeLongitude * place.dx) / dx);
+      return parts.reduce((sum, { size, omega }) => {
+        // Without β nothing but the basin bounds it.
+        const free = omega === 0 || place.f === 0 || place.beta === 0;
+        return sum + size * (free ? bound : Math.min(bound, (2 * place.beta * c * c) / (place.f * place.f * omega)));
+      }, 0);
+    },
     strength: parts.reduce((sum, { size }) => sum + size, 0),
   };
 }

@@ -1,8 +1,11 @@
 import { readable, readableLatitude } from '../../describe/numbers';
 import { LIMITS } from '../../limits';
 import type { Remedy } from '../../preflight-types';
-import { ratioOfMaximum, ratioOfMinimum, verdictOf, type Case, type Rule } from '../draft';
+import type { Setup } from '../../setup';
+import { NO_CURE, ratioOfMaximum, ratioOfMinimum, verdictOf, type Case, type Rule } from '../draft';
 import { finerCells, roundedUp, withFittingSteps } from '../remedies';
+import type { Place, Scales } from '../scales';
+import { absorbs } from './sponges';
 
 const SPACINGS = ['/numerics/spacingLongitudeDeg', '/numerics/spacingLatitudeDeg'];
 const km = (metres: number) => `${readable(metres / 1000)} km`;
@@ -35,10 +38,12 @@ export const equatorialResolution: Rule = ({ setup, scales }) => {
 /** Cells against c/|f| at the wall where it is narrowest. Beyond twice that the decay alternates in sign. */
 export const coastalWaves: Rule = ({ setup, scales }) => {
   if (scales.fMax === 0) return null;
-  const largest = Math.max(scales.dx, scales.dy);
-  const radius = scales.c / scales.fMax;
+  const worst = narrowest(setup, scales);
+  const largest = Math.max(worst.dx, scales.dy);
+  const radius = scales.c / Math.abs(worst.f);
+  if (!Number.isFinite(radius)) return null; // a rotation too slow for a number
   const ratio = ratioOfMaximum(largest, radius);
-  const edge = polewardWords({ setup, scales });
+  const edge = worst === scales.poleward ? polewardWords({ setup, scales }) : readableLatitude(worst.latitudeDeg);
   const where = edge ? ` at ${edge}` : '';
   return {
     id: 'coastal-waves',
@@ -55,14 +60,29 @@ export const coastalWaves: Rule = ({ setup, scales }) => {
           ? `Cells of ${km(largest)} are wider than c/|f| = ${km(radius)}${where}: coastal waves are barely represented; use ${km(radius)} or less.`
           : `Cells of ${km(largest)} are within c/|f| = ${km(radius)}${where}.`,
     pointers: [...SPACINGS, '/basin/southDeg', '/basin/northDeg'],
-    cures: () => finerCells(setup, scales, radius),
+    // Degrees of longitude are longest elsewhere on a sphere, and with those halved the edge may be the worst.
+    cures: () => [
+      ...finerCells(setup, scales, radius * Math.max(1, scales.dx / worst.dx)),
+      ...finerCells(setup, scales, scales.c / scales.fMax),
+    ],
   };
 };
+
+/** Where cells are largest against c/|f|: the poleward edge; on a sphere dx |f| grows to 45° and falls again. */
+function narrowest(setup: Setup, scales: Scales): Place {
+  if (setup.basin.geometry !== 'spherical') return scales.poleward;
+  const { start, spacing, cells } = scales.layout.meridional;
+  const end = start + cells * spacing;
+  const at45 = [-45, 45].filter((latitude) => latitude > start && latitude < end).map(scales.at);
+  const size = ({ dx, f }: Place) => Math.max(dx, scales.dy) * Math.abs(f);
+  return [...at45].reduce((worst, place) => (size(place) > size(worst) ? place : worst), scales.poleward);
+}
 
 /** Cells in the frictional layer of an east or west wall: two in a Munk layer or one in a Stommel layer pass. */
 export const wallLayer: Rule = ({ setup, scales }) => {
   const { beta, munk, stommel, dx } = scales;
-  const hasWall = !setup.basin.zonallyPeriodic || setup.basin.islands.length > 0;
+  const open = (['west', 'east'] as const).every((edge) => setup.basin.sponges.some((sponge) => sponge.edge === edge));
+  const hasWall = !(setup.basin.zonallyPeriodic || open) || setup.basin.islands.length > 0;
   if (munk === null || stommel === null || !hasWall) return null;
   const munkRatio = ratioOfMinimum(munk / dx, 2);
   const stommelRatio = ratioOfMinimum(stommel / dx, 1);
@@ -103,39 +123,74 @@ export const wallLayer: Rule = ({ setup, scales }) => {
   };
 };
 
-/** Poleward walls of a basin that holds the equator, in trapping scales: five pass. A wall on the equator is symmetry. */
-export const polewardWalls: Rule = ({ setup, scales }) => {
-  const { trapping, beta } = scales;
+/**
+ * Poleward walls of a basin that holds the equator, in trapping scales: five pass, and so does a sponge. A wall on the
+ * equator is symmetry.
+ */
+export const polewardWalls: Rule = (of) => {
+  const { setup, scales } = of;
+  const { trapping } = scales;
   if (!scales.holdsEquator || trapping === null) return null;
-  const distances = [-scales.fSouth / beta, scales.fNorth / beta].filter((distance) => distance > 0);
-  const nearest = Math.min(...distances);
-  const found = nearest / trapping;
+  const open = setup.basin.sponges.filter((sponge) => absorbs(of, sponge)).map(({ edge }) => edge);
+  const walls = wallDistances(scales).filter(({ distance, edge }) => distance > 0 && !open.includes(edge));
+  const row = { id: 'poleward-walls', label: 'Poleward walls from the equator', limit: 5, unit: 'trapping scales' };
+  const pointers = ['/basin/southDeg', '/basin/northDeg'];
+  if (walls.length === 0) {
+    const nearest = Math.min(
+      ...wallDistances(scales)
+        .map(({ distance }) => distance)
+        .filter((away) => away > 0),
+    );
+    return {
+      ...row,
+      verdict: 'pass',
+      value: nearest / trapping,
+      ratio: 0,
+      reason: 'Sponges take up what reaches the poleward walls.',
+      pointers: [...pointers, '/basin/sponges'],
+      cures: NO_CURE,
+    };
+  }
+  const found = Math.min(...walls.map(({ distance }) => distance)) / trapping;
   const ratio = ratioOfMinimum(found, 5);
   return {
-    id: 'poleward-walls',
-    label: 'Poleward walls from the equator',
+    ...row,
     verdict: verdictOf(ratio, false),
     value: found,
-    limit: 5,
-    unit: 'trapping scales',
     ratio,
     reason:
       found < 3
-        ? `The nearer wall lies ${readable(found)} trapping scales of ${km(trapping)} from the equator: equatorial waves feel it strongly; ask for five.`
+        ? `The nearer wall lies ${readable(found)} trapping scales of ${km(trapping)} from the equator: equatorial waves feel it strongly; ask for five, or a sponge.`
         : ratio > 1
-          ? `The nearer wall lies ${readable(found)} trapping scales from the equator; at five equatorial waves no longer feel it.`
+          ? `The nearer wall lies ${readable(found)} trapping scales from the equator; at five, or behind a sponge, equatorial waves no longer feel it.`
           : `The nearer wall lies ${readable(found)} trapping scales of ${km(trapping)} from the equator.`,
-    pointers: ['/basin/southDeg', '/basin/northDeg'],
+    pointers,
     cures: () => fartherWalls({ setup, scales }),
   };
 };
+
+/** Metres from the equator, where f = 0, to each poleward wall. */
+function wallDistances(scales: Scales) {
+  const { fSouth, fNorth, beta, layout, metresPerDegreeLatitude } = scales;
+  const { start, spacing, cells } = layout.meridional;
+  // On a sphere f is no straight line; the equator lies at 0°.
+  const spherical = scales.dxSmallest !== scales.dx;
+  const [south, north] = spherical
+    ? [-start * metresPerDegreeLatitude, (start + cells * spacing) * metresPerDegreeLatitude]
+    : [-fSouth / beta, fNorth / beta];
+  return [
+    { edge: 'south' as const, distance: south },
+    { edge: 'north' as const, distance: north },
+  ];
+}
 
 function fartherWalls({ setup, scales }: Pick<Case, 'setup' | 'scales'>): Remedy[] {
   const { trapping, metresPerDegreeLatitude, beta, f0 } = scales;
   if (trapping === null) return [];
   // Mid-latitude planes have their equator where f0 + β y = 0.
   const reference = setup.basin.referenceLatitudeDeg ?? (setup.basin.southDeg + setup.basin.northDeg) / 2;
-  const equator = setup.basin.geometry === 'equatorial' ? 0 : reference - f0 / beta / metresPerDegreeLatitude;
+  const fixed = setup.basin.geometry === 'equatorial' || setup.basin.geometry === 'spherical';
+  const equator = fixed ? 0 : reference - f0 / beta / metresPerDegreeLatitude;
   const reach = (5 * trapping) / metresPerDegreeLatitude;
   // Hardly any rotation: no wall is that far away.
   if (!(reach < LIMITS.latitude.max - LIMITS.latitude.min)) return [];
@@ -148,7 +203,7 @@ function fartherWalls({ setup, scales }: Pick<Case, 'setup' | 'scales'>): Remedy
     ...(southDeg < equator && southDeg > south ? [{ pointer: '/basin/southDeg', value: south }] : []),
     ...(northDeg > equator && northDeg < north ? [{ pointer: '/basin/northDeg', value: north }] : []),
     // The plane keeps touching where it did.
-    ...(setup.basin.geometry === 'equatorial' || setup.basin.referenceLatitudeDeg !== null
+    ...(fixed || setup.basin.referenceLatitudeDeg !== null
       ? []
       : [{ pointer: '/basin/referenceLatitudeDeg', value: reference }]),
   ];
@@ -164,6 +219,7 @@ export function polewardWords({ setup, scales }: Pick<Case, 'setup' | 'scales'>)
   const { start, spacing, cells } = scales.layout.meridional;
   const [south, north] = [Math.abs(scales.fSouth), Math.abs(scales.fNorth)];
   const words = readableLatitude(Number((north >= south ? start + cells * spacing : start).toPrecision(10)));
-  const alike = setup.basin.geometry === 'equatorial' && Math.abs(north - south) < 1e-9 * scales.fMax;
+  const symmetric = setup.basin.geometry === 'equatorial' || setup.basin.geometry === 'spherical';
+  const alike = symmetric && Math.abs(north - south) < 1e-9 * scales.fMax;
   return alike ? words.replace(/ [NS]$/, '') : words;
 }

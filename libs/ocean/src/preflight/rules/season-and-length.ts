@@ -3,52 +3,104 @@ import { SECONDS_PER_DAY } from '../../forcing/season';
 import { LIMITS } from '../../limits';
 import type { Remedy } from '../../preflight-types';
 import type { Setup, WindComponent } from '../../setup';
-import { ratioOfMaximum, ratioOfMinimum, verdictOf, NO_CURE, type Rule } from '../draft';
+import { ratioOfMaximum, ratioOfMinimum, verdictOf, NO_CURE, type Case, type Rule } from '../draft';
 import { roundedDown } from '../remedies';
 import { polewardWords } from './resolution';
 
 const THINNING_LIMIT = 0.25;
+/** e at which a nonlinear layer changes by a quarter: 1 − √(1 − 2e) = 0.25. */
+const NONLINEAR_WIND_LIMIT = (1 - (1 - THINNING_LIMIT) ** 2) / 2;
+/** Fr c dx/A that outcropping runs under a stress floor completed with (numerics.md §6). */
+const REYNOLDS_LIMIT = 9;
 const UNITS_PER_DAY = 4;
 
-/** Largest |η|/H that linear theory expects: a quarter passes, beyond a half the linear equations do not hold. */
-export const thinning: Rule = ({ setup, wind: estimate, startThinning: start }) => {
-  const wind = estimate.thinning;
-  if (wind === null && (start === null || start === 0)) return null;
+/** Thickness lost over H where linear theory expects |η|/H = e: the layer pushes back less the thinner it is. */
+export function nonlinearThinning(e: number): number {
+  return 1 - Math.sqrt(Math.max(0, 1 - 2 * e));
+}
+
+/**
+ * Largest |η|/H that is expected: a quarter passes. Linear equations do not hold beyond a half; a nonlinear layer that
+ * outcrops needs entrainment, or a stress floor with a cell Reynolds number Fr c dx/A of at most 9 (numerics.md §6).
+ */
+export const thinning: Rule = (of) => {
+  const { setup, wind: estimate, startThinning: start } = of;
+  const nonlinear = setup.numerics.equations === 'nonlinear';
+  const e = estimate.thinning;
+  if (e === null && (start === null || start === 0)) return null;
+  const wind = e === null ? null : nonlinear ? nonlinearThinning(e) : e;
   const found = Math.max(wind ?? 0, start ?? 0);
   const byStart = (start ?? 0) > (wind ?? 0);
+  const outcrops = nonlinear && found >= 1;
+  const reynolds = cellReynolds(of);
+  const { entrainment } = setup.layer;
+  const floored = setup.wind.stressFloorM > 0 && reynolds <= REYNOLDS_LIMIT;
+  // What starts below the bottom of the layer is no start at all, and no entrainment helps.
+  const refused = outcrops && (byStart || !(entrainment !== null || floored));
   const ratio = ratioOfMaximum(found, THINNING_LIMIT);
   const H = setup.layer.restThicknessM;
   const source = byStart ? 'the start' : 'the wind';
   const size = `about ${readable(found * H, 2)} m of ${readable(H, 4)} m (${readable(found, 2)}) by ${source}`;
+  const guard = entrainment !== null ? 'entrainment' : 'the stress floor';
+  const reason = () => {
+    if (refused && byStart) return `The start takes the whole layer of ${readable(H, 4)} m away; keep its amplitude below ${readable(H, 4)} m.`; // prettier-ignore
+    if (refused)
+      return `The layer would outcrop under this wind: give it entrainment, or a stress floor with |u| dx/A of at most ${REYNOLDS_LIMIT} (${readable(reynolds)} here).`;
+    if (outcrops) return `The layer would outcrop under this wind; ${guard} holds it.`;
+    if (nonlinear && ratio > 1) return `The layer would change by ${size}, more than ${THINNING_LIMIT}: watch its thickness.`; // prettier-ignore
+    if (found > 0.5) return `The layer would change by ${size}: the linear equations do not hold; keep it below ${THINNING_LIMIT}.`; // prettier-ignore
+    if (ratio > 1) return `The layer would change by ${size}: linear equations are doubtful past ${THINNING_LIMIT}.`;
+    return `The layer would change by ${size}.`;
+  };
   return {
     id: 'thinning',
     label: 'Thickness change against H',
-    verdict: verdictOf(ratio, false),
+    verdict: verdictOf(ratio, refused),
     value: found,
     limit: THINNING_LIMIT,
     unit: 'of H',
     ratio,
-    reason:
-      found > 0.5
-        ? `The layer would change by ${size}: the linear equations do not hold; keep it below ${THINNING_LIMIT}.`
-        : ratio > 1
-          ? `The layer would change by ${size}: linear equations are doubtful past ${THINNING_LIMIT}.`
-          : `The layer would change by ${size}.`,
+    reason: reason(),
     pointers: byStart
       ? ['/start/amplitudeM', '/layer/restThicknessM']
-      : ['/wind/components', '/wind/seasonalStrength', '/layer/restThicknessM', '/layer/reducedGravityMS2'],
-    cures: () => [...weaker(setup, wind ?? 0, start ?? 0)],
+      : [
+          '/wind/components',
+          '/wind/seasonalStrength',
+          '/layer/restThicknessM',
+          '/layer/reducedGravityMS2',
+          ...(refused ? ['/layer/entrainment', '/wind/stressFloorM'] : []),
+        ],
+    cures: () => [
+      ...weaker(setup, e ?? 0, start ?? 0, nonlinear ? NONLINEAR_WIND_LIMIT : THINNING_LIMIT),
+      ...(refused && !byStart ? entraining(setup) : []),
+    ],
   };
 };
 
+/** |u| dx/A with |u| = Fr c, the smallest viscosity and the largest cell; without viscosity beyond any bound. */
+function cellReynolds({ scales }: Case): number {
+  const size = Math.max(scales.dx, scales.dy);
+  const flow = scales.rates.froude * scales.c * size;
+  return flow === 0 ? 0 : scales.viscosity.least > 0 ? Math.min(flow / scales.viscosity.least, 1e6) : 1e6;
+}
+
+/** Entrainment with the defaults of numerics.md §12. */
+function entraining({ layer }: Setup): Remedy[] {
+  const onsetThicknessM = Number(Math.max(layer.minimumThicknessM, Math.min(60, 0.3 * layer.restThicknessM)).toPrecision(4)); // prettier-ignore
+  const value = { onsetThicknessM, timescaleDays: LIMITS.entrainmentTime.default, detrainment: 'none' };
+  return [
+    { label: `Entrain below ${readable(onsetThicknessM)} m`, changes: [{ pointer: '/layer/entrainment', value }] },
+  ];
+}
+
 /** Scales the wind, the start, or both, to the limit; the factor is rounded down to two digits. */
-function weaker(setup: Setup, wind: number, start: number): Remedy[] {
-  const factor = (found: number) => roundedDown(THINNING_LIMIT / found);
+function weaker(setup: Setup, wind: number, start: number, windLimit: number): Remedy[] {
+  const factor = (found: number, limit: number) => roundedDown(limit / found);
   const scaled = (value: number, by: number) => Number((value * by).toPrecision(12));
   const changes: Remedy['changes'] = [];
   const words: string[] = [];
-  if (wind > THINNING_LIMIT) {
-    const by = factor(wind);
+  if (wind > windLimit) {
+    const by = factor(wind, windLimit);
     setup.wind.components.forEach((component, k) => {
       for (const [field, value] of amplitudes(component))
         if (value !== 0) changes.push({ pointer: `/wind/components/${k}/pattern/${field}`, value: scaled(value, by) });
@@ -56,7 +108,7 @@ function weaker(setup: Setup, wind: number, start: number): Remedy[] {
     words.push(`Wind × ${readable(by)}`);
   }
   if (start > THINNING_LIMIT && 'amplitudeM' in setup.start) {
-    const value = scaled(setup.start.amplitudeM, factor(start));
+    const value = scaled(setup.start.amplitudeM, factor(start, THINNING_LIMIT));
     changes.push({ pointer: '/start/amplitudeM', value });
     words.push(`start at ${readable(value)} m`);
   }

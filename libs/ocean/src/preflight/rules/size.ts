@@ -34,7 +34,7 @@ export const gridSize: Rule = ({ setup, cost, scales }) => {
 /** Spacing in km against its hard limits; shown only when it is out of them. */
 export const spacingRange: Rule = ({ setup, scales }) => {
   const { min, max } = LIMITS.spacingKm;
-  const [small, large] = [Math.min(scales.dx, scales.dy) / 1000, Math.max(scales.dx, scales.dy) / 1000];
+  const [small, large] = [Math.min(scales.dxSmallest, scales.dy) / 1000, Math.max(scales.dx, scales.dy) / 1000];
   if (small >= min && large <= max) return null;
   const fine = small < min;
   return {
@@ -45,9 +45,27 @@ export const spacingRange: Rule = ({ setup, scales }) => {
     limit: fine ? min : max,
     unit: 'km',
     ratio: fine ? ratioOfMinimum(small, min) : ratioOfMaximum(large, max),
-    reason: `Cells of ${readable(scales.dx / 1000)} by ${readable(scales.dy / 1000)} km; a spacing must lie between ${min} and ${max} km.`,
+    reason: `Cells of ${readable((fine ? scales.dxSmallest : scales.dx) / 1000)} by ${readable(scales.dy / 1000)} km; a spacing must lie between ${min} and ${max} km.`,
     pointers: SPACINGS,
     cures: () => (fine ? [2, 4, 8, 16, 32, 64, 128] : [0.5, 0.25, 0.1]).map((factor) => scaledCells(setup, factor)),
+  };
+};
+
+/** The grid of the coast against the hard limit of cells; shown only when it is beyond. */
+export const coastGridSize: Rule = ({ coast }) => {
+  if (coast === null || coast.nx * coast.ny <= LIMITS.cells.max) return null;
+  const cells = coast.nx * coast.ny;
+  return {
+    id: 'coast-cells',
+    label: 'Cells of the coast’s grid',
+    verdict: 'refuse',
+    value: cells,
+    limit: LIMITS.cells.max,
+    unit: 'cells',
+    ratio: ratioOfMaximum(cells, LIMITS.cells.max),
+    reason: `The grid of the coast would have ${readable(coast.nx, 8)} × ${readable(coast.ny, 8)} cells, at most ${readable(LIMITS.cells.max, 7)}: use a wider spacing for it.`,
+    pointers: ['/basin/coastSpacing/longitudeDeg', '/basin/coastSpacing/latitudeDeg'],
+    cures: () => [{ label: 'Use the run’s own grid', changes: [{ pointer: '/basin/coastSpacing', value: null }] }],
   };
 };
 

@@ -103,11 +103,12 @@ export const nothingMoves: Rule = ({ setup, wind }) => {
 
 /** A plane without f, for example an f-plane that touches the sphere at the equator. */
 export const noRotation: Rule = ({ setup, scales }) => {
-  if (scales.beta !== 0 || scales.f0 !== 0) return null;
+  if (scales.beta !== 0 || scales.fMax !== 0) return null;
   const flat = setup.basin.geometry === 'fplane';
+  const sphere = setup.basin.geometry === 'spherical';
   return {
     id: 'no-rotation',
-    label: 'Rotation of the plane',
+    label: sphere ? 'Rotation of the sphere' : 'Rotation of the plane',
     verdict: 'caution',
     value: 0,
     limit: 0,
@@ -115,8 +116,12 @@ export const noRotation: Rule = ({ setup, scales }) => {
     ratio: 2,
     reason: flat
       ? 'f₀ is 0: this f-plane does not rotate. Give it a latitude of contact off the equator, or f₀ itself.'
-      : 'f and β are 0 everywhere: this plane does not rotate. Give β, or a rotation rate.',
-    pointers: flat ? ['/basin/referenceLatitudeDeg', '/basin/f0PerS'] : ['/basin/betaPerMS'],
+      : sphere
+        ? 'The rotation rate is 0: this sphere does not rotate. Give a rotation rate.'
+        : 'f and β are 0 everywhere: this plane does not rotate. Give β, or a rotation rate.',
+    pointers: flat
+      ? ['/basin/referenceLatitudeDeg', '/basin/f0PerS']
+      : [sphere ? '/constants/rotationRatePerS' : '/basin/betaPerMS'],
     cures: NO_CURE,
   };
 };

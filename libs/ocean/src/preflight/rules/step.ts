@@ -101,3 +101,34 @@ export const stepAgainstBoth: Rule = ({ setup, scales }) => {
     cures: () => stepRemedies(setup, scales),
   };
 };
+
+/** numerics.md §5, nonlinear: S(1 + 2Fr) with Fr expected before the run. While it runs the true speeds are watched. */
+export const stepAgainstFlow: Rule = ({ setup, scales }) => {
+  if (setup.numerics.equations !== 'nonlinear') return null;
+  const { froude } = scales.rates;
+  const { flow } = stepNumbers(scales.rates, scales.dt);
+  const { flow: highest, flowCaution, froudeCaution } = STEP_LIMITS;
+  const byStep = ratioOfMaximum(flow, flowCaution);
+  const bySpeed = ratioOfMaximum(froude, froudeCaution);
+  const refused = flow > highest;
+  const ratio = Math.max(byStep, bySpeed);
+  const found = `S(1 + 2Fr) is ${readable(flow)} with currents up to ${readable(froude)} of the wave speed expected`;
+  return {
+    id: 'step-flow',
+    label: 'Step against the flow',
+    verdict: verdictOf(ratio, refused),
+    value: flow,
+    limit: flowCaution,
+    unit: '',
+    ratio,
+    reason: refused
+      ? `${found}; the flow makes waves blow up beyond ${highest}.`
+      : byStep > 1
+        ? `${found}; it is close to ${highest}, where waves on the flow blow up, best within ${flowCaution}.`
+        : bySpeed > 1
+          ? `Currents up to ${readable(froude)} of the wave speed are expected: past ${froudeCaution} the step is not proven for them.`
+          : `${found}, within ${flowCaution}.`,
+    pointers: [...STEP_POINTERS, '/wind/components', '/layer/restThicknessM'],
+    cures: () => stepRemedies(setup, scales),
+  };
+};
