@@ -1,13 +1,15 @@
 import { sha256Hex } from '../exact/bytes';
 import { windForcing } from '../forcing/forcing';
+import { spongeRates } from '../forcing/sponges';
 import { SECONDS_PER_DAY } from '../forcing/season';
 import { buildGrid } from '../grid/build-grid';
+import { viscosityMaps } from '../grid/viscosity-map';
 import { isWet, type Grid } from '../grid/grid';
 import type { Column, Fingerprint, Frame } from '../integration-types';
 import type { Setup } from '../setup';
 import { analyticStart } from '../start/initial-state';
 import { createModel, setState, type Model } from '../stepper/model';
-import { createStepper, type Stepper, type StepperOptions } from '../stepper/stepper';
+import { createStepper, steppedBy, type Stepper, type StepperOptions } from '../stepper/stepper';
 import type { StepRecorder } from '../stepper/sums';
 import { BasinBudget, BUDGET_COLUMNS } from './budget';
 import { pack, unpack } from './container';
@@ -19,6 +21,7 @@ import { stepRange } from './schedule';
 import { meridiansOf, SectionRecorder } from './sections';
 import { setupSha256 } from './setup-hash';
 import { packState, startFromState } from './state';
+import { TermBudgets } from './term-budgets';
 import { CORE_VERSION } from './version';
 
 const CHECK_EVERY = 20;
@@ -48,6 +51,7 @@ export class Integration {
   readonly #sections: SectionRecorder;
   readonly #moorings: MooringRecorder;
   #budget: BasinBudget;
+  #termBudgets: TermBudgets;
 
   private constructor(setup: Setup, options: StepperOptions) {
     const { layer, friction, constants, numerics } = setup;
@@ -67,12 +71,16 @@ export class Integration {
       damping: layer.dampingPerS,
       slip: friction.slip,
       forcing: windForcing(setup, this.grid),
+      sponge: spongeRates(setup, this.grid),
+      viscosityMap: viscosityMaps(setup, this.grid),
       meridians: meridiansOf(this.grid, setup.output.sections),
+      ...steppedBy(options, this.grid.nx),
     });
     this.#model.step = startStep;
     this.#sections = new SectionRecorder(this.#model, setup);
     this.#moorings = new MooringRecorder(this.#model, setup.output.moorings);
     this.#budget = new BasinBudget(this.#model);
+    this.#termBudgets = new TermBudgets(this.#model, setup.output);
     this.#stepper = createStepper(this.#model, options);
     this.#recorder = {
       add: (sums) => {
@@ -100,6 +108,7 @@ export class Integration {
       setState(run.#model, analyticStart(setup, run.grid, setup.start));
     }
     run.#budget = new BasinBudget(run.#model);
+    run.#termBudgets = new TermBudgets(run.#model, setup.output);
     return run;
   }
 
@@ -154,10 +163,22 @@ export class Integration {
       throw new RangeError(`checkEvery must be a whole number from 1 to ${CHECK_EVERY}; ${every} arrived.`);
     for (let left = steps; left > 0;) {
       const some = Math.min(left, every);
-      this.#stepper.advance(some, this.#recorder);
+      this.#make(some);
       left -= some;
       if (!isFinite(this.#model))
         throw new IntegrationFailure(failureReport(this.#model, this.setup.numerics.stepsPerDay, every === 1, some));
+    }
+  }
+
+  /** Steps; budgets of every term need the levels after each. */
+  #make(steps: number): void {
+    if (!this.#termBudgets.wanted) {
+      this.#stepper.advance(steps, this.#recorder);
+      return;
+    }
+    for (let n = 0; n < steps; n++) {
+      this.#stepper.advance(1, this.#recorder);
+      this.#termBudgets.add();
     }
   }
 
@@ -187,7 +208,7 @@ export class Integration {
   }
 
   budgetColumns(): Column[] {
-    return [...BUDGET_COLUMNS];
+    return [...BUDGET_COLUMNS, ...this.#termBudgets.columns];
   }
 
   /** Closes the interval of the sections: its values in the order of `sectionColumns`. */
@@ -202,7 +223,7 @@ export class Integration {
 
   /** Closes the interval of the budget: its values in the order of `budgetColumns`. */
   takeBudget(): Float64Array {
-    return this.#budget.take();
+    return Float64Array.of(...this.#budget.take(), ...this.#termBudgets.take());
   }
 
   /** Everything that `restore` needs, with a checksum. */
@@ -238,6 +259,7 @@ export class Integration {
     return [
       ['section sums', this.#sections.slots],
       ['budget sums', this.#budget.slots],
+      ...this.#termBudgets.slots.map((slots, k): [string, Float64Array] => [`term sums ${k + 1}`, slots]),
     ];
   }
 
