@@ -226,9 +226,10 @@ function loadMessage(model: Model): Buffer {
       model.stressFloor,
     ),
     ...[perDxC, perDxV, divNorth, divSouth, curlNorth, curlSouth, coriolisSouth, coriolisNorth, coriolisV],
-    ...[turnSouth, turnNorth, shareSouth, shareNorth, grid.f],
+    ...[turnSouth, turnNorth, shareSouth, shareNorth, grid.f, grid.dxC].map(perRow),
     ...forcing.bases.map(({ tauxRow }) => perRow(tauxRow)),
     ...forcing.bases.map(({ tauyRow }) => perRow(tauyRow)),
+    coastCorners.perWet,
     model.data,
   ];
   const counted = BigInt64Array.from([integers.length + 1, ...integers], BigInt);

@@ -137,7 +137,7 @@ interface Runner {
   close: () => Promise<void>;
 }
 
-async function inProcess(name: 'simd' | 'reference', setup: Setup): Promise<{ runner: Runner; model: Model }> {
+function inProcess(name: 'simd' | 'reference', setup: Setup): { runner: Runner; model: Model } {
   const model = movingModel(setup);
   const stepper: Stepper = createStepper(model, { kernel: name });
   const runner: Runner = {
@@ -147,8 +147,8 @@ async function inProcess(name: 'simd' | 'reference', setup: Setup): Promise<{ ru
       const cpu = await timed(() => stepper.advance(steps));
       return { cpu, wall: (performance.now() - wall) / 1000 };
     },
-    difference: async (reference) => sameLevels(reference, model),
-    close: async () => undefined,
+    difference: (reference) => Promise.resolve(sameLevels(reference, model)),
+    close: () => Promise.resolve(),
   };
   return { runner, model };
 }
@@ -199,9 +199,9 @@ export async function benchGrid(
   const cells = nx * ny;
   const runners: Runner[] = [];
   try {
-    const { runner: referenceRunner, model } = await inProcess('reference', setup);
+    const { runner: referenceRunner, model } = inProcess('reference', setup);
     runners.push(referenceRunner);
-    if (hasKernel(setup)) runners.push((await inProcess('simd', setup)).runner);
+    if (hasKernel(setup)) runners.push(inProcess('simd', setup).runner);
     if (programs)
       for (const name of ['native', 'sse2'] as const) runners.push(await inChild(name, [programs[name]], setup));
     for (const [name, style] of [

@@ -108,10 +108,11 @@ static void load(model *m, const int64_t *message) {
   m->stress_floor = *r.doubles++;
   const double **rows[] = {&m->per_dx_c,      &m->per_dx_v,       &m->div_north,  &m->div_south,  &m->curl_north,
                            &m->curl_south,    &m->coriolis_south, &m->coriolis_north, &m->coriolis_v, &m->turn_south,
-                           &m->turn_north,    &m->share_south,    &m->share_north, &m->f};
+                           &m->turn_north,    &m->share_south,    &m->share_north, &m->f, &m->dx_c};
   for (size_t k = 0; k < sizeof rows / sizeof *rows; k++) *rows[k] = next_doubles(&r, m->ny + 1);
   m->tau_x_rows = next_doubles(&r, (int64_t)m->bases * (m->ny + 1));
   m->tau_y_rows = next_doubles(&r, (int64_t)m->bases * (m->ny + 1));
+  m->coast_per_wet = next_doubles(&r, m->coast_start[m->ny + 1]);
   free(m->data);
   m->data = aligned((size_t)m->length * sizeof *m->data);
   memcpy(m->data, r.doubles, (size_t)m->length * sizeof *m->data);

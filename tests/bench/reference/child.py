@@ -44,12 +44,17 @@ class Model:
         (self.hmin, self.onset, self.timescale, self.stress_floor) = self._take(4)
         rows = (
             "per_dx_c per_dx_v div_north div_south curl_north curl_south coriolis_south coriolis_north coriolis_v "
-            "turn_south turn_north share_south share_north f"
+            "turn_south turn_north share_south share_north f dx_c"
         ).split()
         for name in rows:
             setattr(self, name, self._take(self.ny + 1)[:, None].copy())
         self.tau_x = self._take(self.bases * (self.ny + 1)).reshape(self.bases, self.ny + 1)
         self.tau_y = self._take(self.bases * (self.ny + 1)).reshape(self.bases, self.ny + 1)
+        # 1 over the number of water cells around a corner.
+        self.per_wet = np.full((self.ny + 3, self.pitch), 0.25)
+        counts = self._take(starts[self.ny + 1])
+        for j in range(self.ny + 1):
+            self.per_wet[j + 1, columns[starts[j] : starts[j + 1]]] = counts[starts[j] : starts[j + 1]]
         data = self._take(length)
         plane = lambda at: data[at : at + (self.ny + 1) * self.pitch].reshape(self.ny + 1, self.pitch).copy()
         self.fields_x = [None if at < 0 else plane(at) for at in planes_x]

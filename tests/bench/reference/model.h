@@ -37,13 +37,14 @@ typedef struct {
   /* [ny + 1] each. */
   const double *per_dx_c, *per_dx_v, *div_north, *div_south, *curl_north, *curl_south;
   const double *coriolis_south, *coriolis_north, *coriolis_v;
-  const double *turn_south, *turn_north, *share_south, *share_north, *f;
+  const double *turn_south, *turn_north, *share_south, *share_north, *f, *dx_c;
   /* Stress of each basis: one number a row, zero where there is none, [bases][ny + 1]; offsets of fields or NONE. */
   const double *tau_x_rows, *tau_y_rows;
   const int32_t *tau_x_planes, *tau_y_planes;
   spans cells, u_points, v_points, sweep, bare, corners;
-  /* Corners that touch land: row_start and columns. */
+  /* Corners that touch land: row_start, columns, and 1 over the number of water cells around. */
   const int32_t *coast_start, *coast_columns;
+  const double *coast_per_wet;
   double *data;
 } model;
 
