@@ -48,7 +48,7 @@ export class CountingHasher extends PasswordHasher {
 
 export async function startDeskApi(
   environment: Record<string, string> = {},
-  options: { guard?: SignInGuard; openRequests?: number; webFolder?: string } = {},
+  options: { guard?: SignInGuard; openRequests?: number; webFolder?: string; verificationFolder?: string } = {},
 ): Promise<DeskApi> {
   const varFolder = await mkdtemp(join(tmpdir(), 'halfdeep-desk-'));
   const settings = readSettings({ HALFDEEP_DEMO: 'off', ...environment, HALFDEEP_VAR: varFolder }, varFolder);
@@ -66,6 +66,7 @@ export async function startDeskApi(
     checkAnswers: true,
     openRequests: options.openRequests ?? 10_000,
     webFolder: options.webFolder,
+    verificationFolder: options.verificationFolder,
   });
   const server = createServer(app);
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));

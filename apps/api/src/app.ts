@@ -1,3 +1,4 @@
+import { join } from 'node:path';
 import compression from 'compression';
 import cookieParser from 'cookie-parser';
 import express, { Router, type Express, type Request, type Response } from 'express';
@@ -15,13 +16,17 @@ import { jsonOnly, sameOriginOnly } from './http/request-guards';
 import { route, routesOf, type RouteFrame, type RouteRecord } from './http/route';
 import { securityHeaders } from './http/security-headers';
 import { staticClient } from './http/static-client';
+import { projectFolder } from './project-folder';
 import { runFeatureRoutes } from './runs/run-features';
+import { verificationRoutes } from './verification/verification-routes';
 
 export interface AppOptions {
   /** Folder of the built client; without it the API stands alone. */
   webFolder?: string;
   /** Tests: check every answer against its schema. */
   checkAnswers?: boolean;
+  /** Folder of the verification report; that of the project when left out. */
+  verificationFolder?: string;
   /** Tests: more open requests an address than usual. */
   openRequests?: number;
 }
@@ -47,6 +52,10 @@ export function buildApp(services: Services, options: AppOptions = {}): Express 
     accountRoutes({ ...services, openRequests: options.openRequests }),
     peopleRoutes(services),
     ...runFeatureRoutes(services.runs, services.sessions.accessRevoked$),
+    verificationRoutes({
+      folder: options.verificationFolder ?? join(projectFolder(), 'data', 'verification'),
+      coreVersion: services.coreVersion,
+    }),
   ];
   const described = describingRouter(() => routes);
   const routes = [...routers, described].flatMap(routesOf);

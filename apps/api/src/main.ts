@@ -1,28 +1,17 @@
-import { existsSync, readFileSync } from 'node:fs';
 import { createServer, type RequestListener, type Server } from 'node:http';
 import { type AddressInfo } from 'node:net';
-import { dirname, join } from 'node:path';
-import { fileURLToPath } from 'node:url';
+import { join } from 'node:path';
 import { buildApp } from './app';
 import { composeServices, type Services } from './compose-services';
 import { queueDemonstration } from './demo/demonstration';
 import { DEMO_MODELLER, prepareAccounts, type FirstStartNews } from './first-start';
 import { claimFolder } from './one-server';
+import { projectFolder } from './project-folder';
 import { readSettings, SettingsError, type Settings } from './settings';
 import { prepareVarFolder } from './var-folder';
 
 /** A stop that takes longer than this leaves the open connections to themselves, ms. */
 const PATIENCE_MS = 10_000;
-
-/** The folder that holds package.json of the whole: of the sources and of the bundle alike. */
-function projectFolder(): string {
-  for (let folder = dirname(fileURLToPath(import.meta.url)); folder !== dirname(folder); folder = dirname(folder)) {
-    const manifest = join(folder, 'package.json');
-    if (existsSync(manifest) && (JSON.parse(readFileSync(manifest, 'utf8')) as { name?: string }).name === 'halfdeep')
-      return folder;
-  }
-  return process.cwd();
-}
 
 const say = (text: string) => process.stdout.write(`${text}\n`);
 

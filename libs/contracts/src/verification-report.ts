@@ -85,6 +85,8 @@ export const verificationReportSchema = z
     coreVersion: z.string(),
     /** JavaScript engine, whose elementary functions the tests use: “V8 11.3”. */
     engine: z.string(),
+    /** When it was made; null where that is not written. */
+    madeAt: z.iso.datetime().nullable().default(null),
     counts: z.object({
       cases: z.number().int(),
       passed: z.number().int(),
@@ -98,3 +100,16 @@ export const verificationReportSchema = z
   })
   .meta({ id: 'VerificationReport' });
 export type VerificationReport = z.infer<typeof verificationReportSchema>;
+
+/** The report that ships with the product, beside the core that runs. */
+export const verificationAnswerSchema = z
+  .object({
+    /** Version of the core that runs here; runs of another one are not what was verified. */
+    coreVersion: z.string(),
+    /** null: there is none, or it cannot be read. */
+    report: verificationReportSchema.nullable(),
+    /** Why there is no report, in a sentence; empty when there is one. */
+    why: z.string(),
+  })
+  .meta({ id: 'VerificationAnswer' });
+export type VerificationAnswer = z.infer<typeof verificationAnswerSchema>;
