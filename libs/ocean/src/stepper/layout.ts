@@ -18,8 +18,8 @@ export const PITCHES: readonly number[] = [136, 264, 520, 1032, 2056, 4104];
 export const LINEAR_RING = { ut: 0, vt: 1, divergence: 2, head: 3, spin: 4 } as const;
 /**
  * What a nonlinear step makes on the way: (ut, vt) and the clipped ht at n + ½; the fluxes U = u h_u and V = v h_v, m²/s,
- * limited; R of each cell; g′p + K − A D; A s ζ; a = q (V_W + V_E) and b = q (U_S + U_N) at corners; w_e; div(ut, vt);
- * −div(U, V); K; corner cells' A_c h (sum over the wet ones, per A_q).
+ * from the second half of the sweep on limited; R of each cell; w_e; D = div(ut, vt); O = div(U, V); g′p + K − A D;
+ * A s ζ; a = q (V_W + V_E) and b = q (U_S + U_N) at corners; the rate at which drag brakes beside r at u and v points.
  */
 export const NONLINEAR_RING = {
   ut: 0,
@@ -28,14 +28,15 @@ export const NONLINEAR_RING = {
   fluxU: 3,
   fluxV: 4,
   limit: 5,
-  divergence: 6,
-  head: 7,
-  spin: 8,
-  turnU: 9,
-  turnV: 10,
-  entrained: 11,
-  kinetic: 12,
-  pressure: 13,
+  entrained: 6,
+  divergence: 7,
+  outflow: 8,
+  head: 9,
+  spin: 10,
+  turnU: 11,
+  turnV: 12,
+  brakeU: 13,
+  brakeV: 14,
 } as const;
 /** Rows of a ring: row j lives at place (j + 4) & 3. */
 export const RING_ROWS = 4;

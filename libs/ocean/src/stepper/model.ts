@@ -6,7 +6,7 @@ import { Arena, layoutOf, WEST, type Layout } from './layout';
 import { refuseBadOptions, type EntrainmentOptions, type ModelOptions } from './model-options';
 import { coastCorners, spansOf, type CoastCorners, type ModelSpans, type Spans } from './spans';
 import { fillStatics, reserveStatics, type Statics } from './statics';
-import { LINEAR_TERMS, reserveSums, sumsAt, type StepSums, type SumsPlace } from './sums';
+import { LINEAR_TERMS, NONLINEAR_TERMS, reserveSums, sumsAt, type StepSums, type SumsPlace } from './sums';
 
 /**
  * The equations of numerics.md §1 on one grid: state, coefficients and scratch rows, in one memory that every stepper
@@ -58,7 +58,7 @@ export function createModel(options: ModelOptions): Model {
   const arena = new Arena(layout.length);
   const { statics, fills } = reserveStatics(arena, layout, options, forcing);
   const stress = arena.reserve(layout.pitch);
-  const sumsPlace = reserveSums(arena, grid.ny, LINEAR_TERMS, meridians);
+  const sumsPlace = reserveSums(arena, grid.ny, equations === 'linear' ? LINEAR_TERMS : NONLINEAR_TERMS, meridians);
   const bytes = 8 * arena.length;
   const { buffer, byteOffset } = options.allocate?.(bytes) ?? { buffer: new ArrayBuffer(bytes), byteOffset: 0 };
   const data = new Float64Array(buffer, byteOffset, arena.length);
@@ -106,6 +106,12 @@ export interface InitialValues {
  * Throws RangeError when a value is not finite, or a nonlinear layer would be no thicker than 0.
  */
 export function setState(model: Model, values: InitialValues): void {
+  setLevel(model, values);
+  copyHistory(model);
+}
+
+/** Sets the present level of a state on water points and leaves the two before as they are; errors as `setState`. */
+export function setLevel(model: Model, values: InitialValues): void {
   const base = model.equations === 'nonlinear' ? model.restThickness : 0;
   const fill = (name: 'eta' | 'u' | 'v', variable: StateVariable, spans: Spans, rest: number) => {
     const { data, offset, rowStride } = fieldOf(model, variable);
@@ -128,7 +134,6 @@ export function setState(model: Model, values: InitialValues): void {
   fill('eta', 'h', model.spans.cells, base);
   fill('u', 'u', model.spans.uPoints, 0);
   fill('v', 'v', model.spans.vPoints, 0);
-  copyHistory(model);
 }
 
 /** Calls `run` with the first and the end column (cells counted from 0) of each run of row j. */

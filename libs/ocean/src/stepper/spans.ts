@@ -84,18 +84,24 @@ export function isDry(spans: Spans, j: number): boolean {
 export interface CoastCorners {
   rowStart: Int32Array;
   columns: Int32Array;
+  /** 1 over the number of water cells around each. */
+  perWet: Float64Array;
 }
 
 /** The corners where ζ takes the slip factor, 0 for free slip and 2 for no slip (numerics.md §3). */
 export function coastCorners(grid: Grid): CoastCorners {
   const rowStart = new Int32Array(grid.ny + 2);
   const columns: number[] = [];
+  const perWet: number[] = [];
   for (let j = 0; j <= grid.ny; j++) {
     for (let i = 0; i <= grid.nx; i++) {
       const water = [isWet(grid, i - 1, j - 1), isWet(grid, i, j - 1), isWet(grid, i - 1, j), isWet(grid, i, j)];
-      if (water.some(Boolean) && !water.every(Boolean)) columns.push(WEST + i);
+      const count = water.filter(Boolean).length;
+      if (count === 0 || count === 4) continue;
+      columns.push(WEST + i);
+      perWet.push(1 / count);
     }
     rowStart[j + 1] = columns.length;
   }
-  return { rowStart, columns: Int32Array.from(columns) };
+  return { rowStart, columns: Int32Array.from(columns), perWet: Float64Array.from(perWet) };
 }

@@ -1,5 +1,6 @@
 import { linearStep } from './linear/linear-step';
 import type { Model } from './model';
+import { nonlinearStep } from './nonlinear/nonlinear-step';
 import type { StepRecorder } from './sums';
 
 /** Which code makes the steps; all of them give the same bits. */
@@ -42,5 +43,6 @@ export function referenceStepper(model: Model): Stepper {
 
 /** One step by the reference stepper; `sums`: also write `model.sums`. */
 export function stepModel(model: Model, sums = false): void {
-  linearStep(model, sums);
+  if (model.equations === 'nonlinear') nonlinearStep(model, sums);
+  else linearStep(model, sums);
 }

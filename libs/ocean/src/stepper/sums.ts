@@ -31,6 +31,47 @@ export const LINEAR_TERMS = [
 ] as const;
 export type LinearTerm = (typeof LINEAR_TERMS)[number];
 
+/**
+ * Row sums of the nonlinear step; h̄, ū means of the step, B = g′ η̄ + K̄ (derivation: nonlinear-sums.ts). u terms are to be
+ * multiplied by ρ0 A_u, v terms by ρ0 A_v, cell terms by ρ0 A_c.
+ */
+export const NONLINEAR_TERMS = [
+  /** Σ h̄ ū S, S = τ/(ρ0 max(h, h_s)). */
+  'windU',
+  'windV',
+  /** Σ h̄ ū²: times −r. */
+  'squareU',
+  'squareV',
+  /** Σ h̄ ū² r_s of sponges. */
+  'spongeU',
+  'spongeV',
+  /** Σ h̄ ū F. */
+  'viscousU',
+  'viscousV',
+  /** Σ h̄ ū (turning − grad(g′p + K)). */
+  'kineticU',
+  'kineticV',
+  /** Σ h̄ ū² w_e/h: what entrained water without momentum takes. */
+  'dilutedU',
+  'dilutedV',
+  /** Σ η̄, m; Σ B; Σ B div(U, V); Σ B η̄. */
+  'eta',
+  'bernoulli',
+  'bernoulliOutflow',
+  'bernoulliEta',
+  /** Σ w_e, m/s; Σ B w_e; the uniform w_d, m/s, once a row. */
+  'entrained',
+  'bernoulliEntrained',
+  'detrained',
+  /** Σ κ_s η̄; Σ B κ_s η̄. */
+  'spongeEta',
+  'bernoulliSpongeEta',
+  /** Cells whose outflow was limited, and those whose ht was raised to hmin. */
+  'limited',
+  'clipped',
+] as const;
+export type NonlinearTerm = (typeof NONLINEAR_TERMS)[number];
+
 /** What one step did, in row sums; written by the step, read by a recorder at once. */
 export interface StepSums<Term extends string = string> {
   /** [ny + 1] each; rows that a term has no points on hold 0. */

@@ -1,6 +1,7 @@
 import { E0, E1, E2, P0, P1, PM1, PM2 } from '../coefficients';
-import { H_PLANE, levelOffset, LINEAR_RING, ringRow, U_PLANE, V_PLANE, WEST, type Role } from '../layout';
+import { H_PLANE, LINEAR_RING, ringRow, U_PLANE, V_PLANE, WEST } from '../layout';
 import type { Model } from '../model';
+import { bareRow, brakeRow, clearRing, levelRow, wrapRow } from '../rows';
 import { isDry } from '../spans';
 import { NONE } from '../statics';
 import { stressOfRow } from '../stress';
@@ -35,24 +36,6 @@ export function linearStep(model: Model, sums: boolean): void {
   }
   model.phase = (model.phase + 1) & 3;
   model.step += 1;
-}
-
-function clearRing(model: Model, plane: number, j: number): void {
-  const row = ringRow(model.layout, plane, j);
-  model.data.fill(0, row, row + model.layout.pitch);
-}
-
-/** Puts 0 where the next row's sweep will read a v at n + ½ that this row's sweep does not make. */
-function bareRow({ data, layout, spans }: Model, vtPlane: number, j: number): void {
-  const { bounds, rowStart } = spans.bare;
-  const vt = ringRow(layout, vtPlane, j + 1);
-  for (let s = rowStart[j]; s < rowStart[j + 1]; s++) data.fill(0, vt + bounds[2 * s], vt + bounds[2 * s + 1]);
-}
-
-/** Column 0 of a plane of row j of a level. */
-function levelRow(model: Model, role: Role, plane: number, j: number): number {
-  const { layout, phase } = model;
-  return levelOffset(layout, phase, role) + (j + 1) * layout.record + plane * layout.pitch;
 }
 
 /**
@@ -154,11 +137,6 @@ function viscousHead(model: Model, j: number): void {
     for (let c = bounds[2 * s]; c < bounds[2 * s + 1]; c++) data[head + c] -= data[A + c] * data[divergence + c];
 }
 
-function wrapRow(data: Float64Array, row: number, nx: number): void {
-  data[row + WEST - 1] = data[row + WEST + nx - 1];
-  data[row + WEST + nx] = data[row + WEST];
-}
-
 /** A s ζ at corner row j: the viscosity times ζ, with the slip factor put on the corners that touch land. */
 function spinRow(model: Model, j: number): void {
   const { data, layout, spans, viscosity, rows, coastCorners, statics } = model;
@@ -200,8 +178,8 @@ function meridionalRow(model: Model, j: number): void {
   const now = levelRow(model, 'now', V_PLANE, j);
   const next = levelRow(model, 'next', V_PLANE, j);
   const varies = statics.spongeV !== NONE && statics.spongeRows[j] === 1;
-  const keep = varies ? 0 : (1 - 0.5 * rayleigh * dt) / (1 + 0.5 * rayleigh * dt);
-  const push = varies ? 1 : dt / (1 + 0.5 * rayleigh * dt);
+  const keep = (1 - 0.5 * rayleigh * dt) / (1 + 0.5 * rayleigh * dt);
+  const push = dt / (1 + 0.5 * rayleigh * dt);
   const turn = rows.coriolisV[j];
   const perDx = rows.perDxV[j];
   const perDy = 1 / grid.dy;
@@ -219,10 +197,11 @@ function meridionalRow(model: Model, j: number): void {
       const F = (spinEast - spinWest) * perDx;
       west = east;
       spinWest = spinEast;
-      data[next + c] = keep * data[now + c] + push * (P - C + F + data[stress + c]);
+      const G = P - C + F + data[stress + c];
+      data[next + c] = varies ? G : keep * data[now + c] + push * G;
     }
   }
-  if (varies) braked(model, statics.spongeV + j * layout.pitch, now, next, spans.vPoints, j);
+  if (varies) brakeRow(model, statics.spongeV + j * layout.pitch, now, next, spans.vPoints, j);
   if (grid.periodic) wrapRow(data, next, grid.nx);
 }
 
@@ -238,8 +217,8 @@ function zonalRow(model: Model, j: number): void {
   const now = levelRow(model, 'now', U_PLANE, j);
   const next = levelRow(model, 'next', U_PLANE, j);
   const varies = statics.spongeU !== NONE && statics.spongeRows[j] === 1;
-  const keep = varies ? 0 : (1 - 0.5 * rayleigh * dt) / (1 + 0.5 * rayleigh * dt);
-  const push = varies ? 1 : dt / (1 + 0.5 * rayleigh * dt);
+  const keep = (1 - 0.5 * rayleigh * dt) / (1 + 0.5 * rayleigh * dt);
+  const push = dt / (1 + 0.5 * rayleigh * dt);
   const turnSouth = rows.coriolisSouth[j];
   const turnNorth = rows.coriolisNorth[j];
   const perDx = rows.perDxC[j];
@@ -258,27 +237,10 @@ function zonalRow(model: Model, j: number): void {
       const F = (data[spin + c] - data[spinNorth + c]) * perDy;
       west = east;
       headWest = headEast;
-      data[next + c] = keep * data[now + c] + push * (P + C + F + data[stress + c]);
+      const G = P + C + F + data[stress + c];
+      data[next + c] = varies ? G : keep * data[now + c] + push * G;
     }
   }
-  if (varies) braked(model, statics.spongeU + j * layout.pitch, now, next, spans.uPoints, j);
+  if (varies) brakeRow(model, statics.spongeU + j * layout.pitch, now, next, spans.uPoints, j);
   if (grid.periodic) wrapRow(data, next, grid.nx);
-}
-
-/** Crank–Nicolson drag where it varies along the row: `next` holds the tendency of everything else. */
-function braked(
-  model: Model,
-  rate: number,
-  now: number,
-  next: number,
-  { bounds, rowStart }: Model['spans']['uPoints'],
-  j: number,
-): void {
-  const { data, dt, rayleigh } = model;
-  const half = 0.5 * dt;
-  for (let s = rowStart[j]; s < rowStart[j + 1]; s++)
-    for (let c = bounds[2 * s]; c < bounds[2 * s + 1]; c++) {
-      const k = half * (rayleigh + data[rate + c]);
-      data[next + c] = ((1 - k) * data[now + c] + dt * data[next + c]) / (1 + k);
-    }
 }
