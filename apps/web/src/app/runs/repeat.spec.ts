@@ -18,7 +18,7 @@ describe('isRepeat', () => {
 describe('repeatVerdict', () => {
   it('passes only what is the same in every bit', () => {
     const verdict = repeatVerdict(run('Again', print('ab')), run('Control', print('ab')));
-    expect(verdict).toEqual({ verdict: 'pass', text: 'same to the last bit as Control' });
+    expect(verdict).toEqual({ verdict: 'pass', text: 'verified: same to the last bit as Control' });
   });
   it('refuses a difference that nothing explains', () => {
     expect(repeatVerdict(run('Again', print('ab')), run('Control', print('cd'))).verdict).toBe('refuse');
@@ -26,7 +26,13 @@ describe('repeatVerdict', () => {
   it('cautions when another core version computed it', () => {
     const { verdict, text } = repeatVerdict(run('Again', print('ab', '2')), run('Control', print('cd', '1')));
     expect(verdict).toBe('caution');
-    expect(text).toContain('1 then, 2 now');
+    expect(text).toMatch(/^another core version \(1 then, 2 now\)/);
+    expect(text).not.toMatch(/failed|differs/);
+  });
+  it('passes the same bits of another core version, and says so', () => {
+    const { verdict, text } = repeatVerdict(run('Again', print('ab', '2')), run('Control', print('ab', '1')));
+    expect(verdict).toBe('pass');
+    expect(text).toContain('by another core version (1 then, 2 now)');
   });
   it.each([
     [null, run('Control', print('ab')), /when it has finished/],

@@ -14,7 +14,6 @@ export interface RepeatVerdict {
 }
 
 type Ended = Pick<RunSummary, 'label' | 'fingerprint'>;
-type Print = NonNullable<RunSummary['fingerprint']>;
 
 /** Holds a repeat against the run that it repeats; `original` null: it is gone. */
 export function repeatVerdict(repeat: Ended, original: Ended | null): RepeatVerdict {
@@ -23,15 +22,15 @@ export function repeatVerdict(repeat: Ended, original: Ended | null): RepeatVerd
   const [first, second] = [original.fingerprint, repeat.fingerprint];
   if (!first) return { verdict: null, text: `${original.label} has no fingerprint to hold this one against.` };
   if (!second) return { verdict: null, text: `To be held against ${original.label} when it has finished.` };
-  if (sameBits(first, second)) return { verdict: 'pass', text: `same to the last bit as ${original.label}` };
-  if (first.coreVersion !== second.coreVersion)
-    return {
-      verdict: 'caution',
-      text: `other core version than ${original.label} (${first.coreVersion} then, ${second.coreVersion} now): the two may differ`,
-    };
-  return { verdict: 'refuse', text: `differs from ${original.label}, though setup and core version are the same` };
-}
-
-function sameBits(a: Print, b: Print): boolean {
-  return a.sha256 === b.sha256 && a.coreVersion === b.coreVersion;
+  const core = `another core version (${first.coreVersion} then, ${second.coreVersion} now)`;
+  if (first.coreVersion === second.coreVersion)
+    return first.sha256 === second.sha256
+      ? { verdict: 'pass', text: `verified: same to the last bit as ${original.label}` }
+      : { verdict: 'refuse', text: `differs from ${original.label}, though setup and core version are the same` };
+  return first.sha256 === second.sha256
+    ? { verdict: 'pass', text: `verified: same to the last bit as ${original.label}, by ${core}` }
+    : {
+        verdict: 'caution',
+        text: `${core} than that of ${original.label}: the bits may differ, so this neither verifies nor fails it`,
+      };
 }

@@ -1,9 +1,10 @@
-import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, inject, input, linkedSignal, signal } from '@angular/core';
 import { rxResource } from '@angular/core/rxjs-interop';
 import { MatButton } from '@angular/material/button';
 import { RouterLink } from '@angular/router';
 import { type Run, type RunSummary, experimentSchema } from '@halfdeep/contracts';
 import { type Setup, buildGrid, describeSetup } from '@halfdeep/ocean';
+import { firstValueFrom } from 'rxjs';
 import { Api } from '../core/api';
 import {
   formatBytes,
@@ -15,9 +16,11 @@ import {
   formatQuantity,
   formatTimestamp,
 } from '../core/format';
-import { toApiProblem } from '../core/problem';
+import { type ApiProblem, toApiProblem } from '../core/problem';
 import { DataState } from '../shared/data-state/data-state';
+import { ProblemMessage } from '../shared/problem-message/problem-message';
 import { StateSign } from '../shared/state-sign/state-sign';
+import { RunActions } from './run-actions';
 import { sameSetup } from './same-setup';
 
 interface Row {
@@ -28,14 +31,26 @@ interface Row {
 /** What determines this run, where it comes from, what came from it, and the proof of its last state. */
 @Component({
   selector: 'app-run-setup',
-  imports: [DataState, MatButton, RouterLink, StateSign],
+  imports: [DataState, MatButton, ProblemMessage, RouterLink, StateSign],
   templateUrl: './run-setup.html',
   styleUrl: './run-setup.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class RunSetup {
   private readonly api = inject(Api);
+  private readonly actions = inject(RunActions);
   readonly run = input.required<Run>();
+
+  protected readonly exporting = signal(false);
+  /** What became of the last export; it belongs to the run that it was about. */
+  protected readonly exported = linkedSignal<string, string>({
+    source: () => this.run().id,
+    computation: () => '',
+  });
+  protected readonly exportProblem = linkedSignal<string, ApiProblem | null>({
+    source: () => this.run().id,
+    computation: () => null,
+  });
 
   private readonly setup = computed(() => this.run().setup, { equal: sameSetup });
   protected readonly words = computed<Row[]>(() => {
@@ -89,6 +104,22 @@ export class RunSetup {
       ? (this.relatives.value().runList.find((run) => run.id === this.run().parentRunId) ?? null)
       : null,
   );
+
+  protected async exportSetup(): Promise<void> {
+    const run = this.run();
+    this.exporting.set(true);
+    this.exported.set('');
+    this.exportProblem.set(null);
+    try {
+      const name = await firstValueFrom(this.actions.exportSetup(run));
+      const together = run.setup.start.kind === 'state' ? ', together with the state it starts from' : '';
+      this.exported.set(`The setup is in “${name}”${together}.`);
+    } catch (error) {
+      this.exportProblem.set(toApiProblem(error));
+    } finally {
+      this.exporting.set(false);
+    }
+  }
 
   protected changesOf(run: RunSummary): string {
     if (run.descent === 'extension') return 'goes on from the last state';

@@ -1,5 +1,6 @@
-import { corvaneSetup } from '@halfdeep/ocean';
-import { hasShapeOfSetup, readSetupFile, setupFileName, writeSetupFile } from './setup-file';
+import { setupText, writeBundle } from '@halfdeep/contracts';
+import { corvaneSetup, Integration, type Setup } from '@halfdeep/ocean';
+import { hasShapeOfSetup, readSetupBytes, readSetupFile } from './setup-file';
 import { withValueAt } from './setup-pointer';
 
 const refusal = (text: string) => {
@@ -10,7 +11,7 @@ const refusal = (text: string) => {
 describe('readSetupFile', () => {
   it('reads what it wrote', () => {
     const setup = corvaneSetup();
-    expect(readSetupFile(writeSetupFile(setup))).toEqual({ kind: 'setup', setup, label: null, refusedFields: 0 });
+    expect(readSetupFile(setupText(setup))).toEqual({ kind: 'setup', setup, label: null, refusedFields: 0 });
   });
   it('takes a label beside the setup', () => {
     const text = JSON.stringify({ label: 'Strong', setup: corvaneSetup(1.2) });
@@ -33,7 +34,38 @@ describe('readSetupFile', () => {
   });
 });
 
-it('names the file after the label', () => {
-  expect(setupFileName('Seasonal strength 1.20')).toBe('seasonal-strength-1.20.setup.json');
-  expect(setupFileName('…/..')).toBe('setup.setup.json');
+describe('readSetupBytes', () => {
+  const state = Uint8Array.of(1, 2, 3);
+  const from = (stateSha256: string): Setup => ({
+    ...corvaneSetup(),
+    start: {
+      kind: 'state',
+      runId: '22222222-2222-4222-8222-222222222222',
+      fingerprint: 'ab'.repeat(32),
+      stateSha256,
+      startStep: 160,
+      stepsPerDay: 16,
+    },
+  });
+  async function bundle(setup: Setup, pieces: Uint8Array[]): Promise<Uint8Array> {
+    const parts: Uint8Array[] = [];
+    await writeBundle({ label: 'x', setup }, pieces, (piece) => void parts.push(piece.slice()));
+    return new Uint8Array(await new Blob(parts as BlobPart[]).arrayBuffer());
+  }
+  const reasons = (bytes: Uint8Array) => {
+    const reading = readSetupBytes(bytes);
+    return reading.kind === 'refused' ? reading.reasons.join(' ') : 'was read';
+  };
+
+  it('reads JSON and bundles alike', async () => {
+    const setup = from(Integration.stateSha256(state));
+    const whole = { kind: 'setup', setup, label: null, refusedFields: 0 };
+    expect(readSetupBytes(new TextEncoder().encode(setupText(setup)))).toEqual(whole);
+    expect(readSetupBytes(await bundle(setup, [state]))).toEqual(whole);
+  });
+  it('refuses a bundle whose state is another one, missing or not asked for', async () => {
+    expect(reasons(await bundle(from('cd'.repeat(32)), [state]))).toContain('another one');
+    expect(reasons(await bundle(corvaneSetup(), [state]))).toContain('starts from “rest”');
+    expect(reasons(Uint8Array.of(0x50, 0x4b, 3, 4, 0))).toContain('cannot be unpacked');
+  });
 });

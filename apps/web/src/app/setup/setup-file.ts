@@ -1,5 +1,5 @@
-import { setupSchema } from '@halfdeep/contracts';
-import { fieldLabel, type Setup } from '@halfdeep/ocean';
+import { isZip, readBundle, SetupFileError, setupSchema } from '@halfdeep/contracts';
+import { fieldLabel, Integration, type Setup } from '@halfdeep/ocean';
 import { toPointer, valueAt } from './setup-pointer';
 
 /** What a file held: a setup that the form can show (some fields may still be refused there), or why not. */
@@ -9,6 +9,32 @@ export type SetupFileReading =
 /** Issues that a field of the form can show and cure. */
 const CURABLE = new Set(['too_small', 'too_big', 'not_multiple_of', 'custom', 'invalid_format']);
 const MOST_REASONS = 6;
+
+/**
+ * Reads a setup file as it was opened: JSON, or a bundle, whose state must be the very one that its setup starts from.
+ * The state itself stays in the file: the form needs its name alone.
+ */
+export function readSetupBytes(bytes: Uint8Array): SetupFileReading {
+  if (!isZip(bytes)) return readSetupFile(new TextDecoder().decode(bytes));
+  try {
+    const { text, state } = readBundle(bytes);
+    const reading = readSetupFile(text);
+    const wrong = reading.kind === 'setup' ? wrongState(reading.setup, state) : null;
+    return wrong === null ? reading : { kind: 'refused', reasons: [wrong] };
+  } catch (error) {
+    if (error instanceof SetupFileError) return { kind: 'refused', reasons: [error.message] };
+    throw error;
+  }
+}
+
+/** What is wrong with the state in a bundle; null when it is the one that the setup starts from. */
+function wrongState({ start }: Setup, state: Uint8Array | null): string | null {
+  if (start.kind !== 'state')
+    return state && `The bundle carries a start state, but its setup starts from “${start.kind}”.`;
+  if (!state) return `The setup starts from the last state of a run, and that state is missing in the bundle.`;
+  if (Integration.stateSha256(state) === start.stateSha256) return null;
+  return 'The state in the bundle is another one than the one that its setup starts from.';
+}
 
 /**
  * Reads a setup from JSON text: the setup itself, as scripts post it, or an object {label, setup}. Values out of range
@@ -52,20 +78,6 @@ export function readSetupFile(text: string): SetupFileReading {
 /** True when the form can show it: every part is there and of its kind, though numbers may be empty or out of range. */
 export function hasShapeOfSetup(value: unknown): value is Setup {
   return readSetupFile(JSON.stringify(value ?? null)).kind === 'setup';
-}
-
-/** The text that `readSetupFile` and the API read. */
-export function writeSetupFile(setup: Setup): string {
-  return `${JSON.stringify(setup, null, 2)}\n`;
-}
-
-/** A file name from a label: letters and digits of any script, the rest becomes hyphens. */
-export function setupFileName(label: string): string {
-  const stem = label
-    .toLowerCase()
-    .replace(/[^\p{L}\p{N}.]+/gu, '-')
-    .replace(/^[-.]+|[-.]+$/g, '');
-  return `${stem || 'setup'}.setup.json`;
 }
 
 /** A number that was still empty when the form was saved. */

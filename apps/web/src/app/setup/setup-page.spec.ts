@@ -8,6 +8,7 @@ import { MatInputHarness } from '@angular/material/input/testing';
 import { provideRouter, Router } from '@angular/router';
 import { corvaneSetup, type Setup } from '@halfdeep/ocean';
 import { KeptDrafts } from '../core/kept-drafts';
+import { SetupExchange } from './setup-exchange';
 import { withValueAt } from './setup-pointer';
 import { SetupPage } from './setup-page';
 
@@ -203,6 +204,30 @@ describe('SetupPage', { timeout: 60_000 }, () => {
     expect(TestBed.inject(KeptDrafts).read(place)).toBeNull();
     await press(page, '.notice button:first-child');
     expect(text(fixture)).toContain('thickness at rest 200 → 175');
+  });
+
+  it('opens a setup file with what is wrong at its field, and exports what stands in the form', async () => {
+    const page = await openPage();
+    const input = (page.fixture.nativeElement as HTMLElement).querySelector<HTMLInputElement>('.file input')!;
+    const content = JSON.stringify(withValueAt(corvaneSetup(), '/layer/restThicknessM', 9000));
+    const file = new File([content], 'thick.setup.json');
+    file.arrayBuffer = () => Promise.resolve(new TextEncoder().encode(content).buffer);
+    Object.defineProperty(input, 'files', { value: [file] });
+    Object.defineProperty(input, 'value', { value: '', writable: true });
+    input.dispatchEvent(new Event('change'));
+    await vi.waitFor(() => expect(text(page.fixture)).toContain('filled in from “thick.setup.json”'));
+    expect(text(page.fixture)).toContain('One field cannot be read yet.');
+    await vi.waitFor(() =>
+      expect(document.querySelector('[data-pointer="/layer/restThicknessM"] mat-error')?.textContent).toContain(
+        'must be between 10 and 5000 m; 9000 arrived',
+      ),
+    );
+    const save = vi
+      .spyOn(TestBed.inject(SetupExchange), 'save')
+      .mockResolvedValue({ text: 'The setup is in “x.setup.json”.', refused: false });
+    await press(page, '.beginning .actions button');
+    expect(save.mock.calls[0][0]).toMatchObject({ layer: { restThicknessM: 9000 } });
+    expect(text(page.fixture)).toContain('The setup is in “x.setup.json”.');
   });
 
   it('keeps what is typed when the page is left', async () => {

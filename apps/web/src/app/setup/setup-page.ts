@@ -43,7 +43,8 @@ import { SetupContents } from './setup-contents';
 import { SetupDraft } from './setup-draft';
 import { SketchRunner } from './sketch/sketch-runner';
 import { SketchSection } from './sketch/sketch-section';
-import { hasShapeOfSetup, readSetupFile, setupFileName, writeSetupFile } from './setup-file';
+import { SetupExchange } from './setup-exchange';
+import { hasShapeOfSetup, readSetupBytes } from './setup-file';
 
 /** How long after the last key the form is kept. */
 const KEEP_AFTER_MS = 300;
@@ -55,6 +56,8 @@ interface Notice {
   details: string[];
   refused: boolean;
   back: { label: string; setup: Setup; ownLabel: string | null } | null;
+  /** It offers to forget what was typed. */
+  discards?: boolean;
 }
 
 /** One form over everything in a setup, in the order of the physics, with preflight beside it. */
@@ -90,6 +93,7 @@ export class SetupPage {
   private readonly router = inject(Router);
   private readonly storage = inject(KeptDrafts);
   private readonly runner = inject(PreflightRunner);
+  private readonly exchange = inject(SetupExchange);
   protected readonly draft = inject(SetupDraft);
   /** Of the experiment; bound from the route. */
   readonly id = input.required<string>();
@@ -123,6 +127,7 @@ export class SetupPage {
   protected readonly ready = signal(false);
   protected readonly notice = signal<Notice | null>(null);
   protected readonly sending = signal(false);
+  protected readonly exporting = signal(false);
   protected readonly problem = signal<ApiProblem | null>(null);
   protected readonly notKept = signal(false);
 
@@ -183,7 +188,7 @@ export class SetupPage {
     const file = field.files?.[0];
     field.value = ''; // the same file can be opened again
     if (!file) return;
-    const reading = readSetupFile(await file.text());
+    const reading = readSetupBytes(new Uint8Array(await file.arrayBuffer()));
     if (reading.kind === 'refused') {
       this.notice.set({ text: `“${file.name}” was not opened.`, details: reading.reasons, refused: true, back: null });
       return;
@@ -192,16 +197,24 @@ export class SetupPage {
       reading.refusedFields > 0
         ? ` ${sentenceStart(formatCount(reading.refusedFields, 'field'))} cannot be read yet.`
         : '';
-    this.replace(reading.setup, reading.label, `The form is filled in from “${file.name}”.${refused}`);
+    const start = await this.exchange.whatStartCanDo(reading.setup);
+    this.replace(
+      reading.setup,
+      reading.label,
+      `The form is filled in from “${file.name}”.${refused}${start ? ` ${start}` : ''}`,
+    );
   }
 
-  protected saveFile(): void {
-    const address = URL.createObjectURL(new Blob([writeSetupFile(this.draft.value())], { type: 'application/json' }));
-    const link = document.createElement('a');
-    link.href = address;
-    link.download = setupFileName(this.draft.label());
-    link.click();
-    URL.revokeObjectURL(address);
+  /** The setup as it stands, as a file for the headless command, a colleague or this form. */
+  protected async exportSetup(): Promise<void> {
+    if (this.exporting()) return;
+    this.exporting.set(true);
+    try {
+      const saved = await this.exchange.save(this.draft.value(), this.draft.label());
+      this.notice.set({ ...saved, details: [], back: null });
+    } finally {
+      this.exporting.set(false);
+    }
   }
 
   protected discard(): void {
@@ -287,6 +300,7 @@ export class SetupPage {
         details: [],
         refused: false,
         back: null,
+        discards: true,
       });
     }
     this.ready.set(true);
