@@ -54,7 +54,7 @@ describe('the same setup at half and at twice the resolution', () => {
       expect(levels[0].plan!.notes.join(' ')).toMatch(/“Odd” moves from 5° to/);
       expect([result, waitingFor]).toEqual([
         null,
-        'No run at half the resolution and at twice the resolution has been queued.',
+        'No run has been queued at half the resolution or at twice the resolution.',
       ]);
     }
     expect((await read(base.id, reader)).canQueue).toBe(false);
@@ -113,7 +113,7 @@ describe('the same setup at half and at twice the resolution', () => {
       expect([half, own, twice]).toEqual([a, b, c]);
       if (measure.name === 'Odd') {
         expect(verdict).toBe('line moved');
-        expect(measure.sentence).toMatch(/no line at 5° N; the transport there is that through [46]° N/);
+        expect(measure.sentence).toMatch(/no line at 5° N at half the resolution; the nearest one, [46]° N/);
         continue;
       }
       const expected = richardson(
@@ -143,7 +143,7 @@ describe('the same setup at half and at twice the resolution', () => {
     for (const { run } of levels) await reach(hand, run!.id, 'finished');
     await hand.delete(`/api/runs/${levels[0].run!.id}`).expect(204);
     const less = choice(await read(), 'anew');
-    expect(less).toMatchObject({ result: null, waitingFor: 'No run at half the resolution has been queued.' });
+    expect(less).toMatchObject({ result: null, waitingFor: 'No run has been queued at half the resolution.' });
     expect(less.levels[1].run!.id).toBe(levels[1].run!.id);
     await order('anew').expect(202);
     const again = choice(await read(), 'anew');

@@ -76,7 +76,7 @@ function otherLine(along: Section['along'], { fromDeg, toDeg }: RefinedSection):
   };
   return {
     verdict: 'line moved',
-    sentence: `At half the resolution there is no line at ${place(fromDeg)}; the transport there is that through ${place(toDeg)}. A section on every second line of the grid can be held against both.`,
+    sentence: `There is no line at ${place(fromDeg)} at half the resolution; the nearest one, ${place(toDeg)}, carries another transport.`,
     order: null,
     extrapolated: null,
     gci: null,

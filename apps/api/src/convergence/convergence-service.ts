@@ -204,7 +204,7 @@ function whatIsMissing(base: Run, levels: readonly ConvergenceLevel[]): string |
   if (base.setup.output.sections.length === 0)
     return 'This run keeps no sections, so that there is no transport to compare.';
   const missing = levels.filter(({ run }) => run === null).map(({ role }) => AT[role]);
-  if (missing.length > 0) return `No run at ${missing.join(' and at ')} has been queued.`;
+  if (missing.length > 0) return `No run has been queued at ${missing.join(' or at ')}.`;
   const going = levels.flatMap(({ role, run }) =>
     run && run.state !== 'finished' ? [`the run at ${AT[role]} is ${run.state}`] : [],
   );
