@@ -20,6 +20,8 @@ export {
   type Stepper,
   type StepperOptions,
 } from './stepper/stepper';
+export { sharedModule } from './kernel/shared-module';
+export type { ThreadTeam } from './kernel/thread-team';
 export type { StepRecorder, StepSums } from './stepper/sums';
 export type { EntrainmentOptions, ModelOptions, SpongeRates, ViscosityMap } from './stepper/model-options';
 export { Integration } from './integration/integration';

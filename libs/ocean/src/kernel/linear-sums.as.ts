@@ -23,6 +23,53 @@ export function put(head: usize, c: usize, term: i32, j: i32, value: f64): void 
   store<f64>(int(c, P.C_SUMS) + <usize>term * int(head, P.SUM_ROW) + 8 * <usize>j, value);
 }
 
+export function putMeridional(
+  head: usize,
+  c: usize,
+  j: i32,
+  wind: f64,
+  square: f64,
+  braked: f64,
+  viscous: f64,
+  kinetic: f64,
+  flux: f64,
+): void {
+  put(head, c, WIND + 1, j, wind);
+  put(head, c, SQUARE + 1, j, square);
+  put(head, c, SPONGE + 1, j, braked);
+  put(head, c, VISCOUS + 1, j, viscous);
+  put(head, c, KINETIC + 1, j, kinetic);
+  put(head, c, NORTHWARD, j, flux);
+}
+
+export function putZonal(
+  head: usize,
+  c: usize,
+  j: i32,
+  wind: f64,
+  square: f64,
+  braked: f64,
+  viscous: f64,
+  kinetic: f64,
+): void {
+  put(head, c, WIND, j, wind);
+  put(head, c, SQUARE, j, square);
+  put(head, c, SPONGE, j, braked);
+  put(head, c, VISCOUS, j, viscous);
+  put(head, c, KINETIC, j, kinetic);
+}
+
+/** The flux through each asked column of row j. */
+export function eastwardSums(head: usize, c: usize, j: i32): void {
+  const count = <i32>int(head, P.MERIDIANS);
+  let m = int(head, P.MERIDIAN_TABLE) + 4 * <usize>j * <usize>count;
+  for (let k = 0; k < count; k++) {
+    const at = int(m, 0);
+    put(head, c, EASTWARD + k, j, at ? load<f64>(ringRow(c, j) + at, P.UT) : 0);
+    m += 4;
+  }
+}
+
 /** All ones, or ones in lane 0 alone for the last column of a run of odd length. */
 // @ts-ignore: decorator
 @inline
@@ -52,18 +99,27 @@ export function cellSums(head: usize, c: usize, j: i32): void {
     let d = splat(0);
     let e = splat(0);
     let f = splat(0);
-    do {
-      const middle = v128.and(mul(half, add(load<v128>(now + p), load<v128>(next + p))), within(p, end));
-      a = add(a, middle);
-      b = add(b, mul(middle, middle));
-      d = add(d, mul(middle, load<v128>(ring + p, P.DIV)));
-      if (sponge) {
+    let inside = i64x2.splat(-1);
+    if (sponge)
+      do {
+        const middle = v128.and(mul(half, add(load<v128>(now + p), load<v128>(next + p))), within(p, end));
+        a = add(a, middle);
+        b = add(b, mul(middle, middle));
+        d = add(d, mul(middle, load<v128>(ring + p, P.DIV)));
         const drained = mul(load<v128>(rate + p), middle);
         e = add(e, drained);
         f = add(f, mul(drained, middle));
-      }
-      p += 16;
-    } while (p < end);
+        p += 16;
+      } while (p < end);
+    else
+      do {
+        if (p + 8 == end) inside = i64x2(-1, 0);
+        const middle = v128.and(mul(half, add(load<v128>(now + p), load<v128>(next + p))), inside);
+        a = add(a, middle);
+        b = add(b, mul(middle, middle));
+        d = add(d, mul(middle, load<v128>(ring + p, P.DIV)));
+        p += 16;
+      } while (p < end);
     eta += both(a);
     squares += both(b);
     potential += both(d);
@@ -150,12 +206,7 @@ export function meridionalSums(head: usize, c: usize, j: i32): void {
     flux += both(f);
     braked += both(g);
   }
-  put(head, c, WIND + 1, j, wind);
-  put(head, c, SQUARE + 1, j, squares);
-  put(head, c, SPONGE + 1, j, braked);
-  put(head, c, VISCOUS + 1, j, viscous);
-  put(head, c, KINETIC + 1, j, kinetic);
-  put(head, c, NORTHWARD, j, flux);
+  putMeridional(head, c, j, wind, squares, braked, viscous, kinetic, flux);
 }
 
 export function zonalSums(head: usize, c: usize, j: i32): void {
@@ -222,16 +273,5 @@ export function zonalSums(head: usize, c: usize, j: i32): void {
     kinetic += both(e);
     braked += both(g);
   }
-  put(head, c, WIND, j, wind);
-  put(head, c, SQUARE, j, squares);
-  put(head, c, SPONGE, j, braked);
-  put(head, c, VISCOUS, j, viscous);
-  put(head, c, KINETIC, j, kinetic);
-  let m = int(head, P.MERIDIAN_TABLE) + 4 * <usize>j * int(head, P.MERIDIANS);
-  const count = <i32>int(head, P.MERIDIANS);
-  for (let k = 0; k < count; k++) {
-    const at = int(m, 0);
-    put(head, c, EASTWARD + k, j, at ? load<f64>(ring + at, P.UT) : 0);
-    m += 4;
-  }
+  putZonal(head, c, j, wind, squares, braked, viscous, kinetic);
 }

@@ -2,8 +2,9 @@
 // stepper/linear/linear-step.ts, which explains them. Loops are tested at the bottom and every neighbour is a pointer
 // plus an immediate: the engine then keeps constants in registers. A run of odd length computes one column behind its
 // end; what that would leave on a coast is set back to 0 at once.
+import { eastwardSums, meridionalSums, putMeridional, putZonal, zonalSums } from './linear-sums.as';
 import * as P from './places.as';
-import { add, between, div, int, mul, num, splat, sub } from './vector.as';
+import { add, between, both, div, int, mul, num, splat, sub } from './vector.as';
 
 // @ts-ignore: decorator
 @inline
@@ -346,149 +347,243 @@ function stressRow(head: usize, c: usize, j: i32, meridional: usize, uniform: f6
   }
 }
 
-export function meridional(head: usize, c: usize, j: i32): void {
-  const t = tableRow(head, j);
+/** v of row j; with `work` also its row sums, where neither drag nor viscosity varies along the row. */
+// @ts-ignore: decorator
+@inline
+function meridionalRow(head: usize, c: usize, j: i32, t: usize, varies: bool, fields: bool, work: bool): void {
   const stop = int(t, P.V_RUNS + 4);
-  let s = int(t, P.V_RUNS);
-  if (s == stop) return;
   const uniform = uniformStress(head, c, j, 1);
-  const varies = int(head, P.SPONGE_V) != 0 && int(t, P.SPONGE_ROW) != 0;
+  if (fields) stressRow(head, c, j, 1, uniform, t, P.V_RUNS);
   const keep = splat(varies ? 0 : num(head, P.KEEP));
   const push = splat(varies ? 1 : num(head, P.PUSH));
   const turn = splat(num(t, P.CORIOLIS_V));
   const perDx = splat(num(t, P.PER_DX_V));
   const perDy = splat(num(head, P.PER_DY));
+  const A = splat(num(head, P.VISCOSITY));
+  const half = splat(0.5);
   const ring = ringRow(c, j);
   const ringSouth = ringRow(c, j - 1);
   const now = record(int(c, P.C_NOW), j);
   const next = record(int(c, P.C_NEXT), j);
-  if (int(head, P.FIELDS_Y)) {
-    stressRow(head, c, j, 1, uniform, t, P.V_RUNS);
-    const stress = c + P.C_STRESS;
-    for (; s < stop; s += 8) {
-      const begin = int(s, 0);
-      let r = ring + begin;
-      let q = ringSouth + begin;
-      let a = now + begin;
-      let n = next + begin;
-      let w = stress + begin;
-      const end = now + int(s, 4);
-      do {
-        const S = load<v128>(w);
+  const stress = c + P.C_STRESS;
+  let S = splat(uniform);
+  let wind: f64 = 0;
+  let square: f64 = 0;
+  let viscous: f64 = 0;
+  let kinetic: f64 = 0;
+  let flux: f64 = 0;
+  for (let s = int(t, P.V_RUNS); s < stop; s += 8) {
+    const begin = int(s, 0);
+    let r = ring + begin;
+    let q = ringSouth + begin;
+    let a = now + begin;
+    let n = next + begin;
+    let w = stress + begin;
+    const end = now + int(s, 4);
+    let sumW = splat(0);
+    let sumS = splat(0);
+    let sumV = splat(0);
+    let sumK = splat(0);
+    let sumF = splat(0);
+    let inside = i64x2.splat(-1);
+    do {
+      if (fields) {
+        S = load<v128>(w);
         w += 16;
-        const west = add(load<v128>(q, P.UT), load<v128>(r, P.UT));
-        const east = add(load<v128>(q, P.UT + 8), load<v128>(r, P.UT + 8));
-        const C = mul(turn, add(west, east));
-        const G = mul(sub(load<v128>(q, P.HEAD), load<v128>(r, P.HEAD)), perDy);
-        const F = mul(sub(load<v128>(r, P.SPIN + 8), load<v128>(r, P.SPIN)), perDx);
-        store<v128>(n, add(mul(keep, load<v128>(a, P.V)), mul(push, add(add(sub(G, C), F), S))), P.V);
-        r += 16;
-        q += 16;
-        a += 16;
-        n += 16;
-      } while (a < end);
-      if (a > end) store<f64>(next + int(s, 4), 0, P.V);
-    }
-  } else {
-    const S = splat(uniform);
-    for (; s < stop; s += 8) {
-      const begin = int(s, 0);
-      let r = ring + begin;
-      let q = ringSouth + begin;
-      let a = now + begin;
-      let n = next + begin;
-      const end = now + int(s, 4);
-      do {
-        const west = add(load<v128>(q, P.UT), load<v128>(r, P.UT));
-        const east = add(load<v128>(q, P.UT + 8), load<v128>(r, P.UT + 8));
-        const C = mul(turn, add(west, east));
-        const G = mul(sub(load<v128>(q, P.HEAD), load<v128>(r, P.HEAD)), perDy);
-        const F = mul(sub(load<v128>(r, P.SPIN + 8), load<v128>(r, P.SPIN)), perDx);
-        store<v128>(n, add(mul(keep, load<v128>(a, P.V)), mul(push, add(add(sub(G, C), F), S))), P.V);
-        r += 16;
-        q += 16;
-        a += 16;
-        n += 16;
-      } while (a < end);
-      if (a > end) store<f64>(next + int(s, 4), 0, P.V);
+      }
+      const west = add(load<v128>(q, P.UT), load<v128>(r, P.UT));
+      const east = add(load<v128>(q, P.UT + 8), load<v128>(r, P.UT + 8));
+      const C = mul(turn, add(west, east));
+      const G = mul(sub(load<v128>(q, P.HEAD), load<v128>(r, P.HEAD)), perDy);
+      const F = mul(sub(load<v128>(r, P.SPIN + 8), load<v128>(r, P.SPIN)), perDx);
+      const turned = sub(G, C);
+      const old = load<v128>(a, P.V);
+      const value = add(mul(keep, old), mul(push, add(add(turned, F), S)));
+      store<v128>(n, value, P.V);
+      if (work) {
+        if (a + 8 == end) inside = i64x2(-1, 0);
+        const stretch = mul(sub(mul(A, load<v128>(r, P.DIV)), mul(A, load<v128>(q, P.DIV))), perDy);
+        const middle = v128.and(mul(half, add(old, value)), inside);
+        sumW = add(sumW, mul(middle, S));
+        sumS = add(sumS, mul(middle, middle));
+        sumV = add(sumV, mul(middle, add(F, stretch)));
+        sumK = add(sumK, mul(middle, sub(turned, stretch)));
+        sumF = add(sumF, v128.and(load<v128>(r, P.VT), inside));
+      }
+      r += 16;
+      q += 16;
+      a += 16;
+      n += 16;
+    } while (a < end);
+    if (a > end) store<f64>(next + int(s, 4), 0, P.V);
+    if (work) {
+      wind += both(sumW);
+      square += both(sumS);
+      viscous += both(sumV);
+      kinetic += both(sumK);
+      flux += both(sumF);
     }
   }
-  if (varies) brake(head, t, P.V_RUNS, int(head, P.SPONGE_V) + <usize>j * P.PLANE, now + P.V, next + P.V);
-  if (int(head, P.PERIODIC)) wrap(head, next + P.V);
+  if (work) putMeridional(head, c, j, wind, square, 0, viscous, kinetic, flux);
 }
 
-export function zonal(head: usize, c: usize, j: i32): void {
+function calmMeridional(head: usize, c: usize, j: i32, t: usize, varies: bool): void {
+  meridionalRow(head, c, j, t, varies, false, false);
+}
+
+function windyMeridional(head: usize, c: usize, j: i32, t: usize, varies: bool): void {
+  meridionalRow(head, c, j, t, varies, true, false);
+}
+
+function calmMeridionalWork(head: usize, c: usize, j: i32, t: usize): void {
+  meridionalRow(head, c, j, t, false, false, true);
+}
+
+function windyMeridionalWork(head: usize, c: usize, j: i32, t: usize): void {
+  meridionalRow(head, c, j, t, false, true, true);
+}
+
+/** v of row j, and its sums when they are asked for. */
+export function meridional(head: usize, c: usize, j: i32): void {
   const t = tableRow(head, j);
+  const work = int(c, P.C_SUMS) != 0;
+  if (int(t, P.V_RUNS) == int(t, P.V_RUNS + 4)) {
+    if (work) putMeridional(head, c, j, 0, 0, 0, 0, 0, 0);
+    return;
+  }
+  const varies = int(head, P.SPONGE_V) != 0 && int(t, P.SPONGE_ROW) != 0;
+  const fused = work && !varies && int(head, P.CELL_A) == 0;
+  if (int(head, P.FIELDS_Y)) {
+    if (fused) windyMeridionalWork(head, c, j, t);
+    else windyMeridional(head, c, j, t, varies);
+  } else {
+    if (fused) calmMeridionalWork(head, c, j, t);
+    else calmMeridional(head, c, j, t, varies);
+  }
+  const now = record(int(c, P.C_NOW), j) + P.V;
+  const next = record(int(c, P.C_NEXT), j) + P.V;
+  if (varies) brake(head, t, P.V_RUNS, int(head, P.SPONGE_V) + <usize>j * P.PLANE, now, next);
+  if (int(head, P.PERIODIC)) wrap(head, next);
+  if (work && !fused) meridionalSums(head, c, j);
+}
+
+/** u of row j; with `work` also its row sums, where neither drag nor viscosity varies along the row. */
+// @ts-ignore: decorator
+@inline
+function zonalRow(head: usize, c: usize, j: i32, t: usize, varies: bool, fields: bool, work: bool): void {
   const stop = int(t, P.U_RUNS + 4);
-  let s = int(t, P.U_RUNS);
-  if (s == stop) return;
   const uniform = uniformStress(head, c, j, 0);
-  const varies = int(head, P.SPONGE_U) != 0 && int(t, P.SPONGE_ROW) != 0;
+  if (fields) stressRow(head, c, j, 0, uniform, t, P.U_RUNS);
   const keep = splat(varies ? 0 : num(head, P.KEEP));
   const push = splat(varies ? 1 : num(head, P.PUSH));
   const turnSouth = splat(num(t, P.CORIOLIS_SOUTH));
   const turnNorth = splat(num(t, P.CORIOLIS_NORTH));
   const perDx = splat(num(t, P.PER_DX_C));
   const perDy = splat(num(head, P.PER_DY));
+  const A = splat(num(head, P.VISCOSITY));
+  const half = splat(0.5);
   const ring = ringRow(c, j);
   const ringNorth = ringRow(c, j + 1);
   const now = record(int(c, P.C_NOW), j);
   const next = record(int(c, P.C_NEXT), j);
-  if (int(head, P.FIELDS_X)) {
-    stressRow(head, c, j, 0, uniform, t, P.U_RUNS);
-    const stress = c + P.C_STRESS;
-    for (; s < stop; s += 8) {
-      const begin = int(s, 0);
-      let r = ring + begin;
-      let q = ringNorth + begin;
-      let a = now + begin;
-      let n = next + begin;
-      let w = stress + begin;
-      const end = now + int(s, 4);
-      let last = add(mul(turnSouth, load<v128>(r - 16, P.VT)), mul(turnNorth, load<v128>(q - 16, P.VT)));
-      do {
-        const S = load<v128>(w);
+  const stress = c + P.C_STRESS;
+  let S = splat(uniform);
+  let wind: f64 = 0;
+  let square: f64 = 0;
+  let viscous: f64 = 0;
+  let kinetic: f64 = 0;
+  for (let s = int(t, P.U_RUNS); s < stop; s += 8) {
+    const begin = int(s, 0);
+    let r = ring + begin;
+    let q = ringNorth + begin;
+    let a = now + begin;
+    let n = next + begin;
+    let w = stress + begin;
+    const end = now + int(s, 4);
+    let last = add(mul(turnSouth, load<v128>(r - 16, P.VT)), mul(turnNorth, load<v128>(q - 16, P.VT)));
+    let sumW = splat(0);
+    let sumS = splat(0);
+    let sumV = splat(0);
+    let sumK = splat(0);
+    let inside = i64x2.splat(-1);
+    do {
+      if (fields) {
+        S = load<v128>(w);
         w += 16;
-        const east = add(mul(turnSouth, load<v128>(r, P.VT)), mul(turnNorth, load<v128>(q, P.VT)));
-        const C = add(between(last, east), east);
-        last = east;
-        const G = mul(sub(load<v128>(r, P.HEAD - 8), load<v128>(r, P.HEAD)), perDx);
-        const F = mul(sub(load<v128>(r, P.SPIN), load<v128>(q, P.SPIN)), perDy);
-        store<v128>(n, add(mul(keep, load<v128>(a, P.U)), mul(push, add(add(add(G, C), F), S))), P.U);
-        r += 16;
-        q += 16;
-        a += 16;
-        n += 16;
-      } while (a < end);
-      if (a > end) store<f64>(next + int(s, 4), 0, P.U);
-    }
-  } else {
-    const S = splat(uniform);
-    for (; s < stop; s += 8) {
-      const begin = int(s, 0);
-      let r = ring + begin;
-      let q = ringNorth + begin;
-      let a = now + begin;
-      let n = next + begin;
-      const end = now + int(s, 4);
-      let last = add(mul(turnSouth, load<v128>(r - 16, P.VT)), mul(turnNorth, load<v128>(q - 16, P.VT)));
-      do {
-        const east = add(mul(turnSouth, load<v128>(r, P.VT)), mul(turnNorth, load<v128>(q, P.VT)));
-        const C = add(between(last, east), east);
-        last = east;
-        const G = mul(sub(load<v128>(r, P.HEAD - 8), load<v128>(r, P.HEAD)), perDx);
-        const F = mul(sub(load<v128>(r, P.SPIN), load<v128>(q, P.SPIN)), perDy);
-        store<v128>(n, add(mul(keep, load<v128>(a, P.U)), mul(push, add(add(add(G, C), F), S))), P.U);
-        r += 16;
-        q += 16;
-        a += 16;
-        n += 16;
-      } while (a < end);
-      if (a > end) store<f64>(next + int(s, 4), 0, P.U);
+      }
+      const east = add(mul(turnSouth, load<v128>(r, P.VT)), mul(turnNorth, load<v128>(q, P.VT)));
+      const C = add(between(last, east), east);
+      last = east;
+      const G = mul(sub(load<v128>(r, P.HEAD - 8), load<v128>(r, P.HEAD)), perDx);
+      const F = mul(sub(load<v128>(r, P.SPIN), load<v128>(q, P.SPIN)), perDy);
+      const turned = add(G, C);
+      const old = load<v128>(a, P.U);
+      const value = add(mul(keep, old), mul(push, add(add(turned, F), S)));
+      store<v128>(n, value, P.U);
+      if (work) {
+        if (a + 8 == end) inside = i64x2(-1, 0);
+        const stretch = mul(sub(mul(A, load<v128>(r, P.DIV)), mul(A, load<v128>(r, P.DIV - 8))), perDx);
+        const middle = v128.and(mul(half, add(old, value)), inside);
+        sumW = add(sumW, mul(middle, S));
+        sumS = add(sumS, mul(middle, middle));
+        sumV = add(sumV, mul(middle, add(F, stretch)));
+        sumK = add(sumK, mul(middle, sub(turned, stretch)));
+      }
+      r += 16;
+      q += 16;
+      a += 16;
+      n += 16;
+    } while (a < end);
+    if (a > end) store<f64>(next + int(s, 4), 0, P.U);
+    if (work) {
+      wind += both(sumW);
+      square += both(sumS);
+      viscous += both(sumV);
+      kinetic += both(sumK);
     }
   }
-  if (varies) brake(head, t, P.U_RUNS, int(head, P.SPONGE_U) + <usize>j * P.PLANE, now + P.U, next + P.U);
-  if (int(head, P.PERIODIC)) wrap(head, next + P.U);
+  if (work) putZonal(head, c, j, wind, square, 0, viscous, kinetic);
+}
+
+function calmZonal(head: usize, c: usize, j: i32, t: usize, varies: bool): void {
+  zonalRow(head, c, j, t, varies, false, false);
+}
+
+function windyZonal(head: usize, c: usize, j: i32, t: usize, varies: bool): void {
+  zonalRow(head, c, j, t, varies, true, false);
+}
+
+function calmZonalWork(head: usize, c: usize, j: i32, t: usize): void {
+  zonalRow(head, c, j, t, false, false, true);
+}
+
+function windyZonalWork(head: usize, c: usize, j: i32, t: usize): void {
+  zonalRow(head, c, j, t, false, true, true);
+}
+
+/** u of row j, and its sums when they are asked for. */
+export function zonal(head: usize, c: usize, j: i32): void {
+  const t = tableRow(head, j);
+  const work = int(c, P.C_SUMS) != 0;
+  if (work) eastwardSums(head, c, j);
+  if (int(t, P.U_RUNS) == int(t, P.U_RUNS + 4)) {
+    if (work) putZonal(head, c, j, 0, 0, 0, 0, 0);
+    return;
+  }
+  const varies = int(head, P.SPONGE_U) != 0 && int(t, P.SPONGE_ROW) != 0;
+  const fused = work && !varies && int(head, P.CELL_A) == 0;
+  if (int(head, P.FIELDS_X)) {
+    if (fused) windyZonalWork(head, c, j, t);
+    else windyZonal(head, c, j, t, varies);
+  } else {
+    if (fused) calmZonalWork(head, c, j, t);
+    else calmZonal(head, c, j, t, varies);
+  }
+  const now = record(int(c, P.C_NOW), j) + P.U;
+  const next = record(int(c, P.C_NEXT), j) + P.U;
+  if (varies) brake(head, t, P.U_RUNS, int(head, P.SPONGE_U) + <usize>j * P.PLANE, now, next);
+  if (int(head, P.PERIODIC)) wrap(head, next);
+  if (work && !fused) zonalSums(head, c, j);
 }
 
 /** Crank–Nicolson drag where it varies along the row: `next` holds the tendency of everything else. */

@@ -1,6 +1,6 @@
 // How the rows of a step, of several steps at once, or of a band of rows follow each other.
 import { clearPlane, continuity, meridional, ringRow, spin, zonal } from './linear.as';
-import { cellSums, meridionalSums, zonalSums } from './linear-sums.as';
+import { cellSums } from './linear-sums.as';
 import * as P from './places.as';
 import { int } from './vector.as';
 
@@ -37,10 +37,8 @@ function stage(head: usize, c: usize, j: i32, ny: i32): void {
   if (j > 0) {
     if (j < ny) {
       meridional(head, c, j);
-      if (sums) meridionalSums(head, c, j);
     }
     zonal(head, c, j - 1);
-    if (sums) zonalSums(head, c, j - 1);
   }
 }
 

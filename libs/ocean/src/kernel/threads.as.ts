@@ -10,7 +10,7 @@ import {
   zonal,
   zonalAhead,
 } from './linear.as';
-import { cellSums, meridionalSums, zonalSums } from './linear-sums.as';
+import { cellSums } from './linear-sums.as';
 import * as P from './places.as';
 import { contextAt, prepare } from './sweep.as';
 import { int } from './vector.as';
@@ -46,20 +46,13 @@ function bandStep(head: usize, c: usize, first: i32, end: i32, ny: i32): void {
     continuity(head, c, j, int(c, P.C_NEXT) + <usize>(j + 1) * P.RECORD);
     if (sums) cellSums(head, c, j);
     spin(head, c, j);
-    if (j > 0) {
-      meridional(head, c, j);
-      if (sums) meridionalSums(head, c, j);
-    }
-    if (j > first) {
-      zonal(head, c, j - 1);
-      if (sums) zonalSums(head, c, j - 1);
-    }
+    if (j > 0) meridional(head, c, j);
+    if (j > first) zonal(head, c, j - 1);
   }
   if (end == ny) clearPlane(ringRow(c, ny) + P.UT);
   else zonalAhead(head, c, end);
   spin(head, c, end);
   zonal(head, c, end - 1);
-  if (sums) zonalSums(head, c, end - 1);
 }
 
 /** The share of thread `k` in the steps that the header asks for; returns when every thread has made the last one. */
