@@ -11,7 +11,7 @@ import { analyticStart } from '../start/initial-state';
 import { createModel, setState, type Model } from '../stepper/model';
 import { createStepper, steppedBy, type Stepper, type StepperOptions } from '../stepper/stepper';
 import type { StepRecorder } from '../stepper/sums';
-import { BasinBudget, BUDGET_COLUMNS } from './budget';
+import { BasinBudget } from './budget';
 import { pack, unpack } from './container';
 import { failureReport, IntegrationFailure, isFinite } from './failure';
 import { fingerprintOf } from './fingerprint';
@@ -62,6 +62,7 @@ export class Integration {
     this.grid = buildGrid(setup);
     this.#model = createModel({
       grid: this.grid,
+      equations: numerics.equations,
       dt: SECONDS_PER_DAY / numerics.stepsPerDay,
       reducedGravity: layer.reducedGravityMS2,
       restThickness: layer.restThicknessM,
@@ -70,6 +71,13 @@ export class Integration {
       viscosity: friction.viscosityM2S,
       damping: layer.dampingPerS,
       slip: friction.slip,
+      minimumThickness: layer.minimumThicknessM,
+      entrainment: layer.entrainment && {
+        onsetThickness: layer.entrainment.onsetThicknessM,
+        timescale: layer.entrainment.timescaleDays * SECONDS_PER_DAY,
+        detrainment: layer.entrainment.detrainment,
+      },
+      stressFloor: setup.wind.stressFloorM,
       forcing: windForcing(setup, this.grid),
       sponge: spongeRates(setup, this.grid),
       viscosityMap: viscosityMaps(setup, this.grid),
@@ -208,7 +216,7 @@ export class Integration {
   }
 
   budgetColumns(): Column[] {
-    return [...BUDGET_COLUMNS, ...this.#termBudgets.columns];
+    return [...this.#budget.columns, ...this.#termBudgets.columns];
   }
 
   /** Closes the interval of the sections: its values in the order of `sectionColumns`. */

@@ -10,7 +10,7 @@ const compiled = new WeakMap<object, Map<number, WebAssembly.Module | null>>();
 /** Compiles the module of a pitch once; null where there is none, or this machine cannot run it. */
 export function compiledModule(modules: Readonly<Record<number, string>>, pitch: number): WebAssembly.Module | null {
   let known = compiled.get(modules);
-  if (!known) compiled.set(modules, (known = new Map()));
+  if (!known) compiled.set(modules, (known = new Map<number, WebAssembly.Module | null>()));
   const found = known.get(pitch);
   if (found !== undefined) return found;
   const module = pitch in modules ? compile(modules[pitch]) : null;

@@ -33,10 +33,12 @@ export interface ModelOptions {
   /** u columns at which every step's eastward flux is summed for a recorder. */
   meridians?: readonly number[];
   /**
-   * Memory for `bytes` bytes, zeroed, on a line of 64 bytes; an ArrayBuffer of the model's own when left out. A compiled
-   * kernel gives its WebAssembly.Memory.
+   * Gives a compiled kernel's memory for `bytes` bytes, zeroed, from `byteOffset` on a line of 64 bytes on; null: it
+   * cannot. The model takes memory of its own then, and when this is left out.
    */
-  allocate?: (bytes: number) => { buffer: ArrayBufferLike; byteOffset: number };
+  allocate?: (bytes: number) => { buffer: ArrayBufferLike; byteOffset: number; memory: WebAssembly.Memory } | null;
+  /** How many threads may step the model in that memory. Default 1. */
+  threads?: number;
 }
 
 export interface EntrainmentOptions {

@@ -1,5 +1,6 @@
 import { CALM, type Forcing } from '../forcing/forcing';
 import type { Grid } from '../grid/grid';
+import { reserveWorkspace, type Workspace } from '../kernel/workspace';
 import { rowFactors, type RowFactors } from './coefficients';
 import { copyHistory, fieldOf, fillSeam, type StateVariable } from './fields';
 import { Arena, layoutOf, WEST, type Layout } from './layout';
@@ -44,8 +45,11 @@ export interface Model {
   /** Offset of one padded row of τ/(ρ0 H) (linear) or τ/ρ0 (nonlinear). */
   readonly stress: number;
   readonly sumsPlace: SumsPlace;
-  /** Views of the step's sums; written when a step is asked for them. */
+  /** Views of the step's sums; written when the reference stepper is asked for them. */
   readonly sums: StepSums;
+  /** The memory that `data` lies in, and the compiled stepper's own part of it; null where the model has its own. */
+  readonly memory: WebAssembly.Memory | null;
+  readonly workspace: Workspace | null;
 }
 
 /** A model at rest at step 0. Throws RangeError naming a coefficient that is not finite or has the wrong sign. */
@@ -59,9 +63,15 @@ export function createModel(options: ModelOptions): Model {
   const { statics, fills } = reserveStatics(arena, layout, options, forcing);
   const stress = arena.reserve(layout.pitch);
   const sumsPlace = reserveSums(arena, grid.ny, equations === 'linear' ? LINEAR_TERMS : NONLINEAR_TERMS, meridians);
-  const bytes = 8 * arena.length;
-  const { buffer, byteOffset } = options.allocate?.(bytes) ?? { buffer: new ArrayBuffer(bytes), byteOffset: 0 };
-  const data = new Float64Array(buffer, byteOffset, arena.length);
+  const spans = spansOf(grid);
+  const corners = coastCorners(grid);
+  const ownLength = arena.length;
+  const parts = { grid, layout, spans, coastCorners: corners, forcing, sums: sumsPlace, threads: options.threads ?? 1 };
+  const workspace = options.allocate ? reserveWorkspace(arena, parts) : null;
+  const given = options.allocate?.(8 * arena.length) ?? null;
+  const length = given ? arena.length : ownLength;
+  const { buffer, byteOffset } = given ?? { buffer: new ArrayBuffer(8 * length), byteOffset: 0 };
+  const data = new Float64Array(buffer, byteOffset, length);
   fillStatics(data, layout, grid.periodic, fills);
   return {
     grid,
@@ -84,12 +94,14 @@ export function createModel(options: ModelOptions): Model {
     data,
     statics,
     rows: rowFactors(grid),
-    spans: spansOf(grid),
-    coastCorners: coastCorners(grid),
+    spans,
+    coastCorners: corners,
     factors: new Float64Array(forcing.bases.length),
     stress,
     sumsPlace,
     sums: sumsAt(data, sumsPlace, grid.ny),
+    memory: given?.memory ?? null,
+    workspace: given ? workspace : null,
   };
 }
 

@@ -1,5 +1,10 @@
+import { kernelMemory } from '../kernel/memory';
+import { simdStepper } from '../kernel/simd-stepper';
+import type { ThreadTeam } from '../kernel/thread-team';
 import { linearStep } from './linear/linear-step';
+import { PITCHES, pitchOf } from './layout';
 import type { Model } from './model';
+import type { ModelOptions } from './model-options';
 import { nonlinearStep } from './nonlinear/nonlinear-step';
 import type { StepRecorder } from './sums';
 
@@ -12,19 +17,44 @@ export interface Stepper {
   readonly threads: number;
   /** Makes `steps` steps; `recorder` gets the row sums of each, in order. */
   advance(steps: number, recorder?: StepRecorder): void;
+  /** Lets helper threads go; afterwards it steps no more. */
+  dismiss(): void;
 }
 
 /** What a caller may say about how to step; nothing of it changes a bit of the result. */
 export interface StepperOptions {
   /** 'auto' (default): the fastest that this machine has and the model suits. */
   kernel?: 'auto' | Kernel;
+  /** Threads that share the work of the compiled kernel; the caller dismisses them. */
+  team?: ThreadTeam;
 }
 
-/** A stepper for a model. Throws RangeError when the kernel that was asked for is not there. */
+/**
+ * What `createModel` needs to know so that `createStepper` with the same options finds a model that suits it: spread it
+ * into the model's options.
+ */
+export function steppedBy(
+  { kernel = 'auto', team }: StepperOptions,
+  nx: number,
+): Pick<ModelOptions, 'allocate' | 'threads'> {
+  const threads = team?.threads ?? 1;
+  return kernel === 'reference' || !PITCHES.includes(pitchOf(nx))
+    ? {}
+    : { allocate: kernelMemory(threads > 1), threads };
+}
+
+/**
+ * A stepper for a model made with `steppedBy` the same options. Throws RangeError when the compiled kernel was asked for
+ * and cannot be had: on grids wider than 4098 cells, and where WebAssembly has no SIMD.
+ */
 export function createStepper(model: Model, options: StepperOptions = {}): Stepper {
-  const { kernel = 'auto' } = options;
-  if (kernel === 'simd') throw new RangeError('The compiled kernel is not available here; use “auto” or “reference”.');
-  return referenceStepper(model);
+  const { kernel = 'auto', team } = options;
+  const stepper = kernel === 'reference' ? null : simdStepper(model, team);
+  if (kernel === 'simd' && !stepper)
+    throw new RangeError(
+      `The compiled kernel cannot step this model (${model.grid.nx} × ${model.grid.ny} cells, ${model.memory ? 'no SIMD WebAssembly here' : 'not in its memory'}); use “auto” or “reference”.`,
+    );
+  return stepper ?? referenceStepper(model);
 }
 
 /** The readable stepper: plain TypeScript, any grid. */
@@ -38,6 +68,7 @@ export function referenceStepper(model: Model): Stepper {
         recorder?.add(model.sums);
       }
     },
+    dismiss: () => undefined,
   };
 }
 
