@@ -1,11 +1,14 @@
 import {
   DEFAULT_CONSTANTS,
   LIMITS,
+  type Entrainment,
   type Island,
   type Mooring,
   type Section,
   type Setup,
+  type Sponge,
   type Start,
+  type ViscosityPatch,
   type WindComponent,
   type WindPattern,
 } from '@halfdeep/ocean';
@@ -188,6 +191,70 @@ export function newStart(kind: Exclude<Start['kind'], 'state'>, setup: Frame): S
 export function newSection(setup: Setup): Section {
   const { latitudeDeg } = middle(setup);
   return { name: freshName('Section', setup.output.sections), along: 'latitude', atDeg: latitudeDeg };
+}
+
+/** A sponge at the first edge that is free, a tenth of the basin wide and no more than 5°; null when every edge has one. */
+export function newSponge({ basin }: Frame): Sponge | null {
+  const edge = freeEdges(basin)[0];
+  if (edge === undefined) return null;
+  const zonal = edge === 'west' || edge === 'east';
+  const extent = zonal ? basin.eastDeg - basin.westDeg : basin.northDeg - basin.southDeg;
+  const widthDeg = Math.max(LIMITS.spongeWidth.min, Math.min(LIMITS.spongeWidth.default, rounded(extent / 10)));
+  return { edge, widthDeg, peakRatePerS: null, tapersWind: true };
+}
+
+/** Edges of a basin without a sponge; a periodic one has no west and no east edge. */
+export function freeEdges({ zonallyPeriodic, sponges }: Setup['basin']): Sponge['edge'][] {
+  const edges: Sponge['edge'][] = zonallyPeriodic ? ['south', 'north'] : ['south', 'north', 'west', 'east'];
+  return edges.filter((edge) => !sponges.some((sponge) => sponge.edge === edge));
+}
+
+/** A place of twice the basin's viscosity in its middle, a tenth of the basin wide. */
+export function newViscosityPatch(setup: Setup): ViscosityPatch {
+  const { basin, friction } = setup;
+  return {
+    name: freshName('Place', friction.viscosityPatches),
+    addedM2S: friction.viscosityM2S || LIMITS.addedViscosity.default,
+    ...middle(setup),
+    widthLongitudeDeg: rounded((basin.eastDeg - basin.westDeg) / 10),
+    widthLatitudeDeg: rounded((basin.northDeg - basin.southDeg) / 10),
+  };
+}
+
+/** Entrainment with the defaults of its fields, no thicker than 0.3 H. */
+export function newEntrainment({ restThicknessM, minimumThicknessM }: Setup['layer']): Entrainment {
+  const onset = Math.min(LIMITS.entrainmentOnset.default, 0.3 * restThicknessM);
+  return {
+    onsetThicknessM: Math.max(minimumThicknessM, rounded(onset)),
+    timescaleDays: LIMITS.entrainmentTime.default,
+    detrainment: 'none',
+  };
+}
+
+/** The default of the minimum thickness beside a thickness at rest: min(20, H/10) m. */
+export function defaultMinimumThickness(restThicknessM: number): number {
+  return Math.min(LIMITS.minimumThickness.default, rounded(restThicknessM / 10));
+}
+
+/**
+ * A setup with the fields that came after it was saved: each has its default, nothing else is touched. Drafts kept on
+ * this machine and setups of earlier runs may lack them.
+ */
+export function withLaterFields(setup: Setup): Setup {
+  const { basin, layer, wind, friction, output } = setup;
+  const blank = blankSetup();
+  return {
+    ...setup,
+    basin: { ...pick(blank.basin, 'sponges', 'coastSpacing'), ...basin },
+    layer: { ...pick(blank.layer, 'minimumThicknessM', 'entrainment'), ...layer },
+    wind: { ...pick(blank.wind, 'stressFloorM'), ...wind },
+    friction: { ...pick(blank.friction, 'viscosityPatches'), ...friction },
+    output: { ...pick(blank.output, 'momentumBudget', 'vorticityBudget'), ...output },
+  };
+}
+
+function pick<T, K extends keyof T>(from: T, ...keys: K[]): Pick<T, K> {
+  return Object.fromEntries(keys.map((key) => [key, from[key]])) as Pick<T, K>;
 }
 
 export function newMooring(setup: Setup): Mooring {

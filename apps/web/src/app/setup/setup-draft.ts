@@ -1,7 +1,7 @@
 import { computed, Injectable, linkedSignal, signal } from '@angular/core';
 import { setupSchema } from '@halfdeep/contracts';
 import { diffSetups, type Check, type Preflight, type Remedy, type Setup, type SetupChange } from '@halfdeep/ocean';
-import { blankSetup } from './blank-setup';
+import { blankSetup, withLaterFields } from './blank-setup';
 import { sameValue, toPointer, valueAt, withValueAt } from './setup-pointer';
 
 /** The run that a sensitivity run is made from. */
@@ -71,7 +71,7 @@ export class SetupDraft {
     const parent = this.parent();
     // Places outside the basin are changes too, though it cannot be judged with them.
     const setup = this.withoutOutside() === null ? this.readable() : this.written();
-    return parent ? diffSetups(parent.setup, setup) : [];
+    return parent ? diffSetups(withLaterFields(parent.setup), setup) : [];
   });
 
   private readonly changesByPointer = computed(
@@ -82,7 +82,9 @@ export class SetupDraft {
   readonly proposedLabel = computed(() => proposeLabel(this.parent(), this.changes()));
   readonly label = computed(() => this.labelWritten() ?? this.proposedLabel());
   readonly ownLabel = this.labelWritten.asReadonly();
-  readonly touched = computed(() => this.labelWritten() !== null || !sameValue(this.written(), this.start()));
+  readonly touched = computed(
+    () => this.labelWritten() !== null || !sameValue(this.written(), withLaterFields(this.start())),
+  );
 
   at(pointer: string): unknown {
     return valueAt(this.written(), pointer);
@@ -105,9 +107,9 @@ export class SetupDraft {
     this.forget('/label');
   }
 
-  /** Replaces everything that was written. */
+  /** Replaces everything that was written; what was kept before some fields existed gets their defaults. */
   fill(setup: Setup, label: string | null = null): void {
-    this.written.set(setup);
+    this.written.set(withLaterFields(setup));
     this.labelWritten.set(label);
     this.fromServer.set(new Map());
   }

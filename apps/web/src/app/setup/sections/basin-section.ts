@@ -1,8 +1,8 @@
 import { ChangeDetectionStrategy, Component, computed, inject } from '@angular/core';
 import { MatButton } from '@angular/material/button';
-import type { Choice } from '../../shared/choice-field/choice-field';
+import { ChoiceField, type Choice } from '../../shared/choice-field/choice-field';
 import { BasinMap } from '../../shared/basin-map/basin-map';
-import { newIsland } from '../blank-setup';
+import { freeEdges, newIsland, newSponge } from '../blank-setup';
 import { SetupChoice } from '../fields/setup-choice';
 import { SetupQuantity } from '../fields/setup-quantity';
 import { SetupText } from '../fields/setup-text';
@@ -13,7 +13,7 @@ import { SectionFrame } from './section-frame';
 /** Where the water is: edges, the plane and its rotation, coast and islands. */
 @Component({
   selector: 'app-basin-section',
-  imports: [BasinMap, IslandFields, MatButton, SectionFrame, SetupChoice, SetupQuantity, SetupText],
+  imports: [BasinMap, ChoiceField, IslandFields, MatButton, SectionFrame, SetupChoice, SetupQuantity, SetupText],
   templateUrl: './basin-section.html',
   styleUrl: './setup-fields.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -24,6 +24,21 @@ export class BasinSection {
     { value: 'equatorial', label: 'equatorial β-plane' },
     { value: 'midlatitude', label: 'mid-latitude β-plane' },
     { value: 'fplane', label: 'f-plane' },
+    { value: 'spherical', label: 'spherical band' },
+  ];
+  protected readonly edges: Choice[] = [
+    { value: 'south', label: 'south' },
+    { value: 'north', label: 'north' },
+    { value: 'west', label: 'west' },
+    { value: 'east', label: 'east' },
+  ];
+  protected readonly winds: Choice[] = [
+    { value: 'true', label: 'falls to nothing' },
+    { value: 'false', label: 'blows as outside' },
+  ];
+  protected readonly coastGrids: Choice[] = [
+    { value: 'own', label: 'the run’s own' },
+    { value: 'other', label: 'a grid of its own' },
   ];
   protected readonly closures: Choice[] = [
     { value: 'false', label: 'closed' },
@@ -38,13 +53,26 @@ export class BasinSection {
     const { basin } = this.draft.readable();
     return `middle, ${((basin.southDeg + basin.northDeg) / 2).toFixed(1)}`;
   });
+  /** A plane touches the sphere somewhere; a band is the sphere itself. */
+  protected readonly touches = computed(() => {
+    const { geometry } = this.basin();
+    return geometry === 'midlatitude' || geometry === 'fplane';
+  });
+  protected readonly hasLand = computed(
+    () => this.basin().westernCoast.kind === 'slanting' || this.basin().islands.length > 0,
+  );
+  protected readonly full = computed(() => freeEdges(this.basin()).length === 0);
+  protected readonly spongesProblem = computed(() => this.draft.problems().get('/basin/sponges') ?? null);
   /** A problem of the list of islands itself, for example too many. */
   protected readonly islandsProblem = computed(() => this.draft.problems().get('/basin/islands') ?? null);
 
   protected close(periodic: string): void {
     this.draft.set('/basin/zonallyPeriodic', periodic === 'true');
-    // A periodic basin has no western wall that could slant.
-    if (periodic === 'true') this.draft.set('/basin/westernCoast', { kind: 'rectangular' });
+    // A periodic basin has no western wall that could slant, and no west or east edge for a sponge.
+    if (periodic !== 'true') return;
+    this.draft.set('/basin/westernCoast', { kind: 'rectangular' });
+    const kept = this.basin().sponges.filter(({ edge }) => edge === 'south' || edge === 'north');
+    if (kept.length < this.basin().sponges.length) this.draft.set('/basin/sponges', kept);
   }
 
   protected shape(kind: string): void {
@@ -54,6 +82,19 @@ export class BasinSection {
       '/basin/westernCoast',
       kind === 'slanting' ? { kind, atSouthDeg: westDeg, atNorthDeg } : { kind: 'rectangular' },
     );
+  }
+
+  protected ownCoastGrid(choice: string): void {
+    const { spacingLongitudeDeg, spacingLatitudeDeg } = this.draft.readable().numerics;
+    this.draft.set(
+      '/basin/coastSpacing',
+      choice === 'other' ? { longitudeDeg: spacingLongitudeDeg, latitudeDeg: spacingLatitudeDeg } : null,
+    );
+  }
+
+  protected addSponge(): void {
+    const sponge = newSponge({ basin: { ...this.draft.readable().basin, sponges: this.basin().sponges } });
+    if (sponge) this.draft.insert('/basin/sponges', sponge);
   }
 
   protected addIsland(kind: 'box' | 'polygon'): void {

@@ -25,6 +25,10 @@ export class OutputSection {
     { value: 'latitude', label: 'a latitude' },
     { value: 'longitude', label: 'a longitude' },
   ];
+  protected readonly budgets: Choice[] = [
+    { value: 'false', label: 'not kept' },
+    { value: 'true', label: 'kept' },
+  ];
   protected readonly limits = LIMITS;
   protected readonly years = computed(() => {
     const days = this.draft.at('/length/days');

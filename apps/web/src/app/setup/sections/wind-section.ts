@@ -17,6 +17,9 @@ import { WindComponentFields } from './wind-component-fields';
       <div class="duo">
         <div class="fields">
           <app-setup-quantity at="/wind/seasonalStrength" of="seasonalStrength" symbol="s" />
+          @if (nonlinear()) {
+            <app-setup-quantity at="/wind/stressFloorM" of="stressFloor" symbol="hₛ" />
+          }
           <p class="actions">
             <button mat-stroked-button type="button" [disabled]="full()" (click)="add()">Add a component</button>
           </p>
@@ -43,6 +46,7 @@ import { WindComponentFields } from './wind-component-fields';
 export class WindSection {
   protected readonly draft = inject(SetupDraft);
   protected readonly components = computed(() => this.draft.value().wind.components);
+  protected readonly nonlinear = computed(() => this.draft.value().numerics.equations === 'nonlinear');
   protected readonly full = computed(() => this.components().length >= LIMITS.windComponents.max);
   protected readonly problem = computed(() => this.draft.problems().get('/wind/components') ?? null);
   protected readonly remark = computed(() => {

@@ -15,7 +15,7 @@ let maps = 0;
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class BasinMap {
-  readonly setup = input.required<Pick<Setup, 'basin' | 'output'>>();
+  readonly setup = input.required<Pick<Setup, 'basin' | 'output'> & Partial<Pick<Setup, 'friction'>>>();
   private readonly width = elementWidth(480);
   protected readonly id = `basin-map-${++maps}`;
   protected readonly waterlines = [20, 16, 12, 8, 4];
@@ -102,6 +102,32 @@ export class BasinMap {
       return { name, x, y, text: { x: left, y: y - 7 }, box: { x: left, y: y - 18, width, height: 14 } };
     });
   });
+  /** Stretches along the edges in which waves are damped, px. */
+  protected readonly sponges = computed(() => {
+    const frame = this.frame();
+    const { westDeg, eastDeg, southDeg, northDeg, sponges } = this.setup().basin;
+    return sponges.map(({ edge, widthDeg }) => {
+      const west = edge === 'east' ? eastDeg - widthDeg : westDeg;
+      const east = edge === 'west' ? westDeg + widthDeg : eastDeg;
+      const south = edge === 'north' ? northDeg - widthDeg : southDeg;
+      const north = edge === 'south' ? southDeg + widthDeg : northDeg;
+      const [x, y] = [pxX(frame, west), pxY(frame, north)];
+      return { edge, x, y, width: Math.max(0, pxX(frame, east) - x), height: Math.max(0, pxY(frame, south) - y) };
+    });
+  });
+  /** Places of other viscosity: ellipses of their widths, px. */
+  protected readonly patches = computed(() => {
+    const frame = this.frame();
+    return (this.setup().friction?.viscosityPatches ?? []).map((patch) => {
+      const [x, y] = [pxX(frame, patch.longitudeDeg), pxY(frame, patch.latitudeDeg)];
+      return {
+        x,
+        y,
+        rx: Math.abs(pxX(frame, patch.longitudeDeg + patch.widthLongitudeDeg) - x),
+        ry: Math.abs(pxY(frame, patch.latitudeDeg + patch.widthLatitudeDeg) - y),
+      };
+    });
+  });
   /** The name of the water where nothing else is drawn; null when it fits nowhere. */
   protected readonly seaName = computed(() => {
     const frame = this.frame();
@@ -128,6 +154,8 @@ export class BasinMap {
         const { westDeg, eastDeg, southDeg, northDeg } = islandBox(island);
         return between(pxX(frame, westDeg), pxY(frame, northDeg), pxX(frame, eastDeg), pxY(frame, southDeg));
       }),
+      ...this.sponges().map(({ x, y, width, height }) => ({ x, y, width, height })),
+      ...this.patches().map(({ x, y, rx, ry }) => between(x - rx, y - ry, x + rx, y + ry)),
       ...this.sections().flatMap(({ x1, y1, x2, y2, box }) => [between(x1, y1, x2, y2), box]),
       ...this.moorings().flatMap(({ x, y, box }) => [between(x, y, x, y), box]),
       ...(this.equator() === null
@@ -145,6 +173,8 @@ export class BasinMap {
           ? 'slanting western coast'
           : 'closed',
       counted(basin.islands.length, 'island'),
+      ...basin.sponges.map(({ edge }) => `sponge along the ${edge} edge`),
+      ...(this.patches().length > 0 ? [counted(this.patches().length, 'place') + ' of other viscosity'] : []),
       `sections ${output.sections.map(({ name }) => name).join(', ') || 'none'}`,
       `moorings ${output.moorings.map(({ name }) => name).join(', ') || 'none'}`,
     ];
