@@ -70,6 +70,12 @@ export const routes: Routes = [
         loadComponent: () => import('./side-by-side/side-by-side-page').then((m) => m.SideBySidePage),
       },
       {
+        path: 'help',
+        title: 'Help',
+        data: { section: 'help' },
+        loadComponent: () => import('./help/help-page').then((m) => m.HelpPage),
+      },
+      {
         path: 'admin',
         data: { section: 'admin' },
         canActivate: [holds('admin')],

@@ -14,7 +14,7 @@ import { Confirm } from '../shared/confirm/confirm';
 import { StateSign } from '../shared/state-sign/state-sign';
 import { Brand } from './brand';
 
-export type Section = 'desk' | 'experiments' | 'admin';
+export type Section = 'desk' | 'experiments' | 'admin' | 'help';
 
 /** One line of words over a graduated edge: where you are is the inked stretch of that edge. */
 @Component({
@@ -51,6 +51,7 @@ export class Head {
       { id: 'experiments', name: 'Experiments', link: '/experiments' },
     ];
     if (this.session.has('admin')) list.push({ id: 'admin', name: 'Admin', link: '/admin' });
+    list.push({ id: 'help', name: 'Help', link: '/help' });
     return list;
   });
 
