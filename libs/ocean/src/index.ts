@@ -7,6 +7,9 @@ export { planeGrid, isWet, type Grid, type PlaneOptions } from './grid/grid';
 export { coastLongitude, landMask } from './grid/land';
 export { evaluatePattern, type Stress } from './forcing/pattern';
 export { seasonFactor, stressAt, DAYS_PER_YEAR, SECONDS_PER_DAY } from './forcing/season';
+export { spongeDepth, spongePeakRate, spongeRates, windTaper, SPONGE_STRENGTH } from './forcing/sponges';
+export { viscosityAt, viscosityMaps } from './grid/viscosity-map';
+export { betaAt, coriolisAt, zonalShrink } from './grid/plane';
 export { CALM, forcingFromFunctions, windForcing, type Forcing, type ForcingBasis } from './forcing/forcing';
 export { modeFrequency, waveMode, hermite, type WaveFields } from './start/wave-mode';
 export { createModel, setState, type InitialValues, type Model } from './stepper/model';
@@ -16,6 +19,7 @@ export {
   createStepper,
   referenceStepper,
   stepModel,
+  steppedBy,
   type Kernel,
   type Stepper,
   type StepperOptions,
@@ -36,7 +40,7 @@ export { stabilityNumbers, type StabilityNumbers } from './integration/stability
 export { CORE_VERSION } from './integration/version';
 export { setupSha256 } from './integration/setup-hash';
 export { sin, cos, exp } from './exact/elementary';
-export { corvaneSetup } from './presets/corvane';
+export { corvaneFamilySetup, corvaneSetup } from './presets/corvane';
 export { PRESETS, type OceanPreset } from './presets/presets';
 export { diffSetups } from './describe/diff-setups';
 export { describeSetup, type SetupDescription } from './describe/describe-setup';

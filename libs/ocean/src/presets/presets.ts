@@ -195,6 +195,28 @@ function channel(mode: 'kelvin' | 'rossby1', days: number, frameIntervalDays: nu
   };
 }
 
+/** The first look on a band of the sphere instead of the plane: what the metric terms and the true f change. */
+function tropicalBand(): Setup {
+  const setup = firstLook();
+  return { ...setup, basin: { ...setup.basin, name: 'Tropical band', geometry: 'spherical' } };
+}
+
+/** A narrow equatorial basin whose poleward walls are sponges: it behaves like one that is far wider. */
+function openPoleward(): Setup {
+  const setup = firstLook();
+  const sponge = (edge: 'south' | 'north') => ({ edge, widthDeg: 4, peakRatePerS: null, tapersWind: true });
+  return {
+    ...setup,
+    basin: {
+      ...setup.basin,
+      name: 'Open basin',
+      southDeg: -12,
+      northDeg: 12,
+      sponges: [sponge('south'), sponge('north')],
+    },
+  };
+}
+
 /** Ready setups, the demonstration control first; none is refused by preflight. Clone before changing one. */
 export const PRESETS: readonly OceanPreset[] = [
   {
@@ -203,6 +225,13 @@ export const PRESETS: readonly OceanPreset[] = [
     about:
       'Seven years of a seasonal wind that blows across the equator over a slanting western coast and one island: the control of the demonstration.',
     setup: corvaneSetup(),
+  },
+  {
+    id: 'corvane-nonlinear',
+    name: 'Corvane Basin, nonlinear',
+    about:
+      'The same basin and wind with the nonlinear equations: the layer entrains where it gets thin, and response is no longer in proportion to the wind.',
+    setup: corvaneSetup(1, 'nonlinear'),
   },
   {
     id: 'first-look',
@@ -216,6 +245,20 @@ export const PRESETS: readonly OceanPreset[] = [
     about:
       'Westerlies over easterlies spin up a gyre from rest; planetary waves cross, then the western wall carries the return.',
     setup: subtropicalGyre(),
+  },
+  {
+    id: 'open-poleward',
+    name: 'Open poleward edges',
+    about:
+      'The seasonal shear over a basin of half the height: sponges along both poleward edges take up the waves that walls would send back.',
+    setup: openPoleward(),
+  },
+  {
+    id: 'tropical-band',
+    name: 'Tropical band on the sphere',
+    about:
+      'The first look on a band of the sphere: cells get narrower and f follows the sine of latitude. Beside it, the plane shows what that changes.',
+    setup: tropicalBand(),
   },
   {
     id: 'adjustment',
