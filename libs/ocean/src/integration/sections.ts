@@ -3,11 +3,14 @@ import type { Grid } from '../grid/grid';
 import type { Column } from '../integration-types';
 import type { Section, Setup } from '../setup';
 import type { Model } from '../stepper/model';
-import { fieldOf } from '../stepper/fields';
+import { valueAt } from '../stepper/fields';
 import { NONE } from '../stepper/statics';
 import type { StepSums } from '../stepper/sums';
-import { dampedVolumeRate, volumeNorthOf } from './budget';
+import { meridionalThickness, volumeNorthOf, zonalThickness } from './energy';
+import { volumeRates } from './step-budget';
 
+/** Of one section: transport, damping, entrainment. */
+const SLOTS = 3 * SUM_SLOTS;
 const M3S_PER_SV = 1e6;
 const W_PER_PW = 1e15;
 const M3_PER_KM3 = 1e9;
@@ -35,24 +38,27 @@ export function snapSection(grid: Grid, section: Section): SnappedSection {
 
 /**
  * Transports through the sections of a setup, added up every step from the very fluxes that change η (ut H dy and
- * vt H dx), so that V_net = d(volume north)/dt + damping closes to round-off (numerics.md §9).
+ * vt H dx; in nonlinear mode the limited ones), so that V_net = d(volume north)/dt − what damping, sponges and entrainment
+ * added there closes to round-off (numerics.md §9).
  */
 export class SectionRecorder {
-  /** Everything that a checkpoint keeps: for each section the sums of transport and damping, then the step count. */
+  /** Everything that a checkpoint keeps: for each section the sums of transport, damping and entrainment, then the step count. */
   readonly slots: Float64Array;
   readonly columns: Column[];
   readonly #model: Model;
   readonly #heatPerVolume: number;
   readonly #snapped: SnappedSection[];
   readonly #damped: boolean;
+  readonly #entrained: boolean;
 
   constructor(model: Model, setup: Pick<Setup, 'output' | 'layer' | 'constants'>) {
     this.#model = model;
     this.#damped = model.damping > 0 || model.statics.spongeCell !== NONE;
+    this.#entrained = model.entrainment !== null;
     this.#heatPerVolume = setup.constants.heatCapacityJM3K * setup.layer.temperatureStepK;
     this.#snapped = setup.output.sections.map((section) => snapSection(model.grid, section));
-    this.slots = new Float64Array(2 * SUM_SLOTS * this.#snapped.length + 1);
-    this.columns = this.#snapped.flatMap((snapped, k) => sectionColumns(snapped, k, this.#damped));
+    this.slots = new Float64Array(SLOTS * this.#snapped.length + 1);
+    this.columns = this.#snapped.flatMap((snapped, k) => sectionColumns(snapped, k, this.#damped, this.#entrained));
   }
 
   /** Adds the fluxes of one step. */
@@ -69,12 +75,16 @@ export class SectionRecorder {
         for (let j = 0; j < ny; j++) flux += column[j];
         flux *= dy;
       }
-      addTo(this.slots, 2 * SUM_SLOTS * k, flux * model.restThickness);
-      if (latitude && this.#damped) {
-        let rate = 0;
-        for (let j = index; j < ny; j++) rate += dampedVolumeRate(model, sums, j);
-        addTo(this.slots, 2 * SUM_SLOTS * k + SUM_SLOTS, rate);
+      addTo(this.slots, SLOTS * k, model.equations === 'linear' ? flux * model.restThickness : flux);
+      if (!latitude || !(this.#damped || this.#entrained)) return;
+      let [damped, entrained] = [0, 0];
+      for (let j = index; j < ny; j++) {
+        const rates = volumeRates(model, sums, j);
+        damped += rates.damped;
+        entrained += rates.entrained;
       }
+      addTo(this.slots, SLOTS * k + SUM_SLOTS, damped);
+      addTo(this.slots, SLOTS * k + 2 * SUM_SLOTS, entrained);
     });
     this.slots[this.slots.length - 1] += 1;
   }
@@ -84,34 +94,41 @@ export class SectionRecorder {
     const steps = this.slots[this.slots.length - 1];
     const values: number[] = [];
     this.#snapped.forEach(({ section, index }, k) => {
-      const mean = sumAt(this.slots, 2 * SUM_SLOTS * k) / steps;
+      const mean = sumAt(this.slots, SLOTS * k) / steps;
       const latitude = section.along === 'latitude';
       const now = latitude ? this.#northward(index) : this.#eastward(index);
       values.push(mean / M3S_PER_SV, now / M3S_PER_SV, (mean * this.#heatPerVolume) / W_PER_PW);
       if (!latitude) return;
       values.push(volumeNorthOf(this.#model, index) / M3_PER_KM3);
-      if (this.#damped) values.push(sumAt(this.slots, 2 * SUM_SLOTS * k + SUM_SLOTS) / steps / M3S_PER_SV);
+      if (this.#damped) values.push(sumAt(this.slots, SLOTS * k + SUM_SLOTS) / steps / M3S_PER_SV);
+      if (this.#entrained) values.push(sumAt(this.slots, SLOTS * k + 2 * SUM_SLOTS) / steps / M3S_PER_SV);
     });
     this.slots.fill(0);
     return Float64Array.from(values);
   }
 
-  /** Σ v H dx over a v row now, m³/s. */
+  /** Σ v h_v dx over a v row now, m³/s. */
   #northward(row: number): number {
-    const { grid, restThickness } = this.#model;
-    const { data, offset, rowStride } = fieldOf(this.#model, 'v');
+    const model = this.#model;
+    const thickness = meridionalThickness(model);
     let sum = 0;
-    for (let i = 0; i < grid.nx; i++) sum += data[offset + row * rowStride + i];
-    return sum * grid.dxV[row] * restThickness;
+    for (let i = 0; i < model.grid.nx; i++) {
+      const v = valueAt(model, 'v', i, row);
+      if (v !== 0) sum += v * thickness(i, row);
+    }
+    return sum * model.grid.dxV[row];
   }
 
-  /** Σ u H dy over a u column now, m³/s. */
+  /** Σ u h_u dy over a u column now, m³/s. */
   #eastward(column: number): number {
-    const { grid, restThickness } = this.#model;
-    const { data, offset, rowStride } = fieldOf(this.#model, 'u');
+    const model = this.#model;
+    const thickness = zonalThickness(model);
     let sum = 0;
-    for (let j = 0; j < grid.ny; j++) sum += data[offset + j * rowStride + column];
-    return sum * grid.dy * restThickness;
+    for (let j = 0; j < model.grid.ny; j++) {
+      const u = valueAt(model, 'u', column, j);
+      if (u !== 0) sum += u * thickness(column, j);
+    }
+    return sum * model.grid.dy;
   }
 }
 
@@ -121,7 +138,7 @@ export function meridiansOf(grid: Grid, sections: readonly Section[]): number[] 
 }
 
 /** Columns of section k, named `<k>.transport` and so on. */
-function sectionColumns({ section }: SnappedSection, k: number, damped: boolean): Column[] {
+function sectionColumns({ section }: SnappedSection, k: number, damped: boolean, entrained: boolean): Column[] {
   const towards = section.along === 'latitude' ? 'northward' : 'eastward';
   const columns: Column[] = [
     { name: `${k}.transport`, label: `${section.name}: ${towards} volume transport`, unit: 'Sv', kind: 'mean' },
@@ -144,6 +161,13 @@ function sectionColumns({ section }: SnappedSection, k: number, damped: boolean)
     columns.push({
       name: `${k}.dampingNorth`,
       label: `${section.name}: volume added by damping north of it`,
+      unit: 'Sv',
+      kind: 'mean',
+    });
+  if (entrained)
+    columns.push({
+      name: `${k}.entrainedNorth`,
+      label: `${section.name}: volume added by entrainment north of it`,
       unit: 'Sv',
       kind: 'mean',
     });

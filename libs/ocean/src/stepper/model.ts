@@ -57,7 +57,8 @@ export function createModel(options: ModelOptions): Model {
   refuseBadOptions(options);
   const { grid, dt, reducedGravity, restThickness, equations = 'linear' } = options;
   const { density = 1025, rayleigh = 0, viscosity = 0, damping = 0, slip = 'free', forcing = CALM } = options;
-  const { minimumThickness = 0, entrainment = null, stressFloor = 0, meridians = [] } = options;
+  const { minimumThickness = 0, stressFloor = 0, meridians = [] } = options;
+  const entrainment = equations === 'nonlinear' ? (options.entrainment ?? null) : null;
   const layout = layoutOf(grid, equations);
   const arena = new Arena(layout.length);
   const { statics, fills } = reserveStatics(arena, layout, options, forcing);
