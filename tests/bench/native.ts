@@ -68,11 +68,12 @@ const LOAD = 1n;
 const RUN = 2n;
 const READ = 3n;
 
+let hasNumPy: boolean | null = null;
+
 /** How to start the NumPy reference; null where there is no Python with NumPy. */
 export function numpyCommand(style: 'out' | 'plain'): readonly string[] | null {
-  const version = spawnSync('python3', ['-c', 'import numpy; print(numpy.__version__)'], { encoding: 'utf8' });
-  if (version.error || version.status !== 0) return null;
-  return ['python3', join(SOURCES, 'child.py'), style];
+  hasNumPy ??= spawnSync('python3', ['-c', 'import numpy'], { stdio: 'ignore' }).status === 0;
+  return hasNumPy ? ['python3', join(SOURCES, 'child.py'), style] : null;
 }
 
 /** A model stepped by a reference in another language, in a child process that waits for commands. */

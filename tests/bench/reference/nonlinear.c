@@ -282,7 +282,7 @@ static void meridional_row(const model *m, int j, const double *factors) {
   for (int s = m->v_points.row_start[j]; s < m->v_points.row_start[j + 1]; s++) {
     const int first = m->v_points.bounds[2 * s], end = m->v_points.bounds[2 * s + 1];
     meridional_run(ht_south, ht, ring_row(m, HEAD, j - 1), ring_row(m, HEAD, j), ring_row(m, TURN_V, j),
-                   ring_row(m, SPIN, j), next, stress, uniform, first, end, south, north, 0.25 * (1 / m->dy),
+                   ring_row(m, SPIN, j), next, stress, uniform, first, end, south, north, 0.25,
                    m->per_dx_v[j], 1 / m->dy, m->stress_floor);
     if (m->has_entrainment) {
       dilute_v_run(ring_row(m, ENTRAINED, j - 1), ring_row(m, ENTRAINED, j), ht_south, ht, brake, first, end, south,
