@@ -1,4 +1,12 @@
-import { createModel, createStepper, type Grid, type Model, type ModelOptions, type Stepper } from '@halfdeep/ocean';
+import {
+  createModel,
+  createStepper,
+  steppedBy,
+  type Grid,
+  type Model,
+  type ModelOptions,
+  type Stepper,
+} from '@halfdeep/ocean';
 
 // Constants that most cases share: c = √(g′H) = 2.5 m/s exactly.
 export const g = 0.04;
@@ -18,15 +26,26 @@ export function commonStep(grid: Grid): number {
   return fMax > 0 ? Math.min(gravity, 0.4 / fMax) : gravity;
 }
 
+/** A nonlinear model; the layer is the common one unless said otherwise. */
+export function nonlinearModel(options: Partial<ModelOptions> & Pick<ModelOptions, 'grid' | 'dt'>): Model {
+  return commonModel({ ...options, equations: 'nonlinear' });
+}
+
 /** Whole number of steps, none longer than `longest`, that make up `duration`. */
 export function stepsFor(duration: number, longest: number): { steps: number; dt: number } {
   const steps = Math.ceil(duration / longest);
   return { steps, dt: duration / steps };
 }
 
-/** A model with the common layer. */
-export function commonModel(options: Omit<ModelOptions, 'reducedGravity' | 'restThickness' | 'density'>): Model {
-  return createModel({ reducedGravity: g, restThickness: H, density: rho0, ...options });
+/** A model with the common layer, unless the options say otherwise. */
+export function commonModel(options: Partial<ModelOptions> & Pick<ModelOptions, 'grid' | 'dt'>): Model {
+  return createModel({
+    ...steppedBy({}, options.grid.nx),
+    reducedGravity: g,
+    restThickness: H,
+    density: rho0,
+    ...options,
+  });
 }
 
 const steppers = new WeakMap<Model, Stepper>();

@@ -19,6 +19,7 @@ import {
 } from './common';
 import { convergencePlate, profilePlate } from './plates';
 import { proveCase } from './record';
+import { chebyshev, setRow } from './spectral';
 
 // Case h. Wind stress linear in latitude about the equator, τx = a y: its Ekman pumping is zero, its Ekman and Sverdrup
 // transports are the same, V = −a/(ρ0 β), the equator included (common practice; derived for this project).
@@ -28,51 +29,20 @@ const V_SVERDRUP = PER_WIDTH / H;
 const PERIOD = 365.25 * DAY;
 
 /**
- * V(y) of −ω²V − V″ + y²V = −y², V = 0 at ±half (units L, T), by Chebyshev collocation: Trefethen (2000), Spectral
- * Methods in MATLAB, ch. 6. Returns V and V′ at any y by barycentric interpolation.
+ * V(y) of −ω²V − V″ + y²V = −y², V = 0 at ±half (units L, T), by Chebyshev collocation. Returns V and V′ at any y.
  */
 function seasonal(omega: number, half: number): { V: (y: number) => number; dV: (y: number) => number } {
-  const N = 96;
-  const x = Array.from({ length: N + 1 }, (_, k) => Math.cos((Math.PI * k) / N));
-  const weight = (k: number) => (k === 0 || k === N ? 2 : 1) * (k % 2 ? -1 : 1);
-  const D = Matrix.zeros(N + 1, N + 1);
-  for (let i = 0; i <= N; i++) {
-    let sum = 0;
-    for (let k = 0; k <= N; k++) {
-      if (i === k) continue;
-      const entry = weight(i) / weight(k) / (x[i] - x[k]);
-      D.set(i, k, entry);
-      sum += entry;
-    }
-    D.set(i, i, -sum);
-  }
-  D.div(half);
+  const { count, nodes, D, interpolate } = chebyshev(96, -half, half);
   const operator = D.mmul(D).neg();
-  const right = Matrix.zeros(N + 1, 1);
-  for (let i = 0; i <= N; i++) {
-    const y = half * x[i];
+  const right = Matrix.zeros(count, 1);
+  for (let i = 0; i < count; i++) {
+    const y = nodes[i];
     operator.set(i, i, operator.get(i, i) + y * y - omega * omega);
     right.set(i, 0, -y * y);
   }
-  for (const wall of [0, N]) {
-    for (let k = 0; k <= N; k++) operator.set(wall, k, k === wall ? 1 : 0);
-    right.set(wall, 0, 0);
-  }
+  for (const wall of [0, count - 1]) setRow(operator, right, wall, (k) => (k === wall ? 1 : 0));
   const V = solve(operator, right);
-  const dV = D.mmul(V);
-  const interpolate = (values: Matrix) => (y: number) => {
-    let top = 0;
-    let bottom = 0;
-    for (let k = 0; k <= N; k++) {
-      const distance = y / half - x[k];
-      if (distance === 0) return values.get(k, 0);
-      const w = (k % 2 ? -1 : 1) * (k === 0 || k === N ? 0.5 : 1);
-      top += (w / distance) * values.get(k, 0);
-      bottom += w / distance;
-    }
-    return top / bottom;
-  };
-  return { V: interpolate(V), dV: interpolate(dV) };
+  return { V: interpolate(V.to1DArray()), dV: interpolate(D.mmul(V).to1DArray()) };
 }
 
 /** A zonally uniform channel with walls at ±half L and `perL` rows in L. */
