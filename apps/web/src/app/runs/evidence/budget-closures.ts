@@ -1,6 +1,9 @@
 import { type GrowingSlice } from '../../core/growing-rows';
 import { CLOSES_BELOW } from '../energy-closure';
 
+/** `referenceName` of a residual of mass that no source is larger than. */
+export const REST_MASS = 'mass of the layer at rest';
+
 /** How one budget of a run closes, over all of its intervals so far. */
 export interface BudgetClosure {
   /** "Energy", "Mass": what the residual is of. */
@@ -38,11 +41,11 @@ export function budgetClosures(budget: GrowingSlice, restMassGt: number): Budget
     });
     if (column.name === 'massResidual' && restMassGt > reference) {
       reference = restMassGt;
-      referenceName = 'mass of the layer at rest';
+      referenceName = REST_MASS;
     }
     const residual = largest(budget, k);
     const share = residual === 0 ? 0 : residual / reference;
-    const name = column.label.replace(/ residual$/i, '');
+    const name = upperFirst(column.label.replace(/ residual$/i, '').replace(/^residual of /i, ''));
     return [{ name, unit: column.unit, residual, reference, referenceName, share, closes: share < CLOSES_BELOW }];
   });
 }
@@ -60,4 +63,8 @@ function largest(budget: GrowingSlice, column: number): number {
 
 function lowerFirst(text: string): string {
   return text.charAt(0).toLowerCase() + text.slice(1);
+}
+
+function upperFirst(text: string): string {
+  return text.charAt(0).toUpperCase() + text.slice(1);
 }

@@ -26,6 +26,7 @@ export interface ConvergenceAsked {
 }
 
 const ROLES = { half: 'half the resolution', twice: 'twice the resolution' } as const;
+const SHORT = { half: 'half', twice: 'twice' } as const;
 
 /** What the two other grids cost, and how their coast is made; closes with the answer once they are queued. */
 @Component({
@@ -57,7 +58,7 @@ export class ConvergenceDialog {
   );
   protected readonly levels = computed(() =>
     (this.choice()?.levels ?? []).map((level) => ({
-      role: ROLES[level.role],
+      role: SHORT[level.role],
       there: level.run !== null,
       ...words(level),
     })),
@@ -70,9 +71,11 @@ export class ConvergenceDialog {
   protected readonly refusals = computed(() =>
     this.missing().flatMap(({ role, refusal }) => (refusal ? [{ role: ROLES[role], refusal }] : [])),
   );
-  protected readonly remarks = computed(() => [
-    ...new Set(this.missing().flatMap(({ plan, refusal }) => (plan && !refusal ? plan.remarks : []))),
-  ]);
+  protected readonly remarks = computed(() =>
+    this.missing().flatMap(({ role, plan, refusal }) =>
+      (refusal ? [] : (plan?.remarks ?? [])).map((remark) => ({ role: ROLES[role], remark })),
+    ),
+  );
   protected readonly notes = computed(() =>
     this.missing().flatMap(({ role, plan }) => (plan?.notes ?? []).map((note) => ({ role: ROLES[role], note }))),
   );

@@ -46,7 +46,7 @@ export function measureName({ quantity }: Pick<ConvergenceMeasure, 'quantity'>):
 }
 
 export function placeOf({ along, atDeg }: Pick<ConvergenceMeasure, 'along' | 'atDeg'>): string {
-  return along === 'latitude' ? formatLatitude(atDeg, 2) : formatLongitude(atDeg, 2);
+  return along === 'latitude' ? formatLatitude(atDeg) : formatLongitude(atDeg);
 }
 
 /** "0.22 %" */

@@ -59,7 +59,7 @@ describe('Evidence', () => {
     await settle(fixture);
     expect(text()).toContain('From the first interval on: the largest residual over the largest term.');
     expect(text()).toContain('Nobody has computed it a second time yet.');
-    expect(text()).toContain('No run at half the resolution and at twice the resolution has been queued.');
+    expect(text()).toContain('No run has been queued at half the resolution or at twice the resolution.');
   });
 
   it('links the run that repeated it', async () => {

@@ -11,7 +11,7 @@ import { VerdictSign } from '../../shared/verdict/verdict';
 import { isRepeat } from '../repeat';
 import { restMassGt } from '../rest-mass';
 import { sameSetup } from '../same-setup';
-import { type BudgetClosure, budgetClosures } from './budget-closures';
+import { type BudgetClosure, REST_MASS, budgetClosures } from './budget-closures';
 import { repeatFact } from './convergence-words';
 import { Resolution } from './resolution';
 
@@ -59,8 +59,10 @@ export class Evidence {
   protected closureWords({ residual, unit, share, referenceName, reference }: BudgetClosure): string {
     const left = formatQuantity(residual, unit, { significant: 2 });
     const held = formatQuantity(reference, unit, { significant: 3 });
-    if (share === 0) return `nothing is left over in any interval`;
-    return `largest residual of any interval ${left}, ${formatNumber(share, { significant: 1 })} of the largest term (${referenceName}, ${held})`;
+    if (residual === 0) return 'nothing is left over in any interval';
+    const term =
+      referenceName === REST_MASS ? `the ${REST_MASS} (${held})` : `the largest term (${referenceName}, ${held})`;
+    return `largest residual of any interval ${left}, ${formatNumber(share, { significant: 1 })} of ${term}`;
   }
 
   private take(event: HalfdeepEvent): void {

@@ -69,7 +69,7 @@ describe('Resolution', () => {
     fixture.detectChanges();
     server.expectOne(URL_OF).flush(aConvergence());
     await settle(fixture);
-    expect(text()).toContain('No run at half the resolution and at twice the resolution has been queued.');
+    expect(text()).toContain('No run has been queued at half the resolution or at twice the resolution.');
   });
 
   it('shows the cost first, and queues with the coast that was chosen', async () => {
@@ -124,7 +124,7 @@ describe('Resolution', () => {
 
   it('says the same to those who may not queue, without the button', async () => {
     await show(aConvergence({ canQueue: false }));
-    expect(text()).toContain('No run at half the resolution');
+    expect(text()).toContain('No run has been queued at half the resolution');
     expect(await loader.getAllHarnesses(MatButtonHarness)).toHaveLength(0);
   });
 
@@ -160,15 +160,8 @@ describe('Resolution', () => {
     const cells = [...(fixture.nativeElement as HTMLElement).querySelectorAll('tbody tr:first-child td')].map((cell) =>
       cell.textContent.trim().replace(/[\u00a0\u202f\s]+/g, ' '),
     );
-    expect(cells.slice(0, 7)).toEqual([
-      '5.100',
-      '5.300',
-      '5.350',
-      '2.00',
-      '5.367',
-      '0.083 Sv, 1.6 %',
-      '0.021 Sv, 0.39 %',
-    ]);
+    expect(cells[0]).toContain('asymptotic');
+    expect(cells.slice(1)).toEqual(['5.100', '5.300', '5.350', '2.00', '5.367', '0.083 Sv, 1.6 %', '0.021 Sv, 0.39 %']);
   });
 
   it('says in plain words what is not in the asymptotic range, and extrapolates nothing', async () => {

@@ -16,7 +16,7 @@ import {
 } from '@halfdeep/contracts';
 import { firstValueFrom } from 'rxjs';
 import { Api } from '../../core/api';
-import { formatDuration, formatModelTime, formatNumber, formatQuantity } from '../../core/format';
+import { formatDuration, formatModelTime, formatNumber } from '../../core/format';
 import { toApiProblem } from '../../core/problem';
 import { watchRuns } from '../../core/reading';
 import { DataState } from '../../shared/data-state/data-state';
@@ -138,18 +138,23 @@ export class Resolution {
     const place = placeOf({ along, atDeg });
     return name && name !== place ? `${name}, ${place}` : place;
   }
-  protected value(value: number | null): string {
-    return value === null ? '–' : formatNumber(value, { significant: 4 });
+  /** Four digits of the largest transport of the section: a mean that is nothing beside the season reads as nothing. */
+  protected value(value: number | null, { section }: ConvergenceMeasure): string {
+    const measures = this.choice()?.result?.measures ?? [];
+    const scale = Math.max(...measures.filter((one) => one.section === section).map(({ own }) => Math.abs(own)));
+    const decimals = scale > 0 ? Math.min(6, Math.max(0, 3 - Math.floor(Math.log10(scale)))) : 3;
+    return formatNumber(value ?? NaN, { decimals });
   }
   protected order(order: number | null): string {
-    return order === null ? '–' : formatNumber(order, { decimals: 2 });
+    return formatNumber(order ?? NaN, { decimals: 2 });
   }
   protected remark({ verdict, sentence, asymptoticRatio }: ConvergenceMeasure): string {
+    if (verdict === 'equal') return '';
     if (verdict !== 'asymptotic') return sentence;
     return asymptoticRatio === null ? '' : `ratio of the two indices ${formatNumber(asymptoticRatio, { decimals: 3 })}`;
   }
   protected windowWords({ fromDay, toDay, wholeYear }: { fromDay: number; toDay: number; wholeYear: boolean }): string {
-    const days = `days ${formatNumber(fromDay)} to ${formatQuantity(toDay, '')}`;
+    const days = `days ${formatNumber(fromDay)} to ${formatNumber(toDay)}`;
     return wholeYear ? `the last model year, ${days}` : `${days}, which is no whole year`;
   }
 

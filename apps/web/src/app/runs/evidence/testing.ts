@@ -70,7 +70,7 @@ export function aMeasure(over: Partial<ConvergenceMeasure> = {}): ConvergenceMea
 
 /** Invented: nothing is queued yet, and this person may. */
 export function aConvergence(over: Partial<Convergence> = {}): Convergence {
-  const waitingFor = 'No run at half the resolution and at twice the resolution has been queued.';
+  const waitingFor = 'No run has been queued at half the resolution or at twice the resolution.';
   return {
     runId: RUN_ID,
     canQueue: true,
