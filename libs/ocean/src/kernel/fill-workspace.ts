@@ -38,14 +38,20 @@ const HEADER = {
   block: 124,
   threads: 128,
   bands: 132,
+  nonlinear: 136,
+  entrains: 140,
+  limits: 144,
 } as const;
 export const READY = 704;
 export const COMMAND = 640;
 
 const CONSTANTS = 256;
+const SOURCES = 472;
 const ROW_RUNS = 104;
 const ROW_COAST = 152;
 const ROW_SPONGE = 160;
+const ROW_F = 168;
+const ROW_PER_WET = 176;
 
 /** Header of a model's workspace: written once by `fillWorkspace`, and before every call by `ask`. */
 export class KernelHeader {
@@ -70,6 +76,16 @@ export class KernelHeader {
 
   set(name: keyof typeof HEADER, value: number): void {
     this.ints[(this.address + HEADER[name]) / 4] = value;
+  }
+
+  /** What is given back evenly over the water in the coming steps, m/s. */
+  detrain(rate: number): void {
+    this.model.data.set(this.sources(rate), this.workspace.header + SOURCES / 8);
+  }
+
+  private sources(detrained: number): [detrained: number, source: number] {
+    const { damping, restThickness } = this.model;
+    return [detrained, damping * restThickness - detrained];
   }
 
   /** Writes everything that does not change between calls. */
@@ -103,7 +119,11 @@ export class KernelHeader {
     this.set('fieldsX', statics.tauX.some((offset) => offset !== NONE) ? 1 : 0);
     this.set('fieldsY', statics.tauY.some((offset) => offset !== NONE) ? 1 : 0);
     this.set('bands', addressOf(model, workspace.bands));
-    model.data.set(linearConstants(model), workspace.header + CONSTANTS / 8);
+    this.set('nonlinear', model.equations === 'nonlinear' ? 1 : 0);
+    this.set('entrains', model.entrainment ? 1 : 0);
+    this.set('limits', model.minimumThickness > 0 ? 1 : 0);
+    const constants = [...linearConstants(model), ...nonlinearConstants(model), ...this.sources(0)];
+    model.data.set(constants, workspace.header + CONSTANTS / 8);
     fillRows(model, workspace, this.ints);
     fillBases(model, workspace, this.ints);
     fillMeridians(model, workspace, this.ints);
@@ -118,6 +138,7 @@ export function addressOf(model: Model, offset: number): number {
 /** In the order of places.as.ts; the same expressions as in stepper/linear. */
 function linearConstants(model: Model): number[] {
   const { dt, damping, rayleigh, restThickness, reducedGravity, viscosity, density, statics, grid, slip } = model;
+  const nonlinear = model.equations === 'nonlinear';
   return [
     (1 - 0.5 * damping * dt) / (1 + 0.5 * damping * dt),
     (dt * restThickness) / (1 + 0.5 * damping * dt),
@@ -131,12 +152,29 @@ function linearConstants(model: Model): number[] {
     dt / (1 + 0.5 * rayleigh * dt),
     1 / grid.dy,
     slip === 'free' ? 0 : 2,
-    1 / (density * restThickness),
+    nonlinear ? 1 / density : 1 / (density * restThickness),
     dt,
     0.5 * dt,
     dt * restThickness,
     damping,
     rayleigh,
+  ];
+}
+
+/** In the order of places.as.ts; the same expressions as in stepper/nonlinear. */
+function nonlinearConstants(model: Model): number[] {
+  const { dt, damping, minimumThickness, entrainment, stressFloor, reducedGravity, restThickness } = model;
+  const half = 0.5 * dt;
+  return [
+    (1 - half * damping) / (1 + half * damping),
+    dt / (1 + half * damping),
+    minimumThickness,
+    1 / dt,
+    entrainment?.onsetThickness ?? 0,
+    entrainment ? 1 / (entrainment.timescale * entrainment.onsetThickness) : 0,
+    stressFloor,
+    reducedGravity,
+    restThickness,
   ];
 }
 
@@ -168,6 +206,7 @@ function fillRows(model: Model, workspace: Workspace, ints: Int32Array): void {
   const runs: Spans[] = [spans.sweep, spans.cells, spans.uPoints, spans.vPoints, spans.corners, workspace.fresh];
   const starts = runs.map(({ bounds }) => copy(bounds));
   const coast = copy(coastCorners.columns);
+  data.set(coastCorners.perWet, workspace.perWet);
   for (let j = 0; j <= grid.ny; j++) {
     factors.forEach((values, k) => (data[workspace.rows + (j * ROW_BYTES) / 8 + k] = values[j]));
     const row = (addressOf(model, workspace.rows) + j * ROW_BYTES) / 4;
@@ -180,6 +219,8 @@ function fillRows(model: Model, workspace: Workspace, ints: Int32Array): void {
     ints[row + ROW_COAST / 4] = coast + 4 * coastCorners.rowStart[j];
     ints[row + ROW_COAST / 4 + 1] = coast + 4 * coastCorners.rowStart[j + 1];
     ints[row + ROW_SPONGE / 4] = statics.spongeRows[j];
+    ints[row + ROW_PER_WET / 4] = addressOf(model, workspace.perWet + coastCorners.rowStart[j]);
+    data[workspace.rows + (j * ROW_BYTES + ROW_F) / 8] = grid.f[j];
   }
 }
 

@@ -1,5 +1,6 @@
 // Row sums of the linear step: stepper/linear/linear-sums.ts on pairs of columns. The two lanes are its two accumulators.
-import { ringRow, tableRow, uniformStress } from './linear.as';
+import { ringRow } from './linear.as';
+import { put, tableRow, uniformStress, within } from './rows.as';
 import * as P from './places.as';
 import { add, both, int, mul, num, splat, sub } from './vector.as';
 
@@ -16,12 +17,6 @@ const SPONGE_ETA_SQUARED: i32 = 13;
 const SPONGE_ETA: i32 = 14;
 const NORTHWARD: i32 = 15;
 const EASTWARD: i32 = 16;
-
-// @ts-ignore: decorator
-@inline
-export function put(head: usize, c: usize, term: i32, j: i32, value: f64): void {
-  store<f64>(int(c, P.C_SUMS) + <usize>term * int(head, P.SUM_ROW) + 8 * <usize>j, value);
-}
 
 export function putMeridional(
   head: usize,
@@ -68,13 +63,6 @@ export function eastwardSums(head: usize, c: usize, j: i32): void {
     put(head, c, EASTWARD + k, j, at ? load<f64>(ringRow(c, j) + at, P.UT) : 0);
     m += 4;
   }
-}
-
-/** All ones, or ones in lane 0 alone for the last column of a run of odd length. */
-// @ts-ignore: decorator
-@inline
-export function within(p: usize, end: usize): v128 {
-  return i64x2.replace_lane(i64x2.splat(-1), 1, select<i64>(0, -1, p + 8 == end));
 }
 
 export function cellSums(head: usize, c: usize, j: i32): void {

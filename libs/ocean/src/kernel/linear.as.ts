@@ -3,25 +3,14 @@
 // plus an immediate: the engine then keeps constants in registers. A run of odd length computes one column behind its
 // end; what that would leave on a coast is set back to 0 at once.
 import { eastwardSums, meridionalSums, putMeridional, putZonal, zonalSums } from './linear-sums.as';
+import { record, ringRowOf, stressRow, tableRow, uniformStress, wrap } from './rows.as';
 import * as P from './places.as';
 import { add, between, both, div, int, mul, num, splat, sub } from './vector.as';
 
 // @ts-ignore: decorator
 @inline
 export function ringRow(c: usize, j: i32): usize {
-  return c + P.C_RING + <usize>((j + 4) & 3) * P.LINEAR_RING;
-}
-
-// @ts-ignore: decorator
-@inline
-function record(level: usize, j: i32): usize {
-  return level + <usize>(j + 1) * P.RECORD;
-}
-
-// @ts-ignore: decorator
-@inline
-export function tableRow(head: usize, j: i32): usize {
-  return int(head, P.ROWS) + <usize>j * P.ROW;
+  return ringRowOf(c, j, P.LINEAR_RING);
 }
 
 /** Half a step ahead of now, previous and before. */
@@ -35,17 +24,6 @@ function ahead(now: v128, previous: v128, before: v128, e0: v128, e1: v128, e2: 
 @inline
 function aheadOne(a: usize, b: usize, d: usize): f64 {
   return P.E0 * load<f64>(a) + P.E1 * load<f64>(b) + P.E2 * load<f64>(d);
-}
-
-export function clearPlane(row: usize): void {
-  memory.fill(row, 0, P.PLANE);
-}
-
-/** Periodic copies of the last and the first column into the halo. */
-export function wrap(head: usize, row: usize): void {
-  const east = row + int(head, P.EAST);
-  store<f64>(row + P.WEST - 8, load<f64>(east - 8));
-  store<f64>(east, load<f64>(row + P.WEST));
 }
 
 /** ut of row j alone: the row beyond the northern edge of a band. */
@@ -295,55 +273,6 @@ export function spin(head: usize, c: usize, j: i32): void {
   for (; k < last; k += 4) {
     const at = ring + int(k, 0);
     store<f64>(at, load<f64>(at, P.SPIN) * slip, P.SPIN);
-  }
-}
-
-/** The part of the stress of row j that is one number: Σ factor × row value over the bases, times 1/(ρ0 H). */
-export function uniformStress(head: usize, c: usize, j: i32, meridional: usize): f64 {
-  let table = int(head, P.BASIS_TABLE) + 4 * meridional;
-  let factor = int(c, P.C_FACTORS);
-  let sum: f64 = 0;
-  for (let b = int(head, P.BASES); b > 0; b--) {
-    const row = int(table, 0);
-    if (row) sum += load<f64>(factor) * load<f64>(row + 8 * <usize>j);
-    table += 16;
-    factor += 8;
-  }
-  return sum * num(head, P.PER_MASS);
-}
-
-/** Writes the stress of row j along the row: the uniform part, then each field in order. */
-function stressRow(head: usize, c: usize, j: i32, meridional: usize, uniform: f64, t: usize, runs: usize): void {
-  const row = c + P.C_STRESS;
-  const perMass = num(head, P.PER_MASS);
-  const base = splat(uniform);
-  const stop = int(t, runs + 4);
-  for (let s = int(t, runs); s < stop; s += 8) {
-    let p = int(s, 0);
-    const end = int(s, 4);
-    do {
-      store<v128>(row + p, base);
-      p += 16;
-    } while (p < end);
-  }
-  let table = int(head, P.BASIS_TABLE) + 8 + 4 * meridional;
-  let factor = int(c, P.C_FACTORS);
-  for (let b = int(head, P.BASES); b > 0; b--) {
-    const plane = int(table, 0);
-    if (plane) {
-      const part = splat(load<f64>(factor) * perMass);
-      const field = plane + <usize>j * P.PLANE;
-      for (let s = int(t, runs); s < stop; s += 8) {
-        let p = int(s, 0);
-        const end = int(s, 4);
-        do {
-          store<v128>(row + p, add(load<v128>(row + p), mul(part, load<v128>(field + p))));
-          p += 16;
-        } while (p < end);
-      }
-    }
-    table += 16;
-    factor += 8;
   }
 }
 

@@ -118,3 +118,39 @@ export const GENERATION: usize = 512;
 export const ARRIVED: usize = 576;
 export const COMMAND: usize = 640;
 export const READY: usize = 704;
+
+// Planes of the nonlinear ring.
+export const N_UT: usize = 0;
+export const N_VT: usize = PLANE;
+export const N_HT: usize = 2 * PLANE;
+export const N_FLUX_U: usize = 3 * PLANE;
+export const N_FLUX_V: usize = 4 * PLANE;
+export const N_LIMIT: usize = 5 * PLANE;
+export const N_ENTRAINED: usize = 6 * PLANE;
+export const N_DIV: usize = 7 * PLANE;
+export const N_OUT: usize = 8 * PLANE;
+export const N_HEAD: usize = 9 * PLANE;
+export const N_SPIN: usize = 10 * PLANE;
+export const N_TURN_U: usize = 11 * PLANE;
+export const N_TURN_V: usize = 12 * PLANE;
+export const NONLINEAR_RING: usize = 13 * PLANE;
+
+// The nonlinear step's own part of header, rows and contexts.
+export const NONLINEAR: usize = 136;
+export const ENTRAINS: usize = 140;
+export const LIMITS: usize = 144;
+export const KEEP_THICKNESS: usize = 400;
+export const PUSH_THICKNESS: usize = 408;
+export const MINIMUM: usize = 416;
+export const PER_DT: usize = 424;
+export const ONSET: usize = 432;
+export const PER_ONSET: usize = 440;
+export const STRESS_FLOOR: usize = 448;
+export const GRAVITY: usize = 456;
+export const REST: usize = 464;
+export const DETRAINED: usize = 472;
+export const SOURCE: usize = 480;
+export const F: usize = 168;
+export const PER_WET: usize = 176;
+/** 1 where row j of the ring has cells that give less than their outflow; four of them. */
+export const C_LIMITED: usize = 32;

@@ -1,5 +1,6 @@
 import { isDry } from '../stepper/spans';
 import type { Model } from '../stepper/model';
+import { uniformDetrainment } from '../stepper/nonlinear/half-level';
 import type { Stepper } from '../stepper/stepper';
 import { sumsAt, type StepRecorder, type StepSums } from '../stepper/sums';
 import { COMMAND, KernelHeader, READY } from './fill-workspace';
@@ -22,7 +23,7 @@ const HELPERS_START_MS = 20_000;
 /** The compiled stepper of a model in kernel memory; null where none suits the model or this machine. */
 export function simdStepper(model: Model, team?: ThreadTeam): Stepper | null {
   const { memory, workspace } = model;
-  if (!memory || !workspace || model.equations !== 'linear') return null;
+  if (!memory || !workspace) return null;
   const { pitch } = model.layout;
   const shared = !(memory.buffer instanceof ArrayBuffer);
   const module = shared ? (team?.module(pitch) ?? null) : privateModule(pitch);
@@ -60,7 +61,9 @@ class SimdStepper implements Stepper {
     const { model, workspace, header, kernel_ } = this;
     const { forcing, data } = model;
     const bases = forcing.bases.length;
-    const most = recorder ? workspace.sumSteps : STEPS_A_CALL;
+    // What is given back is a mean over the basin, to be known before a step begins: one step a call.
+    const detrains = model.entrainment?.detrainment === 'uniform';
+    const most = detrains ? 1 : recorder ? workspace.sumSteps : STEPS_A_CALL;
     for (let left = steps; left > 0;) {
       const some = Math.min(left, most);
       for (let n = 0; n < some; n++) {
@@ -68,6 +71,7 @@ class SimdStepper implements Stepper {
         data.set(model.factors, workspace.factors + n * bases);
       }
       header.ask(some, recorder !== undefined, this.block);
+      if (detrains) header.detrain(uniformDetrainment(model));
       if (this.threads > 1) {
         kernel_.call(header.address);
         kernel_.band(header.address, 0);

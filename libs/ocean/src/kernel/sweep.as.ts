@@ -1,7 +1,9 @@
 // How the rows of a step, of several steps at once, or of a band of rows follow each other.
-import { clearPlane, continuity, meridional, ringRow, spin, zonal } from './linear.as';
+import { continuity, meridional, ringRow, spin, zonal } from './linear.as';
 import { cellSums } from './linear-sums.as';
+import { firstStage, lastCells, nonlinearStage } from './nonlinear-sweep.as';
 import * as P from './places.as';
+import { clearPlane } from './rows.as';
 import { int } from './vector.as';
 
 // @ts-ignore: decorator
@@ -43,22 +45,33 @@ function stage(head: usize, c: usize, j: i32, ny: i32): void {
 }
 
 /**
- * Makes the steps that the header asks for. BLOCK steps are in flight at once, each one row behind the one before it, so
- * that a row is read and written once for all of them: a step at row j needs the one before it complete to row j + 1 in v
- * and to row j in u and η, and that one, at row j + 1, has just left exactly these.
+ * Makes the steps that the header asks for. BLOCK steps are in flight at once, each LAG rows behind the one before it, so
+ * that a row is read and written once for all of them: a step that begins row t needs the one before it complete to row
+ * t + 1 in v and to row t in u and h. The linear step leaves these complete when it is at row t + 1, the nonlinear one,
+ * which ends two rows behind where it begins, at row t + 3.
  */
 export function advance(head: usize): void {
   const steps = <i32>int(head, P.STEPS);
   const block = <i32>int(head, P.BLOCK);
   const phase = <i32>int(head, P.PHASE);
   const ny = <i32>int(head, P.NY);
+  const nonlinear = int(head, P.NONLINEAR) != 0;
+  const lag = nonlinear ? 3 : 1;
+  const last = nonlinear ? ny + 1 : ny;
   for (let done = 0; done < steps; done += block) {
     const some = min(block, steps - done);
     for (let k = 0; k < some; k++) prepare(head, contextAt(head, k), phase + done + k, done + k);
-    for (let front = 0; front < ny + some; front++)
+    for (let front = 0; front <= last + lag * (some - 1); front++)
       for (let k = 0; k < some; k++) {
-        const j = front - k;
-        if (j >= 0 && j <= ny) stage(head, contextAt(head, k), j, ny);
+        const j = front - lag * k;
+        if (j < 0 || j > last) continue;
+        const c = contextAt(head, k);
+        if (!nonlinear) stage(head, c, j, ny);
+        else {
+          if (j == 0) firstStage(c);
+          nonlinearStage(head, c, j, ny, 0, ny);
+          if (j == last) lastCells(head, c, ny);
+        }
       }
   }
 }

@@ -1,7 +1,6 @@
 // Rows split into bands over threads that share the memory. Each makes what it needs of the rows next to its band
 // itself, so that the threads meet once a step.
 import {
-  clearPlane,
   continuity,
   meridional,
   meridionalAhead,
@@ -11,7 +10,9 @@ import {
   zonalAhead,
 } from './linear.as';
 import { cellSums } from './linear-sums.as';
+import { firstStage, lastCells, nonlinearStage } from './nonlinear-sweep.as';
 import * as P from './places.as';
+import { clearPlane } from './rows.as';
 import { contextAt, prepare } from './sweep.as';
 import { int } from './vector.as';
 
@@ -65,11 +66,19 @@ export function band(head: usize, k: i32): void {
   const first = <i32>int(bands, 0);
   const end = <i32>int(bands, 4);
   const c = contextAt(head, k);
+  const nonlinear = int(head, P.NONLINEAR) != 0;
   for (let n = 0; n < steps; n++) {
     prepare(head, c, phase + n, n);
-    bandStep(head, c, first, end, ny);
+    if (nonlinear) {
+      if (first <= 3) firstStage(c);
+      for (let t = max(0, first - 3); t <= end + 1; t++) nonlinearStage(head, c, t, ny, first, end);
+    } else bandStep(head, c, first, end, ny);
     meet(head, threads);
+    // The v north of a band is the next band's: it is there now. Others read no sums before all have met again, and
+    // write neither level that these are made of.
+    if (nonlinear) lastCells(head, c, end);
   }
+  if (nonlinear && int(head, P.RECORDING) != 0) meet(head, threads);
 }
 
 /** Tells the helpers that the header asks for steps. */

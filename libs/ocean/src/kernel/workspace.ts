@@ -25,6 +25,7 @@ export interface Workspace {
   fresh: Spans;
   rows: number;
   runs: number;
+  perWet: number;
   basisTable: number;
   basisRows: number;
   meridians: number;
@@ -68,6 +69,7 @@ export function reserveWorkspace(
     header: arena.reserve(HEADER_BYTES / 8),
     rows: arena.reserve((rowCount * ROW_BYTES) / 8),
     runs: arena.reserve(Math.ceil(ints / 2)),
+    perWet: arena.reserve(coastCorners.perWet.length),
     basisTable: arena.reserve(2 * bases),
     basisRows: arena.reserve(2 * bases * rowCount),
     meridians: arena.reserve(Math.ceil((rowCount * sums.meridians.length) / 2)),
