@@ -2,7 +2,10 @@ import { addTo, SUM_SLOTS, sumAt } from '../exact/running-sum';
 import type { Column } from '../integration-types';
 import { valueAt } from '../stepper/fields';
 import { forRuns, type Model } from '../stepper/model';
+import { WEST } from '../stepper/layout';
+import { NONE } from '../stepper/statics';
 import type { LastStep } from '../terms/last-step';
+import type { NonlinearFields } from '../terms/nonlinear-fields';
 import { createRowTerms, zonalTerms, type RowTerms } from '../terms/momentum-terms';
 import { TermSums, type BudgetTerm } from './term-sums';
 
@@ -39,26 +42,65 @@ export class MomentumBudget {
 
   /** Adds the forces in the step that `last` holds. */
   add(last: LastStep): void {
-    const { grid, spans, density, restThickness } = this.#model;
-    const row = this.#row;
-    const total: Record<ZonalForce, number> = { ...NO_FORCE };
+    const { grid } = this.#model;
+    const total: Forces = { ...NO_FORCE };
     for (let j = 0; j < grid.ny; j++) {
-      zonalTerms(last, j, row);
-      const mass = density * restThickness * grid.dxC[j] * grid.dy;
-      const sums: Record<ZonalForce, number> = { ...NO_FORCE };
-      forRuns(spans.uPoints, j, (first, end) => {
-        for (let i = first; i < end; i++) {
-          sums.wind += row.wind[i];
-          sums.coriolis += row.coriolis[i];
-          sums.pressure += row.pressure[i];
-          sums.viscosity += row.viscosity[i];
-          sums.rayleigh += row.rayleigh[i];
-          sums.sponge += row.sponge[i];
-        }
-      });
-      for (const force of FORCES) total[force] += mass * sums[force];
+      zonalTerms(last, j, this.#row);
+      const sums = last.nonlinear ? this.#nonlinearRow(last.nonlinear, j) : this.#linearRow(j);
+      const massPerMetre = this.#model.density * grid.dxC[j] * grid.dy;
+      for (const force of FORCES) total[force] += massPerMetre * sums[force];
     }
     this.#sums.add(total);
+  }
+
+  /** Σ H × term of a row, m²/s². */
+  #linearRow(j: number): Forces {
+    const sums: Forces = { ...NO_FORCE };
+    const { restThickness, spans } = this.#model;
+    forRuns(spans.uPoints, j, (first, end) => {
+      for (let i = first; i < end; i++)
+        for (const force of DIRECT_FORCES) sums[force] += restThickness * this.#row[force][i];
+    });
+    return sums;
+  }
+
+  /**
+   * Of a nonlinear row: Δ(h_u u) = h̄_u Δu + ū Δh_u, h̄ and ū means of the step's two ends. What changes h_u is the
+   * outflow, κ with the sponges, and entrainment.
+   */
+  #nonlinearRow(fields: NonlinearFields, j: number): Forces {
+    const sums: Forces = { ...NO_FORCE };
+    const row = this.#row;
+    const { spans } = this.#model;
+    const mean = (variable: 'h' | 'u', i: number) =>
+      0.5 * (valueAt(this.#model, variable, i, j) + valueAt(this.#model, variable, i, j, 'previous'));
+    forRuns(spans.uPoints, j, (first, end) => {
+      for (let i = first; i < end; i++) {
+        const h = 0.5 * (mean('h', i - 1) + mean('h', i));
+        const u = mean('u', i);
+        for (const force of DIRECT_FORCES) sums[force] += h * row[force][i];
+        const outflow = 0.5 * (fields.outflow(this.#cell(i - 1), j) + fields.outflow(i, j));
+        sums.advection += h * (row.vorticity[i] + row.kinetic[i]) - u * outflow;
+        sums.damping -=
+          u * 0.5 * (this.#damped(mean('h', i - 1), this.#cell(i - 1), j) + this.#damped(mean('h', i), i, j));
+        const entrained = 0.5 * (fields.entrainedAt(i - 1, j) + fields.entrainedAt(i, j)) - fields.detrained;
+        sums.entrainment += h * row.entrainment[i] + u * entrained;
+      }
+    });
+    return sums;
+  }
+
+  /** The cell at column i, or that on the other side of the seam. */
+  #cell(i: number): number {
+    return i < 0 ? this.#model.grid.nx - 1 : i;
+  }
+
+  /** (κ + κ_s)(h − H) of a cell, m/s. */
+  #damped(h: number, i: number, j: number): number {
+    const { damping, restThickness, statics, data, layout } = this.#model;
+    const plane = statics.spongeCell;
+    const sponge = plane === NONE ? 0 : data[plane + j * layout.pitch + WEST + i];
+    return (damping + sponge) * (h - restThickness);
   }
 
   /** Means over the interval in the order of `columns`, GN; begins the next. */
@@ -67,9 +109,12 @@ export class MomentumBudget {
   }
 }
 
-const FORCES = ['wind', 'coriolis', 'pressure', 'viscosity', 'rayleigh', 'sponge'] as const;
+/** Forces that are a term of the velocity equation times the thickness. */
+const DIRECT_FORCES = ['wind', 'coriolis', 'pressure', 'viscosity', 'rayleigh', 'sponge'] as const;
+const FORCES = [...DIRECT_FORCES, 'advection', 'damping', 'entrainment'] as const;
 type ZonalForce = (typeof FORCES)[number];
-const NO_FORCE = Object.fromEntries(FORCES.map((force) => [force, 0])) as Record<ZonalForce, number>;
+type Forces = Record<ZonalForce, number>;
+const NO_FORCE = Object.fromEntries(FORCES.map((force) => [force, 0])) as Forces;
 
 const LABELS: Record<ZonalForce, string> = {
   wind: 'Force of the wind',
@@ -78,31 +123,41 @@ const LABELS: Record<ZonalForce, string> = {
   viscosity: 'Viscosity and its stress on the walls',
   rayleigh: 'Rayleigh drag',
   sponge: 'Drag of the sponges',
+  advection: 'Advection of momentum',
+  damping: 'Momentum of water added by damping',
+  entrainment: 'Momentum of entrained water',
 };
 
 /** The forces that a model's equations and coefficients can have. */
-function forcesOf(model: Model): BudgetTerm<ZonalForce>[] {
+function forcesOf({ equations, statics, damping, entrainment }: Model): BudgetTerm<ZonalForce>[] {
+  const nonlinear = equations === 'nonlinear';
+  const sponges = statics.spongeU !== NONE;
   const has: Record<ZonalForce, boolean> = {
     wind: true,
     coriolis: true,
     pressure: true,
     viscosity: true,
     rayleigh: true,
-    sponge: model.statics.spongeU >= 0,
+    sponge: sponges,
+    advection: nonlinear,
+    damping: nonlinear && (damping > 0 || sponges),
+    entrainment: nonlinear && entrainment !== null,
   };
   return FORCES.filter((force) => has[force]).map((name) => ({ name, label: LABELS[name] }));
 }
 
-/** ρ0 Σ A_u H u over the present state, kg m/s: compensated, fixed order. */
+/** ρ0 Σ A_u h_u u over the present state (H in linear mode), kg m/s: compensated, fixed order. */
 export function zonalMomentum(model: Model): number {
   const { grid, spans, density, restThickness } = model;
+  const thickness = (i: number, j: number) =>
+    model.equations === 'linear' ? restThickness : 0.5 * (valueAt(model, 'h', i - 1, j) + valueAt(model, 'h', i, j));
   const sums = new Float64Array(SUM_SLOTS);
   for (let j = 0; j < grid.ny; j++) {
     let row = 0;
     forRuns(spans.uPoints, j, (first, end) => {
-      for (let i = first; i < end; i++) row += valueAt(model, 'u', i, j);
+      for (let i = first; i < end; i++) row += thickness(i, j) * valueAt(model, 'u', i, j);
     });
-    addTo(sums, 0, row * (density * restThickness * grid.dxC[j] * grid.dy));
+    addTo(sums, 0, row * (density * grid.dxC[j] * grid.dy));
   }
   return sumAt(sums, 0);
 }

@@ -9,6 +9,8 @@ import { Integration } from './integration';
 import { recordSteps } from './schedule';
 import { TermBudgets } from './term-budgets';
 
+const NONLINEAR = { equations: 'nonlinear' } as const;
+const ENTRAINMENT = { onsetThickness: 200, timescale: 864_000 };
 const CASES: [string, Omit<RandomModelOptions, 'seed'>][] = [
   ['closed, free slip', {}],
   ['closed, no slip', { slip: 'none' }],
@@ -16,6 +18,19 @@ const CASES: [string, Omit<RandomModelOptions, 'seed'>][] = [
   ['periodic, no slip, viscosity map', { periodic: true, slip: 'none', viscosityMap: true }],
   ['sponges', { sponge: true }],
   ['periodic band, sponges, viscosity map', { periodic: true, band: true, sponge: true, viscosityMap: true }],
+  ['nonlinear, closed', { more: NONLINEAR }],
+  ['nonlinear, periodic band, no slip', { more: NONLINEAR, periodic: true, band: true, slip: 'none' }],
+  ['nonlinear, limiter and stress floor at work', { more: { ...NONLINEAR, minimumThickness: 188, stressFloor: 195 } }],
+  ['nonlinear, entrainment', { more: { ...NONLINEAR, entrainment: { ...ENTRAINMENT, detrainment: 'none' } } }],
+  [
+    'nonlinear, periodic, entrainment given back, sponges, viscosity map',
+    {
+      more: { ...NONLINEAR, minimumThickness: 188, entrainment: { ...ENTRAINMENT, detrainment: 'uniform' } },
+      periodic: true,
+      sponge: true,
+      viscosityMap: true,
+    },
+  ],
 ];
 
 /** |residual| / the largest term, of all points of the last step. */

@@ -3,6 +3,7 @@ import type { Column } from '../integration-types';
 import { isWet } from '../grid/grid';
 import { valueAt } from '../stepper/fields';
 import { forRuns, type Model } from '../stepper/model';
+import { NONE } from '../stepper/statics';
 import type { LastStep } from '../terms/last-step';
 import { createRowTerms, meridionalTerms, zonalTerms, type RowTerms } from '../terms/momentum-terms';
 import { TermSums, type BudgetTerm } from './term-sums';
@@ -107,26 +108,30 @@ export class VorticityBudget {
   }
 }
 
-const TORQUES = ['wind', 'coriolis', 'viscosity', 'rayleigh', 'sponge'] as const;
+const TORQUES = ['wind', 'coriolis', 'vorticity', 'viscosity', 'rayleigh', 'sponge', 'entrainment'] as const;
 type Torque = (typeof TORQUES)[number];
 const NO_TORQUE = Object.fromEntries(TORQUES.map((torque) => [torque, 0])) as Record<Torque, number>;
 
 const LABELS: Record<Torque, string> = {
   wind: 'Curl of the wind',
-  coriolis: 'Planetary vorticity: advection and stretching',
-  viscosity: 'Viscosity',
-  rayleigh: 'Rayleigh drag',
-  sponge: 'Drag of the sponges',
+  coriolis: 'Flux of planetary vorticity',
+  vorticity: 'Flux of relative vorticity',
+  viscosity: 'Curl of viscosity',
+  rayleigh: 'Curl of Rayleigh drag',
+  sponge: 'Curl of the drag of sponges',
+  entrainment: 'Curl of the drag of entrained water',
 };
 
 /** The torques that a model's equations and coefficients can have. */
-function torquesOf(model: Model): BudgetTerm<Torque>[] {
+function torquesOf({ equations, statics, entrainment }: Model): BudgetTerm<Torque>[] {
   const has: Record<Torque, boolean> = {
     wind: true,
     coriolis: true,
+    vorticity: equations === 'nonlinear',
     viscosity: true,
     rayleigh: true,
-    sponge: model.statics.spongeU >= 0,
+    sponge: statics.spongeU !== NONE,
+    entrainment: equations === 'nonlinear' && entrainment !== null,
   };
   return TORQUES.filter((torque) => has[torque]).map((name) => ({ name, label: LABELS[name] }));
 }

@@ -3,6 +3,7 @@ import { fieldOf, type StateVariable } from '../stepper/fields';
 import { WEST, type Role } from '../stepper/layout';
 import type { Model } from '../stepper/model';
 import { NONE } from '../stepper/statics';
+import { NonlinearFields } from './nonlinear-fields';
 
 /**
  * The fields that the last step of a model worked with, made again from the four levels that its memory still holds (the
@@ -23,6 +24,8 @@ export class LastStep {
   readonly spin: Float64Array;
   /** Factors of the forcing bases in that step. */
   readonly factors: Float64Array;
+  /** What a nonlinear step has besides; null for a linear one. */
+  readonly nonlinear: NonlinearFields | null;
   readonly #slip: Float64Array;
 
   constructor(model: Model) {
@@ -36,6 +39,7 @@ export class LastStep {
     this.spin = plane();
     this.factors = new Float64Array(model.forcing.bases.length);
     this.#slip = slipPlane(model, plane());
+    this.nonlinear = model.equations === 'nonlinear' ? new NonlinearFields(this) : null;
   }
 
   /** Index of row j, column 0 of a plane. */
@@ -76,19 +80,24 @@ export class LastStep {
       if (periodic) wrap(stretching, row, nx);
     }
     for (let j = 0; j <= ny; j++) this.#spinRow(j);
+    this.nonlinear?.update();
+  }
+
+  /** s ζ at corner (i, j), 1/s. */
+  vorticity(i: number, j: number): number {
+    const { ut, vt, pitch } = this;
+    const { rows } = this.model;
+    const k = this.at(j) + i;
+    const raw = (vt[k] - vt[k - 1]) * rows.perDxV[j] - (ut[k] * rows.curlNorth[j] - ut[k - pitch] * rows.curlSouth[j]);
+    return this.#slip[k] * raw;
   }
 
   #spinRow(j: number): void {
-    const { model, ut, vt, spin, pitch } = this;
-    const { grid, rows, statics, data, viscosity } = model;
+    const { model, spin, pitch } = this;
+    const { grid, statics, data, viscosity } = model;
     const row = this.at(j);
     const A = statics.viscosityCorner === NONE ? NONE : statics.viscosityCorner + j * pitch + WEST;
-    for (let i = 0; i <= grid.nx; i++) {
-      const k = row + i;
-      const zeta =
-        (vt[k] - vt[k - 1]) * rows.perDxV[j] - (ut[k] * rows.curlNorth[j] - ut[k - pitch] * rows.curlSouth[j]);
-      spin[k] = (A === NONE ? viscosity : data[A + i]) * (this.#slip[k] * zeta);
-    }
+    for (let i = 0; i <= grid.nx; i++) spin[row + i] = (A === NONE ? viscosity : data[A + i]) * this.vorticity(i, j);
   }
 }
 

@@ -35,19 +35,26 @@ export function createRowTerms(nx: number): RowTerms {
 
 /** Terms at the u points of row j, 0 … ny − 1. On a periodic grid the face at nx, which is that at 0, is left 0. */
 export function zonalTerms(last: LastStep, j: number, out: RowTerms): void {
-  const { model, pitch, ut, vt, pressure, stretching, spin } = last;
-  const { rows, grid, spans } = model;
+  const { model, pitch, vt, pressure, stretching, spin, nonlinear } = last;
+  const { rows, grid, spans, stressFloor } = model;
   for (const values of Object.values(out)) values.fill(0);
-  void ut;
   const stress = stressAt(last, j, 'x');
   const perDx = rows.perDxC[j];
   const perDy = 1 / grid.dy;
   forRuns(spans.uPoints, j, (first, end) => {
     for (let i = first; i < end; i++) {
       const k = last.at(j) + i;
-      out.wind[i] = stress(i);
-      out.coriolis[i] =
-        rows.coriolisSouth[j] * (vt[k - 1] + vt[k]) + rows.coriolisNorth[j] * (vt[k + pitch - 1] + vt[k + pitch]);
+      if (nonlinear) {
+        const { planetaryV, relativeV, kinetic } = nonlinear;
+        out.wind[i] = stress(i) / Math.max(nonlinear.zonalThickness(i, j), stressFloor);
+        out.coriolis[i] = rows.turnSouth[j] * planetaryV[k] + rows.turnNorth[j] * planetaryV[k + pitch];
+        out.vorticity[i] = rows.turnSouth[j] * relativeV[k] + rows.turnNorth[j] * relativeV[k + pitch];
+        out.kinetic[i] = (kinetic[k - 1] - kinetic[k]) * perDx;
+      } else {
+        out.wind[i] = stress(i) / model.restThickness;
+        out.coriolis[i] =
+          rows.coriolisSouth[j] * (vt[k - 1] + vt[k]) + rows.coriolisNorth[j] * (vt[k + pitch - 1] + vt[k + pitch]);
+      }
       out.pressure[i] = (pressure[k - 1] - pressure[k]) * perDx;
       out.viscosity[i] = (stretching[k] - stretching[k - 1]) * perDx - (spin[k + pitch] - spin[k]) * perDy;
     }
@@ -57,8 +64,8 @@ export function zonalTerms(last: LastStep, j: number, out: RowTerms): void {
 
 /** Terms at the v points of row j, 0 … ny (the walls hold none). */
 export function meridionalTerms(last: LastStep, j: number, out: RowTerms): void {
-  const { model, pitch, ut, pressure, stretching, spin } = last;
-  const { rows, grid, spans } = model;
+  const { model, pitch, ut, pressure, stretching, spin, nonlinear } = last;
+  const { rows, grid, spans, stressFloor } = model;
   for (const values of Object.values(out)) values.fill(0);
   const stress = stressAt(last, j, 'y');
   const perDx = rows.perDxV[j];
@@ -66,8 +73,16 @@ export function meridionalTerms(last: LastStep, j: number, out: RowTerms): void 
   forRuns(spans.vPoints, j, (first, end) => {
     for (let i = first; i < end; i++) {
       const k = last.at(j) + i;
-      out.wind[i] = stress(i);
-      out.coriolis[i] = -rows.coriolisV[j] * (ut[k - pitch] + ut[k] + (ut[k - pitch + 1] + ut[k + 1]));
+      if (nonlinear) {
+        const { planetaryU, relativeU, kinetic } = nonlinear;
+        out.wind[i] = stress(i) / Math.max(nonlinear.meridionalThickness(i, j), stressFloor);
+        out.coriolis[i] = -0.25 * (planetaryU[k] + planetaryU[k + 1]);
+        out.vorticity[i] = -0.25 * (relativeU[k] + relativeU[k + 1]);
+        out.kinetic[i] = (kinetic[k - pitch] - kinetic[k]) * perDy;
+      } else {
+        out.wind[i] = stress(i) / model.restThickness;
+        out.coriolis[i] = -rows.coriolisV[j] * (ut[k - pitch] + ut[k] + (ut[k - pitch + 1] + ut[k + 1]));
+      }
       out.pressure[i] = (pressure[k - pitch] - pressure[k]) * perDy;
       out.viscosity[i] = (stretching[k] - stretching[k - pitch]) * perDy + (spin[k + 1] - spin[k]) * perDx;
     }
@@ -75,12 +90,13 @@ export function meridionalTerms(last: LastStep, j: number, out: RowTerms): void 
   addDrag(last, j, 'v', out);
 }
 
-/** Tendency and what is proportional to ū: Rayleigh drag and sponges. */
+/** Tendency and what is proportional to ū: Rayleigh drag, sponges, and water that was taken up without momentum. */
 function addDrag(last: LastStep, j: number, variable: 'u' | 'v', out: RowTerms): void {
   const { model, pitch } = last;
   const { data, dt, rayleigh, spans, statics } = model;
   const plane: Plane = variable === 'u' ? statics.spongeU : statics.spongeV;
   const sponge = plane === NONE ? NONE : plane + j * pitch + WEST;
+  const dilution = dilutionOf(last, j, variable);
   const now = rowOf(last, variable, 'now', j);
   const previous = rowOf(last, variable, 'previous', j);
   forRuns(variable === 'u' ? spans.uPoints : spans.vPoints, j, (first, end) => {
@@ -89,6 +105,7 @@ function addDrag(last: LastStep, j: number, variable: 'u' | 'v', out: RowTerms):
       out.tendency[i] = (data[now + i] - data[previous + i]) / dt;
       out.rayleigh[i] = -rayleigh * mean;
       if (sponge !== NONE) out.sponge[i] = -data[sponge + i] * mean;
+      if (dilution) out.entrainment[i] = -dilution(i) * mean;
     }
   });
 }
@@ -99,10 +116,24 @@ export function rowOf(last: LastStep, variable: StateVariable, role: 'now' | 'pr
   return offset + j * rowStride;
 }
 
-/** Acceleration by the wind at column i of row j in the last step, m/s². */
+/** w_e/h at a velocity point, 1/s; null where nothing is entrained. */
+function dilutionOf(last: LastStep, j: number, variable: 'u' | 'v'): ((i: number) => number) | null {
+  const { model, nonlinear, pitch } = last;
+  const { rows, entrainment } = model;
+  if (!nonlinear || !entrainment) return null;
+  const { entrained } = nonlinear;
+  const row = last.at(j);
+  if (variable === 'u')
+    return (i) => (0.5 * (entrained[row + i - 1] + entrained[row + i])) / nonlinear.zonalThickness(i, j);
+  return (i) =>
+    (0.5 * (rows.shareSouth[j] * entrained[row - pitch + i] + rows.shareNorth[j] * entrained[row + i])) /
+    nonlinear.meridionalThickness(i, j);
+}
+
+/** τ/ρ0 at column i of row j in the last step, m²/s². */
 function stressAt(last: LastStep, j: number, component: 'x' | 'y'): (i: number) => number {
   const { model, factors, pitch } = last;
-  const { forcing, statics, data, density, restThickness } = model;
+  const { forcing, statics, data, density } = model;
   let uniform = 0;
   forcing.bases.forEach(({ tauxRow, tauyRow }, b) => {
     uniform += factors[b] * ((component === 'x' ? tauxRow : tauyRow)?.[j] ?? 0);
@@ -110,10 +141,9 @@ function stressAt(last: LastStep, j: number, component: 'x' | 'y'): (i: number) 
   const fields = (component === 'x' ? statics.tauX : statics.tauY).map((plane) =>
     plane === NONE ? NONE : plane + j * pitch + WEST,
   );
-  const perMass = 1 / (density * restThickness);
   return (i) => {
     let tau = uniform;
     for (let b = 0; b < fields.length; b++) if (fields[b] !== NONE) tau += factors[b] * data[fields[b] + i];
-    return tau * perMass;
+    return tau / density;
   };
 }
