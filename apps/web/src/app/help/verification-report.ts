@@ -64,9 +64,12 @@ export class VerificationReportView {
     return sentenceStart(formatCount(count, what));
   }
 
-  /** Significant digits; an en dash where there is no number. */
+  /** So many significant digits at most; an en dash where there is no number. */
   protected number(value: number | null, digits: number): string {
-    return value === null ? NO_VALUE : formatNumber(value, { significant: digits });
+    if (value === null) return NO_VALUE;
+    const size = Math.abs(value);
+    if (size !== 0 && (size < 1e-3 || size >= 1e6)) return formatNumber(value, { significant: Math.min(digits, 3) });
+    return formatNumber(Number(value.toPrecision(digits)));
   }
 
   protected kind(kind: VerificationCheck['errorKind']): string {

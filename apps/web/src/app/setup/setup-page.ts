@@ -1,4 +1,5 @@
 import {
+  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   computed,
@@ -6,6 +7,7 @@ import {
   effect,
   type ElementRef,
   inject,
+  Injector,
   input,
   linkedSignal,
   resource,
@@ -93,6 +95,7 @@ export class SetupPage {
   private readonly router = inject(Router);
   private readonly storage = inject(KeptDrafts);
   private readonly runner = inject(PreflightRunner);
+  private readonly injector = inject(Injector);
   private readonly exchange = inject(SetupExchange);
   protected readonly draft = inject(SetupDraft);
   /** Of the experiment; bound from the route. */
@@ -261,7 +264,9 @@ export class SetupPage {
   /** Begins a sketch and brings it into view; the focus stays on the button. */
   protected showSketch(sketch: SketchSection): void {
     sketch.start();
-    document.getElementById('sketch')?.scrollIntoView({ block: 'start' });
+    afterNextRender(() => document.getElementById('sketch')?.scrollIntoView({ block: 'start' }), {
+      injector: this.injector,
+    });
   }
 
   /** F6: from the form to preflight and back to the field that was left. */

@@ -26,6 +26,7 @@ const NATIVES: readonly NativeVariable[] = ['eta', 'u', 'v'];
   templateUrl: './sketch-section.html',
   styleUrls: ['../../shared/plate/plate-controls.scss', './sketch-section.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
+  host: { '[class.begun]': "runner.state() !== 'none'" },
 })
 export class SketchSection {
   private readonly draft = inject(SetupDraft);
