@@ -49,6 +49,8 @@ export function nonlinearStage(head: usize, c: usize, t: i32, ny: i32, first: i3
     zonalFlux(head, c, t);
     if (t > 0 && t > first - 3) meridionalFlux(head, c, t);
   } else if (t == ny) beyondNorth(c, ny);
+  // With the fluxes as they are, before continuity's are limited.
+  if (t >= first && t <= end) corners(head, c, t);
   const r = t - 1;
   if (r < 0 || r < first - 2) return;
   if (r < ny && int(head, P.LIMITS) != 0) {
@@ -60,7 +62,6 @@ export function nonlinearStage(head: usize, c: usize, t: i32, ny: i32, first: i3
       limitZonal(head, c, r);
     }
   }
-  if (r >= first) corners(head, c, r);
   const j = t - 2;
   if (j < 0 || j < first - 1) return;
   const scratch = c + P.C_SCRATCH;

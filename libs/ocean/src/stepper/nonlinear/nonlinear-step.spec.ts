@@ -79,8 +79,9 @@ function plainStep(model: Model): Record<StateVariable, number[][]> {
   const hq = (i: number, j: number) =>
     (Ac(j - 1) * (ht(i - 1, j - 1) + ht(i, j - 1)) + Ac(j) * (ht(i - 1, j) + ht(i, j))) / (count(i, j) * Av(j));
   const q = (i: number, j: number) => (f[j] + zeta(i, j)) / hq(i, j);
-  const a = (i: number, j: number) => q(i, j) * 0.5 * (V(i - 1, j) + V(i, j));
-  const b = (i: number, j: number) => q(i, j) * 0.5 * (U(i, j - 1) + U(i, j));
+  // Turning takes the fluxes before they are limited.
+  const a = (i: number, j: number) => q(i, j) * 0.5 * (Vraw(i - 1, j) + Vraw(i, j));
+  const b = (i: number, j: number) => q(i, j) * 0.5 * (Uraw(i, j - 1) + Uraw(i, j));
   const AD = (i: number, j: number) =>
     (statics.viscosityCell < 0 ? model.viscosity : fixed(statics.viscosityCell, i, j)) * D(i, j);
   const Azeta = (i: number, j: number) => {
