@@ -47,6 +47,8 @@ test('a modeller asks, sets up with the preflight at hand, queues, watches, stop
   expect(Number(await steps.inputValue())).toBeGreaterThan(8);
 
   // What is typed survives a reload.
+  // Short steps, so that the run lasts long enough to be stopped.
+  await steps.fill('96');
   await page.getByRole('spinbutton', { name: /^Length/ }).fill('7300');
   await page.getByLabel('Label of the run').fill('Long control');
   await page.reload();
