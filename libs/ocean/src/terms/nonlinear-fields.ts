@@ -53,8 +53,9 @@ export class NonlinearFields {
   update(): void {
     this.#thickness();
     this.#fluxes();
-    if (this.#last.model.minimumThickness > 0) this.#limitFluxes();
+    // Turning takes the fluxes as they are; the limiter acts on continuity alone (nonlinear-step.ts).
     this.#corners();
+    if (this.#last.model.minimumThickness > 0) this.#limitFluxes();
     this.#kinetics();
   }
 
