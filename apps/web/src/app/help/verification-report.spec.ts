@@ -3,6 +3,7 @@ import { HttpTestingController, provideHttpClientTesting } from '@angular/common
 import { provideZonelessChangeDetection } from '@angular/core';
 import { TestBed } from '@angular/core/testing';
 import type { VerificationAnswer, VerificationReport } from '@halfdeep/contracts';
+import { provideIcons } from '../core/icons';
 import { VerificationReportView } from './verification-report';
 
 const oneCase = (id: string, title: string, passed: boolean): VerificationReport['cases'][number] => ({
@@ -51,7 +52,7 @@ const report: VerificationReport = {
 
 async function show(answer: VerificationAnswer) {
   TestBed.configureTestingModule({
-    providers: [provideZonelessChangeDetection(), provideHttpClient(), provideHttpClientTesting()],
+    providers: [provideZonelessChangeDetection(), provideHttpClient(), provideHttpClientTesting(), provideIcons()],
   });
   const fixture = TestBed.createComponent(VerificationReportView);
   fixture.detectChanges();

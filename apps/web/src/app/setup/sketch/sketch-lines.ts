@@ -7,6 +7,10 @@ export interface LineChoice extends Pick<SketchLine, 'along' | 'askedDeg'> {
   label: string;
 }
 
+// As short as two decimals say it: 10° N, 7.25° S.
+const latitude = (degrees: number) => formatLatitude(Number(degrees.toFixed(2)));
+const longitude = (degrees: number) => formatLongitude(Number(degrees.toFixed(2)));
+
 /** The equator (or the middle latitude) first, then the setup's sections, then the middle longitude. */
 export function lineChoices({ basin, output }: Pick<Setup, 'basin' | 'output'>): LineChoice[] {
   const { southDeg, northDeg, westDeg, eastDeg } = basin;
@@ -14,15 +18,13 @@ export function lineChoices({ basin, output }: Pick<Setup, 'basin' | 'output'>):
   const middle = { along: 'latitude', askedDeg: equator ? 0 : (southDeg + northDeg) / 2 } as const;
   const meridian = { along: 'longitude', askedDeg: (westDeg + eastDeg) / 2 } as const;
   const places = [
-    { ...middle, label: equator ? 'the equator' : formatLatitude(middle.askedDeg, 2) },
+    { ...middle, label: equator ? 'the equator' : latitude(middle.askedDeg) },
     ...output.sections.map(({ along, atDeg, name }) => ({
       along,
       askedDeg: atDeg,
-      label: [name, along === 'latitude' ? formatLatitude(atDeg, 2) : formatLongitude(atDeg, 2)]
-        .filter(Boolean)
-        .join(', '),
+      label: [name, along === 'latitude' ? latitude(atDeg) : longitude(atDeg)].filter(Boolean).join(', '),
     })),
-    { ...meridian, label: formatLongitude(meridian.askedDeg, 2) },
+    { ...meridian, label: longitude(meridian.askedDeg) },
   ];
   return places
     .filter((place, k) => places.findIndex((other) => sameLine(other, place)) === k)

@@ -128,15 +128,15 @@ export class SketchSection {
   protected readonly name = computed(() => {
     const { along, askedDeg } = this.line();
     const at = this.drawing().drawing?.atDeg ?? askedDeg;
-    const found = Number.isNaN(at) ? askedDeg : at;
-    if (along === 'longitude') return `Sketch along ${formatLongitude(found, 2)}`;
-    return found === 0 ? 'Sketch along the equator' : `Sketch along ${formatLatitude(found, 2)}`;
+    const found = Number((Number.isNaN(at) ? askedDeg : at).toFixed(2));
+    if (along === 'longitude') return `Sketch along ${formatLongitude(found)}`;
+    return found === 0 ? 'Sketch along the equator' : `Sketch along ${formatLatitude(found)}`;
   });
   protected readonly remark = computed(() => {
     const { along, askedDeg } = this.line();
     const at = this.drawing().drawing?.atDeg ?? NaN;
     if (!(Math.abs(at - askedDeg) > 1e-9)) return '';
-    return `nearest to ${(along === 'latitude' ? formatLatitude : formatLongitude)(askedDeg, 2)}`;
+    return `nearest to ${(along === 'latitude' ? formatLatitude : formatLongitude)(Number(askedDeg.toFixed(2)))}`;
   });
   protected readonly caption = computed(() => {
     const { label, factor, unit } = VARIABLE_VIEWS[this.variable()];
