@@ -21,6 +21,31 @@ const free = smallSetup({
   start: { ...bump, amplitudeM: 20 },
 });
 
+const nonlinear = smallSetup({
+  length: { days: 60 },
+  layer: {
+    ...base.layer,
+    dampingPerS: 1e-8,
+    minimumThicknessM: 190,
+    entrainment: { onsetThicknessM: 198, timescaleDays: 10, detrainment: 'uniform' },
+  },
+  wind: { ...base.wind, stressFloorM: 100 },
+  numerics: { ...base.numerics, equations: 'nonlinear', stepsPerDay: 16 },
+  start: { ...bump, amplitudeM: 20 },
+});
+const nonlinearBand = smallSetup({
+  length: { days: 60 },
+  basin: {
+    ...base.basin,
+    geometry: 'spherical',
+    zonallyPeriodic: true,
+    sponges: [{ edge: 'north', widthDeg: 2, peakRatePerS: null, tapersWind: true }],
+  },
+  friction: { ...base.friction, slip: 'none' },
+  numerics: { ...base.numerics, equations: 'nonlinear', stepsPerDay: 16 },
+  start: { ...bump, amplitudeM: 20 },
+});
+
 function closures(setup: Setup): {
   mass: number;
   energy: number;
@@ -56,7 +81,7 @@ function closures(setup: Setup): {
     const record = run.takeSections();
     const at = (name: string) => (sections.includes(name) ? record[sections.indexOf(name)] : 0);
     const change = ((at('0.volumeNorth') - volumeBefore) * 1e9) / seconds / 1e6;
-    volume = Math.max(volume, Math.abs(at('0.transport') + at('0.dampingNorth') - change));
+    volume = Math.max(volume, Math.abs(at('0.transport') + at('0.dampingNorth') + at('0.entrainedNorth') - change));
     flow = Math.max(flow, Math.abs(at('0.transport')));
     volumeBefore = at('0.volumeNorth');
   }
@@ -68,6 +93,8 @@ describe('budgets of a basin with an island', () => {
     ['closed, drag and viscosity, free slip', base],
     ['periodic, damped, no slip', periodic],
     ['closed, without friction', free],
+    ['nonlinear, closed, limiter and stress floor, entrainment given back', nonlinear],
+    ['nonlinear, periodic band of the sphere, no slip, sponge', nonlinearBand],
   ] as const)
     it(`close to 1e-11: ${name}`, (context) => {
       const { mass, energy, volume } = closures(setup);
@@ -75,7 +102,11 @@ describe('budgets of a basin with an island', () => {
       for (const [id, quantity, obtained] of [
         ['energy', 'energy residual over the wind’s work', energy],
         ['mass', 'mass residual over Σ |η|', mass],
-        ['volume', 'transport less the change of the volume north of it, over the transport', volume],
+        [
+          'volume',
+          'transport and sources less the change of the volume north of the section, over the transport',
+          volume,
+        ],
       ] as const)
         proveCase(context, 'n', {
           id: `${id} (${name})`,

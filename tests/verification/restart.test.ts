@@ -15,6 +15,19 @@ const setups: [string, Setup][] = [
       friction: { ...base.friction, slip: 'none' },
     }),
   ],
+  [
+    'nonlinear, entrainment, limiter, sponge',
+    smallSetup({
+      basin: { ...base.basin, sponges: [{ edge: 'east', widthDeg: 3, peakRatePerS: null, tapersWind: true }] },
+      layer: {
+        ...base.layer,
+        minimumThicknessM: 190,
+        entrainment: { onsetThicknessM: 198, timescaleDays: 10, detrainment: 'uniform' },
+      },
+      // The steps of a run of ten days at twelve a day are what the stops below are made for.
+      numerics: { ...base.numerics, equations: 'nonlinear' },
+    }),
+  ],
 ];
 
 /** Everything that a run delivers when its records are taken every so many steps. */
