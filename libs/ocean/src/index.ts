@@ -38,7 +38,7 @@ export { energyOf, massAnomaly, volumeNorthOf } from './integration/energy';
 export { stepBudget, totalsOf, type StepBudget } from './integration/step-budget';
 export { stabilityNumbers, type StabilityNumbers } from './integration/stability';
 export { CORE_VERSION } from './integration/version';
-export { setupSha256 } from './integration/setup-hash';
+export { setupSha256, stateSha256 } from './integration/setup-hash';
 export { sin, cos, exp } from './exact/elementary';
 export { corvaneFamilySetup, corvaneSetup } from './presets/corvane';
 export { PRESETS, type OceanPreset } from './presets/presets';

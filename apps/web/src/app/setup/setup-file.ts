@@ -1,5 +1,5 @@
 import { isZip, readBundle, SetupFileError, setupSchema } from '@halfdeep/contracts';
-import { fieldLabel, Integration, type Setup } from '@halfdeep/ocean';
+import { fieldLabel, stateSha256, type Setup } from '@halfdeep/ocean';
 import { toPointer, valueAt } from './setup-pointer';
 
 /** What a file held: a setup that the form can show (some fields may still be refused there), or why not. */
@@ -32,7 +32,7 @@ function wrongState({ start }: Setup, state: Uint8Array | null): string | null {
   if (start.kind !== 'state')
     return state && `The bundle carries a start state, but its setup starts from “${start.kind}”.`;
   if (!state) return `The setup starts from the last state of a run, and that state is missing in the bundle.`;
-  if (Integration.stateSha256(state) === start.stateSha256) return null;
+  if (stateSha256(state) === start.stateSha256) return null;
   return 'The state in the bundle is another one than the one that its setup starts from.';
 }
 
