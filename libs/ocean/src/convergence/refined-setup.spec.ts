@@ -14,6 +14,11 @@ const withBasin = (basin: Partial<Basin>, change: Partial<Setup> = {}): Setup =>
   return { ...setup, basin: { ...setup.basin, ...basin } };
 };
 
+const stepVerdicts = (setup: Setup) =>
+  preflight(setup)
+    .checks.filter(({ id }) => id.startsWith('step-'))
+    .map(({ verdict }) => verdict);
+
 describe('refinedSetup', () => {
   it.each([
     [2, 480, 280, 0.125],
@@ -33,9 +38,22 @@ describe('refinedSetup', () => {
       ...(setup.numerics.stepsPerDay === 16 ? [] : ['/numerics/stepsPerDay']),
     ]);
     expect(setup.numerics.spacingLongitudeDeg).toBe(spacing);
-    expect(preflight(setup).checks.filter(({ id, verdict }) => id.startsWith('step') && verdict !== 'pass')).toEqual(
-      [],
-    );
+    expect(stepVerdicts(setup)).toEqual(['pass', 'pass', 'pass', 'pass']);
+  });
+
+  it.each([2, 0.5] as const)('keeps the step of a nonlinear run within its bounds at %f times', (factor) => {
+    const linear = corvaneForCheck();
+    const parent: Setup = {
+      ...linear,
+      layer: {
+        ...linear.layer,
+        entrainment: { onsetThicknessM: 60, timescaleDays: 10, detrainment: 'none' },
+      },
+      numerics: { ...linear.numerics, equations: 'nonlinear', stepsPerDay: 20 },
+    };
+    const { setup } = refinedSetup(parent, factor, 'same');
+    expect(stepVerdicts(setup)).toEqual(['pass', 'pass', 'pass', 'pass', 'pass']);
+    expect([setup.layer, setup.numerics.equations]).toEqual([parent.layer, 'nonlinear']);
   });
 
   it('takes at least as many steps in proportion as the parent, and a step that preflight passes', () => {
@@ -101,7 +119,7 @@ describe('refinedSetup', () => {
       south: fc.integer({ min: -170, max: -20 }),
       north: fc.integer({ min: 20, max: 170 }),
       spacing: fc.constantFrom(0.2, 0.25, 0.37, 0.5),
-      geometry: fc.constantFrom('equatorial' as const, 'midlatitude' as const),
+      geometry: fc.constantFrom('equatorial' as const, 'midlatitude' as const, 'spherical' as const),
     });
     fc.assert(
       fc.property(edges, ({ south, north, spacing, geometry }) => {

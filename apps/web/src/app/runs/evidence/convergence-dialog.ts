@@ -16,7 +16,7 @@ import { formatBytes, formatDuration, formatNumber } from '../../core/format';
 import { type ApiProblem, toApiProblem } from '../../core/problem';
 import { ProblemMessage } from '../../shared/problem-message/problem-message';
 import { VerdictSign } from '../../shared/verdict/verdict';
-import { costOf } from './convergence-words';
+import { costOf, openChoice } from './convergence-words';
 
 /** What the dialog is about when it opens, and what stands when it closes. */
 export interface ConvergenceAsked {
@@ -51,7 +51,7 @@ export class ConvergenceDialog {
   private readonly dialog = inject<MatDialogRef<ConvergenceDialog, ConvergenceAsked>>(MatDialogRef);
   protected readonly asked = inject<ConvergenceAsked>(MAT_DIALOG_DATA);
 
-  protected readonly coast = signal(this.asked.coast);
+  protected readonly coast = signal(openChoice(this.asked.convergence, this.asked.coast));
   protected readonly choices = this.asked.convergence.choices;
   protected readonly choice = computed(
     () => this.choices.find(({ coast }) => coast === this.coast()) ?? this.choices[0],

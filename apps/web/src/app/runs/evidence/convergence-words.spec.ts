@@ -1,5 +1,14 @@
 import { aRun } from '../../testing/samples';
-import { convergenceSummary, costOf, firstChoice, indexWords, measureVerdict, repeatFact } from './convergence-words';
+import {
+  convergenceSummary,
+  costOf,
+  firstChoice,
+  indexWords,
+  measureVerdict,
+  openChoice,
+  repeatFact,
+  sectionName,
+} from './convergence-words';
 import { aConvergence, aLevel, aMeasure } from './testing';
 
 const id = (n: number) => `00000000-0000-4000-8000-${String(n).padStart(12, '0')}`;
@@ -50,6 +59,22 @@ describe('what is left to queue', () => {
     convergence.choices[1].levels[0].run = aRun();
     expect(firstChoice(convergence)).toBe('anew');
   });
+});
+
+it('a section is named once', () => {
+  expect(sectionName({ name: 'Equator', along: 'latitude', atDeg: 0 })).toBe('Equator, 0°');
+  expect(sectionName({ name: '5° N', along: 'latitude', atDeg: 5 })).toBe('5°\u00a0N');
+  expect(sectionName({ name: '', along: 'longitude', atDeg: 20.25 })).toBe('20.25°\u00a0E');
+});
+
+it('a dialog opens at a coast that has something left to queue', () => {
+  const run = aRun();
+  const convergence = aConvergence();
+  expect(openChoice(convergence, 'anew')).toBe('anew');
+  for (const level of convergence.choices[1].levels) level.run = run;
+  expect(openChoice(convergence, 'anew')).toBe('same');
+  for (const level of convergence.choices[0].levels) level.run = run;
+  expect(openChoice(convergence, 'anew')).toBe('anew');
 });
 
 describe('repeatFact', () => {

@@ -45,8 +45,11 @@ export function measureName({ quantity }: Pick<ConvergenceMeasure, 'quantity'>):
   return quantity === 'mean' ? 'mean transport' : 'seasonal amplitude';
 }
 
-export function placeOf({ along, atDeg }: Pick<ConvergenceMeasure, 'along' | 'atDeg'>): string {
-  return along === 'latitude' ? formatLatitude(atDeg) : formatLongitude(atDeg);
+/** "Equator, 0°"; the place alone where the name says no more. */
+export function sectionName({ name, along, atDeg }: Pick<ConvergenceMeasure, 'name' | 'along' | 'atDeg'>): string {
+  const place = along === 'latitude' ? formatLatitude(atDeg) : formatLongitude(atDeg);
+  // A person types an ordinary space between number and letter.
+  return name.trim() === '' || name.replace(/\s/g, ' ') === place.replace(/\s/g, ' ') ? place : `${name}, ${place}`;
 }
 
 /** "0.22 %" */
@@ -66,6 +69,12 @@ export function firstChoice({ choices }: Convergence): ConvergenceChoice['coast'
     (result ? 4 : 0) + levels.filter(({ run }) => run !== null).length;
   const [best] = [...choices].sort((a, b) => far(b) - far(a));
   return best?.coast ?? 'same';
+}
+
+/** The coast that a person may still queue something for: the one that is shown, unless both of its runs are there. */
+export function openChoice({ choices }: Convergence, shown: ConvergenceChoice['coast']): ConvergenceChoice['coast'] {
+  const open = choices.filter(({ levels }) => levels.some(({ run }) => run === null));
+  return (open.find(({ coast }) => coast === shown) ?? open[0])?.coast ?? shown;
 }
 
 export interface Cost {

@@ -23,7 +23,14 @@ import { DataState } from '../../shared/data-state/data-state';
 import { StateSign } from '../../shared/state-sign/state-sign';
 import { VerdictSign } from '../../shared/verdict/verdict';
 import { ConvergenceDialog, type ConvergenceAsked } from './convergence-dialog';
-import { convergenceSummary, firstChoice, indexWords, measureName, measureVerdict, placeOf } from './convergence-words';
+import {
+  convergenceSummary,
+  firstChoice,
+  indexWords,
+  measureName,
+  measureVerdict,
+  sectionName,
+} from './convergence-words';
 
 const COASTS: Record<ConvergenceCoast, string> = { same: 'same coast', anew: 'coast anew' };
 const ROLES = { half: 'Half the resolution', twice: 'Twice the resolution' } as const;
@@ -134,10 +141,7 @@ export class Resolution {
   protected readonly measureName = measureName;
   protected readonly verdictOf = measureVerdict;
   protected readonly indexWords = indexWords;
-  protected sectionName({ name, along, atDeg }: ConvergenceMeasure): string {
-    const place = placeOf({ along, atDeg });
-    return name && name !== place ? `${name}, ${place}` : place;
-  }
+  protected readonly sectionName = sectionName;
   /** Four digits of the largest transport of the section: a mean that is nothing beside the season reads as nothing. */
   protected value(value: number | null, { section }: ConvergenceMeasure): string {
     const measures = this.choice()?.result?.measures ?? [];
