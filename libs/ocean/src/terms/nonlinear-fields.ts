@@ -16,6 +16,9 @@ export class NonlinearFields {
   /** Limited U and V per metre of the face, m²/s. */
   readonly fluxU: Float64Array;
   readonly fluxV: Float64Array;
+  /** The same before they were limited: turning takes these. */
+  readonly turningU: Float64Array;
+  readonly turningV: Float64Array;
   /** w_e, m/s, and what is given back evenly, m/s. */
   readonly entrained: Float64Array;
   detrained = 0;
@@ -38,6 +41,8 @@ export class NonlinearFields {
     this.ht = plane();
     this.fluxU = plane();
     this.fluxV = plane();
+    this.turningU = plane();
+    this.turningV = plane();
     this.entrained = plane();
     this.kinetic = plane();
     this.cornerThickness = plane();
@@ -55,6 +60,8 @@ export class NonlinearFields {
     this.#fluxes();
     // Turning takes the fluxes as they are; the limiter acts on continuity alone (nonlinear-step.ts).
     this.#corners();
+    this.turningV.set(this.fluxV);
+    this.turningU.set(this.fluxU);
     if (this.#last.model.minimumThickness > 0) this.#limitFluxes();
     this.#kinetics();
   }
