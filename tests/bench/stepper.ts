@@ -9,8 +9,9 @@ import {
   type Setup,
 } from '@halfdeep/ocean';
 import { setState } from '../../libs/ocean/src/stepper/model';
-import { createStepper, type Stepper } from '../../libs/ocean/src/stepper/stepper';
+import { createStepper, steppedBy, type Stepper, type StepperOptions } from '../../libs/ocean/src/stepper/stepper';
 import { corvaneForCheck } from '../../libs/ocean/src/testing/setups';
+import { WorkerThreadTeam } from '../../worker/src/team/thread-team';
 import { timed } from './cpu';
 import { differenceFrom, NativeStepper, numpyCommand, type NativePrograms, type Spent } from './native';
 
@@ -116,8 +117,9 @@ function optionsOf(setup: Setup): ModelOptions {
 }
 
 /** A model in motion: a bump and currents, so that no stepper works on zeros (and none on denormal numbers). */
-function movingModel(setup: Setup): Model {
-  const model = createModel(optionsOf(setup));
+function movingModel(setup: Setup, stepping: StepperOptions = { kernel: 'reference' }): Model {
+  const options = optionsOf(setup);
+  const model = createModel({ ...options, ...steppedBy(stepping, options.grid.nx) });
   const { nx, ny } = model.grid;
   const wave = (i: number, j: number) => Math.sin((6.28 * i) / nx + 1) * Math.cos((9.42 * j) / ny);
   setState(model, {
@@ -130,16 +132,20 @@ function movingModel(setup: Setup): Model {
 
 /** A stepper on trial: `run` makes steps and says what they took. */
 interface Runner {
-  name: StepperName;
+  name: StepperName | 'simd2';
   run: (steps: number) => Promise<Spent>;
   /** What differs from the reference after the same number of steps, or null. */
   difference: (reference: Model) => Promise<string | null>;
   close: () => Promise<void>;
 }
 
-function inProcess(name: 'simd' | 'reference', setup: Setup): { runner: Runner; model: Model } {
-  const model = movingModel(setup);
-  const stepper: Stepper = createStepper(model, { kernel: name });
+function inProcess(
+  name: Runner['name'],
+  setup: Setup,
+  stepping: StepperOptions,
+): { runner: Runner; model: Model; stepper: Stepper } {
+  const model = movingModel(setup, stepping);
+  const stepper = createStepper(model, stepping);
   const runner: Runner = {
     name,
     run: async (steps) => {
@@ -148,9 +154,24 @@ function inProcess(name: 'simd' | 'reference', setup: Setup): { runner: Runner; 
       return { cpu, wall: (performance.now() - wall) / 1000 };
     },
     difference: (reference) => Promise.resolve(sameLevels(reference, model)),
-    close: () => Promise.resolve(),
+    close: () => Promise.resolve(stepper.dismiss()),
   };
-  return { runner, model };
+  return { runner, model, stepper };
+}
+
+/** The compiled stepper alone and with a helper thread; nothing where this machine or the equations have none. */
+function compiled(setup: Setup): { runners: Runner[]; bytes: number } {
+  try {
+    const { runner, model } = inProcess('simd', setup, { kernel: 'simd' });
+    const runners = [runner];
+    const two = inProcess('simd2', setup, { kernel: 'simd', team: new WorkerThreadTeam(2) });
+    if (two.stepper.threads === 2) runners.push(two.runner);
+    else two.stepper.dismiss();
+    return { runners, bytes: model.memory?.buffer.byteLength ?? model.data.byteLength };
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error;
+    return { runners: [], bytes: NaN };
+  }
 }
 
 /** Sentence about the first of the levels' numbers that differs, or null. */
@@ -173,8 +194,9 @@ async function inChild(name: StepperName, command: readonly string[], setup: Set
 
 const ROUNDS = 5;
 /** Cell-steps of one chunk. */
-const CHUNK: Record<StepperName, number> = {
+const CHUNK: Record<StepperName | 'simd2', number> = {
   simd: 2.4e7,
+  simd2: 2.4e7,
   reference: 1e7,
   native: 2.4e7,
   sse2: 2.4e7,
@@ -184,7 +206,7 @@ const CHUNK: Record<StepperName, number> = {
 /** Whole numbers of this many steps: the compiled kernel makes four steps a sweep out of cache. */
 const STEPS_OF = 4;
 
-function stepsOf(name: StepperName, cells: number): number {
+function stepsOf(name: Runner['name'], cells: number): number {
   return STEPS_OF * Math.max(1, Math.round(CHUNK[name] / cells / STEPS_OF));
 }
 
@@ -199,9 +221,10 @@ export async function benchGrid(
   const cells = nx * ny;
   const runners: Runner[] = [];
   try {
-    const { runner: referenceRunner, model } = inProcess('reference', setup);
+    const { runner: referenceRunner, model } = inProcess('reference', setup, { kernel: 'reference' });
     runners.push(referenceRunner);
-    if (hasKernel(setup)) runners.push(inProcess('simd', setup).runner);
+    const simd = compiled(setup);
+    runners.push(...simd.runners);
     if (programs)
       for (const name of ['native', 'sse2'] as const) runners.push(await inChild(name, [programs[name]], setup));
     for (const [name, style] of [
@@ -220,13 +243,15 @@ export async function benchGrid(
         throw new Error(`${equations}, ${nx} × ${ny}: ${runner.name} differs from the reference: ${difference}.`);
     }
     const run = Integration.start(setup);
-    const best = new Map<StepperName | 'recording', number>();
-    const keep = (name: StepperName | 'recording', steps: number, seconds: number) =>
+    const best = new Map<string, number>();
+    const keep = (name: string, steps: number, seconds: number) =>
       best.set(name, Math.max(best.get(name) ?? 0, (cells * steps) / seconds / 1e6));
     for (let round = 0; round < ROUNDS; round++) {
       for (const { name, run: advance } of runners) {
         const steps = stepsOf(name, cells);
-        keep(name, steps, (await advance(steps)).cpu);
+        const { cpu, wall } = await advance(steps);
+        keep(name, steps, cpu);
+        keep(`${name} wall`, steps, wall);
       }
       const steps = 20 * Math.max(1, Math.round(CHUNK.reference / cells / 20));
       keep('recording', steps, await timed(() => run.advance(steps)));
@@ -238,6 +263,7 @@ export async function benchGrid(
     const kernel = speeds.simd === null ? 'reference' : 'simd';
     const mcs = speeds[kernel]!;
     const over = (name: StepperName) => (speeds[name] === null ? null : mcs / speeds[name]);
+    const [one, two] = [best.get('simd wall'), best.get('simd2 wall')];
     const recording = best.get('recording')!;
     const moved = movedPerCellStep(model);
     return {
@@ -252,10 +278,10 @@ export async function benchGrid(
       vsNumPyPlain: over('numpyPlain'),
       vsReference: over('reference'),
       referenceVsNativeC: speeds.native === null ? null : speeds.reference! / speeds.native,
-      threads2: null,
+      threads2: one !== undefined && two !== undefined ? two / one : null,
       recording,
       factor: mcs / recording,
-      bytesPerCell: model.data.byteLength / cells,
+      bytesPerCell: (kernel === 'simd' ? simd.bytes : model.data.byteLength) / cells,
       movedPerCellStep: moved,
       streamFraction: bandwidth === null ? null : (mcs * 1e6 * moved) / bandwidth,
       sameBits: true,
@@ -263,10 +289,6 @@ export async function benchGrid(
   } finally {
     for (const runner of runners) await runner.close();
   }
-}
-
-function hasKernel(_setup: Setup): boolean {
-  return false;
 }
 
 /** Three levels of h, u and v read and one written; fields of stress, one a basis and component, read. */

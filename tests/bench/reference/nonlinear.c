@@ -1,5 +1,5 @@
 /* One step of the nonlinear, vector-invariant equations: one sweep over rows, what is made on the way in rings of four
- * rows. With t the row that is read: half levels and fluxes of t; limiter and corners of t - 1; thickness and velocities
+ * rows. With t the row that is read: half levels, fluxes and corners of t; limiter of t - 1; thickness and velocities
  * of t - 2. */
 #include <stddef.h>
 
@@ -198,7 +198,7 @@ static void thickness_run(const double *restrict ut, const double *restrict vt, 
                           const double *restrict flux_north, const double *restrict entrained, const double *restrict h0,
                           const double *restrict h1, const double *restrict h2, double *restrict hn,
                           double *restrict head, int first, int end, double per_dx, double north, double south,
-                          double keep, double push, double source, double g, double A) {
+                          double damping, double rest, double push, double detrained, double g, double A) {
   const double w1 = g * P1, w0 = g * P0, wm1 = g * PM1, wm2 = g * PM2;
   for (int c = first; c < end; c++) {
     const double u_w = ut[c], u_e = ut[c + 1], v_s = vt[c], v_n = vt_north[c];
@@ -206,7 +206,7 @@ static void thickness_run(const double *restrict ut, const double *restrict vt, 
     const double O = (flux_u[c + 1] - flux_u[c]) * per_dx + (flux_north[c] * north - flux_v[c] * south);
     const double K = 0.25 * (u_w * u_w + u_e * u_e + (v_s * v_s + v_n * v_n));
     const double h = h0[c];
-    const double next = keep * h + push * (source + entrained[c] - O);
+    const double next = h + push * (damping * (rest - h) - detrained + entrained[c] - O);
     hn[c] = next;
     head[c] = w1 * next + w0 * h + (wm1 * h1[c] + wm2 * h2[c]) + K - A * D;
   }
@@ -220,8 +220,8 @@ static void thickness_row(const model *m, int j, double detrained) {
                   ring_row(m, FLUX_V, j), ring_row(m, FLUX_V, j + 1), ring_row(m, ENTRAINED, j),
                   level_row(m, NOW, H_PLANE, j), level_row(m, PREVIOUS, H_PLANE, j), level_row(m, BEFORE, H_PLANE, j),
                   hn, head, m->cells.bounds[2 * s], m->cells.bounds[2 * s + 1], m->per_dx_c[j], m->div_north[j],
-                  m->div_south[j], (1 - half * m->damping) / (1 + half * m->damping), m->dt / (1 + half * m->damping),
-                  m->damping * m->rest_thickness - detrained, m->reduced_gravity, m->viscosity);
+                  m->div_south[j], m->damping, m->rest_thickness, m->dt / (1 + half * m->damping), detrained,
+                  m->reduced_gravity, m->viscosity);
   if (m->periodic) {
     wrap_row(m, hn);
     wrap_row(m, head);
@@ -359,6 +359,8 @@ void nonlinear_step(model *m, const double *factors) {
       for (int k = 0; k < 3; k++) clear_row(m, ring_row(m, cells[k], m->ny));
       clear_row(m, ring_row(m, FLUX_V, m->ny));
     }
+    /* Turning takes the fluxes before continuity's are limited. */
+    if (t <= m->ny) corner_row(m, t);
     const int r = t - 1;
     if (r < 0) continue;
     if (m->minimum_thickness > 0 && r < m->ny) {
@@ -366,7 +368,6 @@ void nonlinear_step(model *m, const double *factors) {
       if (r > 0) limit_meridional_fluxes(m, r);
       limit_zonal_fluxes(m, r);
     }
-    corner_row(m, r);
     const int j = t - 2;
     if (j < 0) continue;
     thickness_row(m, j, detrained);
