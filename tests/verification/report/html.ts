@@ -142,7 +142,7 @@ tbody th { min-width: 16ch; }
 .pass, .fail { white-space: nowrap; font-weight: 500; } .pass { color: var(--success); } .fail { color: var(--refuse); }
 .sign { width: 12px; height: 12px; margin-right: 4px; vertical-align: -1px; fill: none; stroke: currentColor; stroke-width: 1.8; }
 .sign .solid { fill: currentColor; } .sign .bar { stroke: var(--sheet); }
-.plates { display: grid; grid-template-columns: repeat(auto-fill, minmax(min(100%, 400px), 1fr)); gap: 24px; margin-top: 16px; }
+.plates { display: grid; grid-template-columns: repeat(auto-fill, minmax(min(100%, 340px), 1fr)); gap: 24px; margin-top: 16px; }
 figure { margin: 0; background: var(--sheet); padding: 12px; }
 figure svg { width: 100%; height: auto; display: block; } figcaption { font-size: 12.5px; line-height: 16px; color: var(--text-2); margin-top: 8px; }
 figure text { font-size: 11px; fill: var(--text-2); } figure .name { fill: var(--text); font-style: italic; }
