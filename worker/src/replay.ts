@@ -21,7 +21,7 @@ export async function replayFailure(run: Integration, interrupted: () => boolean
     throw error;
   }
   throw new Error(
-    `The state was not finite, but a replay from the last checkpoint reached the end at step ${run.totalSteps}.`,
+    `The run could not go on, but a replay from the last checkpoint reached the end at step ${run.totalSteps}.`,
   );
 }
 

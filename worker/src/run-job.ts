@@ -241,7 +241,7 @@ export class RunJob {
     await this.writer.commit();
     await this.writer.rewindTo(report.step - 1);
     await this.tell();
-    return { kind: 'failed', failure: describeFailure('non-finite', report.message, report) };
+    return { kind: 'failed', failure: describeFailure(report.cause, report.message, report) };
   }
 
   private async tell(): Promise<void> {

@@ -40,7 +40,7 @@ export type Progress = z.infer<typeof progressSchema>;
 
 export const failureSchema = z
   .object({
-    cause: z.enum(['non-finite', 'worker died', 'disk full', 'result lost', 'internal']),
+    cause: z.enum(['non-finite', 'step limit', 'outcropping', 'worker died', 'disk full', 'result lost', 'internal']),
     message: z.string(),
     step: z.number().int().nullable(),
     day: z.number().nullable(),

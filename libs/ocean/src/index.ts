@@ -36,6 +36,7 @@ export { snapMooring, type SnappedMooring } from './integration/moorings';
 export { BasinBudget } from './integration/budget';
 export { energyOf, massAnomaly, volumeNorthOf } from './integration/energy';
 export { stepBudget, totalsOf, type StepBudget } from './integration/step-budget';
+export { FLOW_CAUTION, FLOW_STOP, flowNumber, watchState, type Watch } from './integration/watch';
 export { stabilityNumbers, type StabilityNumbers } from './integration/stability';
 export { CORE_VERSION } from './integration/version';
 export { setupSha256, stateSha256 } from './integration/setup-hash';

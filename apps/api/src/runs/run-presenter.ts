@@ -63,7 +63,8 @@ export function runRights(run: Pick<Run, 'ownerId' | 'state' | 'failure'>, actor
 
 /** A failure whose cause lies in the setup would come again. */
 export function resumable(run: Pick<Run, 'failure'>): boolean {
-  return run.failure?.cause !== 'non-finite';
+  const cause = run.failure?.cause;
+  return cause !== 'non-finite' && cause !== 'step limit' && cause !== 'outcropping';
 }
 
 async function contextOf(runs: readonly Run[]): Promise<RunContext> {

@@ -5,15 +5,15 @@ import { SECONDS_PER_DAY } from '../forcing/season';
 import { buildGrid } from '../grid/build-grid';
 import { viscosityMaps } from '../grid/viscosity-map';
 import { isWet, type Grid } from '../grid/grid';
-import type { Column, Fingerprint, Frame } from '../integration-types';
+import type { Caution, Column, Fingerprint, Frame } from '../integration-types';
 import type { Setup } from '../setup';
 import { analyticStart } from '../start/initial-state';
 import { createModel, setState, type Model } from '../stepper/model';
 import { createStepper, steppedBy, type Stepper, type StepperOptions } from '../stepper/stepper';
-import type { StepRecorder } from '../stepper/sums';
+import type { StepRecorder, StepSums } from '../stepper/sums';
 import { BasinBudget } from './budget';
 import { pack, unpack } from './container';
-import { failureReport, IntegrationFailure, isFinite } from './failure';
+import { failureReport, flowCaution, IntegrationFailure, isFinite, outcropReport, stepLimitReport } from './failure';
 import { fingerprintOf } from './fingerprint';
 import { nativeField, nineArrays, setNineArrays, shapeOf, type NativeVariable } from './levels';
 import { MooringRecorder } from './moorings';
@@ -23,8 +23,10 @@ import { setupSha256 } from './setup-hash';
 import { packState, startFromState } from './state';
 import { TermBudgets } from './term-budgets';
 import { CORE_VERSION } from './version';
+import { FLOW_CAUTION, FLOW_STOP, flowNumber, isUnprotected, watchState } from './watch';
 
 const CHECK_EVERY = 20;
+const MOST_CAUTIONS = 20;
 
 /** Head of the bytes of a checkpoint. */
 interface CheckpointHead {
@@ -32,6 +34,8 @@ interface CheckpointHead {
   coreVersion: string;
   setupSha256: string;
   step: number;
+  cautions: Caution[];
+  cautious: boolean;
 }
 
 /**
@@ -52,6 +56,13 @@ export class Integration {
   readonly #moorings: MooringRecorder;
   #budget: BasinBudget;
   #termBudgets: TermBudgets;
+  /** Step that the recorder saw last. */
+  #recorded = 0;
+  /** First step in which an unprotected layer reached its minimum thickness. */
+  #outcropStep: number | null = null;
+  #cautions: Caution[] = [];
+  /** Whether S(1 + 2Fr) was beyond its caution when it was looked at last. */
+  #cautious = false;
 
   private constructor(setup: Setup, options: StepperOptions) {
     const { layer, friction, constants, numerics } = setup;
@@ -90,10 +101,13 @@ export class Integration {
     this.#budget = new BasinBudget(this.#model);
     this.#termBudgets = new TermBudgets(this.#model, setup.output);
     this.#stepper = createStepper(this.#model, options);
+    const unprotected = isUnprotected(this.#model);
     this.#recorder = {
       add: (sums) => {
         this.#sections.add(sums);
         this.#budget.add(sums);
+        this.#recorded += 1;
+        if (unprotected && this.#outcropStep === null && holdsUp(sums)) this.#outcropStep = this.#recorded;
       },
     };
   }
@@ -136,6 +150,8 @@ export class Integration {
     const run = new Integration(setup, options);
     setNineArrays(run.#model, arrays);
     run.#model.step = saved.step;
+    run.#cautions = saved.cautions;
+    run.#cautious = saved.cautious;
     for (const [name, slots] of run.#accumulators()) {
       if (arrays[name]?.length !== slots.length)
         throw new RangeError(
@@ -157,9 +173,10 @@ export class Integration {
   }
 
   /**
-   * Makes `steps` steps. The state is checked for finite values every `checkEvery` steps (at most, and by default, 20)
-   * and at the end; checkEvery: 1 names the first bad step and cell. Throws IntegrationFailure then, and RangeError
-   * when the steps would lead beyond the end.
+   * Makes `steps` steps. The state is checked every `checkEvery` steps (at most, and by default, 20) and at the end:
+   * for finite values, and in nonlinear mode for S(1 + 2Fr) and for a layer that reaches its minimum thickness
+   * unprotected; checkEvery: 1 names the first bad step and cell. Throws IntegrationFailure then, and RangeError when the
+   * steps would lead beyond the end.
    */
   advance(steps: number, options: { checkEvery?: number } = {}): void {
     const every = Math.min(options.checkEvery ?? CHECK_EVERY, CHECK_EVERY);
@@ -170,16 +187,51 @@ export class Integration {
     if (!(Number.isInteger(every) && every >= 1))
       throw new RangeError(`checkEvery must be a whole number from 1 to ${CHECK_EVERY}; ${every} arrived.`);
     for (let left = steps; left > 0;) {
-      const some = Math.min(left, every);
+      // Looked at on whole multiples of 20 steps, however the run is cut into calls, so that it stops at the same step.
+      const some = Math.min(left, every, CHECK_EVERY - (this.step % CHECK_EVERY));
       this.#make(some);
       left -= some;
-      if (!isFinite(this.#model))
-        throw new IntegrationFailure(failureReport(this.#model, this.setup.numerics.stepsPerDay, every === 1, some));
+      this.#check(some, every === 1);
     }
+  }
+
+  /** Throws IntegrationFailure when the run cannot go on after the last `made` steps. */
+  #check(made: number, exact: boolean): void {
+    const model = this.#model;
+    const { stepsPerDay } = this.setup.numerics;
+    if (!isFinite(model)) throw new IntegrationFailure(failureReport(model, stepsPerDay, exact, made));
+    if (this.#outcropStep !== null) throw new IntegrationFailure(outcropReport(model, stepsPerDay, this.#outcropStep));
+    const watched = exact || this.step % CHECK_EVERY === 0 || this.step === this.totalSteps;
+    if (model.equations === 'linear' || !watched) return;
+    const watch = watchState(model);
+    const flow = flowNumber(model, watch);
+    if (flow > FLOW_STOP) throw new IntegrationFailure(stepLimitReport(model, stepsPerDay, watch, exact));
+    // Not in the middle of an interval, so that the list does not depend on how the run is cut into calls.
+    if (this.step % CHECK_EVERY !== 0) return;
+    if (flow > FLOW_CAUTION) this.#noteCaution(flowCaution(model, stepsPerDay, watch));
+    else this.#cautious = false;
+  }
+
+  /** Begins a caution, or raises the value of the one that is still on. */
+  #noteCaution(caution: Caution): void {
+    const last = this.#cautions.at(-1);
+    if (!this.#cautious || !last) {
+      // The first ones say what there is to say.
+      if (this.#cautions.length < MOST_CAUTIONS) this.#cautions.push(caution);
+    } else if (caution.value > last.value) {
+      this.#cautions[this.#cautions.length - 1] = { ...caution, step: last.step, day: last.day };
+    }
+    this.#cautious = true;
+  }
+
+  /** Times at which a nonlinear run came near the limit of its step, S(1 + 2Fr) > 0.8: the first twenty. */
+  cautions(): Caution[] {
+    return this.#cautions.map((caution) => ({ ...caution }));
   }
 
   /** Steps; budgets of every term need the levels after each. */
   #make(steps: number): void {
+    this.#recorded = this.step;
     if (!this.#termBudgets.wanted) {
       this.#stepper.advance(steps, this.#recorder);
       return;
@@ -241,6 +293,8 @@ export class Integration {
       coreVersion: CORE_VERSION,
       setupSha256: setupSha256(this.setup),
       step: this.step,
+      cautions: this.#cautions,
+      cautious: this.#cautious,
     };
     return pack({
       head: { ...head },
@@ -281,6 +335,11 @@ export class Integration {
         out[j * columns + i] = touchesWater(grid, variable, i, j) ? values[j * columns + i] : NaN;
     return out;
   }
+}
+
+/** True when the step had to hold the layer up somewhere: it reached hmin. */
+function holdsUp({ terms }: StepSums): boolean {
+  return terms['limited'].some((cells) => cells > 0) || terms['clipped'].some((cells) => cells > 0);
 }
 
 /** True for a water cell, and for a face with water on one side or both. */

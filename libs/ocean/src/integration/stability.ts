@@ -14,13 +14,18 @@ export interface StabilityNumbers {
 
 /** Stability numbers of a step dt, s, on a grid; c in m/s, viscosity in m²/s. */
 export function stabilityNumbers(grid: Grid, c: number, dt: number, viscosity: number): StabilityNumbers {
-  const dx = Math.min(...minMax(grid.dxC), ...minMax(grid.dxV));
+  const dx = smallestSpacing(grid);
   const perArea = 1 / (dx * dx) + 1 / (grid.dy * grid.dy);
   const gravity = c * dt * Math.sqrt(perArea);
   const [low, high] = minMax(grid.f);
   const coriolis = Math.max(Math.abs(low), Math.abs(high)) * dt;
   const viscous = viscosity * dt * perArea;
   return { gravity, coriolis, viscous, combined: (gravity / 0.89) ** 2 + viscous / 0.16 };
+}
+
+/** Smallest zonal spacing of a grid, m. */
+export function smallestSpacing(grid: Grid): number {
+  return Math.min(minMax(grid.dxC)[0], minMax(grid.dxV)[0]);
 }
 
 function minMax(values: Float64Array): [number, number] {

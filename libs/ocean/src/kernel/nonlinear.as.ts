@@ -494,9 +494,10 @@ function thicknessRow(head: usize, c: usize, j: i32, out: usize, t: usize, varie
   const perDx = splat(num(t, P.PER_DX_C));
   const north = splat(num(t, P.DIV_NORTH));
   const south = splat(num(t, P.DIV_SOUTH));
-  const keep = splat(num(head, P.KEEP_THICKNESS));
   const push = splat(num(head, P.PUSH_THICKNESS));
-  const source = splat(num(head, P.SOURCE));
+  const damping = splat(num(head, P.DAMPING));
+  const rest = splat(num(head, P.REST));
+  const detrained = splat(num(head, P.DETRAINED));
   const w1 = splat(num(head, P.W1));
   const w0 = splat(num(head, P.W0));
   const wm1 = splat(num(head, P.WM1));
@@ -530,26 +531,14 @@ function thicknessRow(head: usize, c: usize, j: i32, out: usize, t: usize, varie
       const K = mul(quarter, add(add(mul(uW, uW), mul(uE, uE)), add(mul(vS, vS), mul(vN, vN))));
       const h = load<v128>(a, P.H);
       const entrained = load<v128>(r, P.N_ENTRAINED);
-      let next = add(mul(keep, h), mul(push, sub(add(source, entrained), O)));
+      let next = add(h, mul(push, sub(add(sub(mul(damping, sub(rest, h)), detrained), entrained), O)));
       let A = viscosity;
       if (varies) {
         if (sponge) {
-          const rate = add(splat(num(head, P.DAMPING)), load<v128>(sponge + p));
+          const rate = add(damping, load<v128>(sponge + p));
           const k = mul(splat(num(head, P.HALF_DT)), rate);
-          const one = splat(1);
-          next = div(
-            add(
-              mul(sub(one, k), h),
-              mul(
-                splat(num(head, P.DT)),
-                sub(
-                  add(sub(mul(rate, splat(num(head, P.REST))), splat(num(head, P.DETRAINED))), entrained),
-                  O,
-                ),
-              ),
-            ),
-            add(one, k),
-          );
+          const change = sub(add(sub(mul(rate, sub(rest, h)), detrained), entrained), O);
+          next = add(h, div(mul(splat(num(head, P.DT)), change), add(splat(1), k)));
         }
         if (map) A = load<v128>(map + p);
         p += 16;

@@ -4,7 +4,7 @@ import { reserveWorkspace, type Workspace } from '../kernel/workspace';
 import { rowFactors, type RowFactors } from './coefficients';
 import { copyHistory, fieldOf, fillSeam, type StateVariable } from './fields';
 import { Arena, layoutOf, WEST, type Layout } from './layout';
-import { refuseBadOptions, type EntrainmentOptions, type ModelOptions } from './model-options';
+import { refuseBadOptions, type EntrainmentOptions, type ModelOptions, type ViscosityMap } from './model-options';
 import { coastCorners, spansOf, type CoastCorners, type ModelSpans, type Spans } from './spans';
 import { fillStatics, reserveStatics, type Statics } from './statics';
 import { LINEAR_TERMS, NONLINEAR_TERMS, reserveSums, sumsAt, type StepSums, type SumsPlace } from './sums';
@@ -23,6 +23,8 @@ export interface Model {
   readonly rayleigh: number;
   /** A where no map takes its place. */
   readonly viscosity: number;
+  /** The largest A anywhere: what bounds the time step. */
+  readonly largestViscosity: number;
   readonly damping: number;
   readonly slip: 'free' | 'none';
   readonly forcing: Forcing;
@@ -83,6 +85,7 @@ export function createModel(options: ModelOptions): Model {
     density,
     rayleigh,
     viscosity,
+    largestViscosity: largestOf(options.viscosityMap) ?? viscosity,
     damping,
     slip,
     forcing,
@@ -104,6 +107,12 @@ export function createModel(options: ModelOptions): Model {
     memory: given?.memory ?? null,
     workspace: given ? workspace : null,
   };
+}
+
+function largestOf(map: ViscosityMap | null | undefined): number | null {
+  if (!map) return null;
+  const most = (values: Float64Array) => values.reduce((largest, A) => Math.max(largest, A), 0);
+  return Math.max(most(map.cell), most(map.corner));
 }
 
 /** Values of an initial state: numbers at (column, row) of the field's own points; left out means 0. */

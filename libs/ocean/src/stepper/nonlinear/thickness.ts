@@ -6,7 +6,8 @@ import { NONE } from '../statics';
 
 /**
  * Steps 3 and 4 of numerics.md §4 on the water cells of row j: h(n + 1) from the limited fluxes, κ, sponges and
- * entrainment, then the Bernoulli head g′p + K − A D. K = ¼ (u_W² + u_E² + v_S² + v_N²) is what the derivative of the
+ * entrainment, written as what is added to h (the same as (1 − κ dt/2) h + …, but its rounding is that of the change and
+ * adds up to nothing), then the Bernoulli head g′p + K − A D. K = ¼ (u_W² + u_E² + v_S² + v_N²) is what the derivative of the
  * kinetic energy ½ (A_u h_u u² + A_v h_v v²) by h gives with h_v = ½ (A_S h_S + A_N h_N)/A_v, on a sphere too.
  */
 export function thicknessRow(model: Model, j: number, detrained: number): void {
@@ -32,9 +33,7 @@ export function thicknessRow(model: Model, j: number, detrained: number): void {
   const north = rows.divNorth[j];
   const south = rows.divSouth[j];
   const half = 0.5 * dt;
-  const keep = (1 - half * damping) / (1 + half * damping);
   const push = dt / (1 + half * damping);
-  const source = damping * restThickness - detrained;
   const w1 = reducedGravity * P1;
   const w0 = reducedGravity * P0;
   const wm1 = reducedGravity * PM1;
@@ -48,11 +47,11 @@ export function thicknessRow(model: Model, j: number, detrained: number): void {
       const K = 0.25 * (uW * uW + uE * uE + (vS * vS + vN * vN));
       const h = data[h0 + c];
       let next: number;
-      if (sponge === NONE) next = keep * h + push * (source + data[entrained + c] - O);
+      if (sponge === NONE) next = h + push * (damping * (restThickness - h) - detrained + data[entrained + c] - O);
       else {
         const rate = damping + data[sponge + c];
         const k = half * rate;
-        next = ((1 - k) * h + dt * (rate * restThickness - detrained + data[entrained + c] - O)) / (1 + k);
+        next = h + (dt * (rate * (restThickness - h) - detrained + data[entrained + c] - O)) / (1 + k);
       }
       data[hN + c] = next;
       data[divergence + c] = D;
