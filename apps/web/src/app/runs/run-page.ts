@@ -20,6 +20,7 @@ import { DataState } from '../shared/data-state/data-state';
 import { PlotLink } from '../shared/plate/plot-link';
 import { ProblemMessage } from '../shared/problem-message/problem-message';
 import { BudgetPlates } from './budget-plates';
+import { TermBudgetPlates } from './term-budget-plates';
 import { Evidence } from './evidence/evidence';
 import { HovmollerPlate } from './hovmoller-plate';
 import { MapPlate } from './map-plate';
@@ -42,6 +43,7 @@ const PARTS = [
   selector: 'app-run-page',
   imports: [
     BudgetPlates,
+    TermBudgetPlates,
     DataState,
     Evidence,
     HovmollerPlate,
