@@ -3,12 +3,11 @@ import { gridLayout } from '../grid/build-grid';
 import { Integration } from '../integration/integration';
 import { PRESETS } from '../presets/presets';
 import { costOf } from './cost';
-import { LandRows } from './land-rows';
 import { changed, preset } from './testing';
 
 const cost = (setup: (typeof PRESETS)[number]['setup']) => {
   const layout = gridLayout(setup);
-  return costOf(setup, layout, LandRows.of(setup, layout), {});
+  return costOf(setup, layout, {});
 };
 
 it.each([0, 1e-7])('counts the very bytes that a run hands over, with interface damping %f', (dampingPerS) => {

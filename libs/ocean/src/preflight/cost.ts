@@ -1,7 +1,6 @@
 import type { Cost, PreflightContext } from '../preflight-types';
 import type { Setup } from '../setup';
 import type { GridLayout } from '../grid/build-grid';
-import type { LandRows } from './land-rows';
 
 /** Cell-steps a second of one core, assumed when the machine's own speed is not known. */
 export const ASSUMED_CELL_STEPS_PER_SECOND = 30e6;
@@ -21,9 +20,9 @@ const TERM_COLUMNS = 14;
 
 /**
  * Work and disk of a run. Disk: frames of η, u, v in float32 on their own points, the series in float64, and the last
- * two checkpoints of nine float64 arrays each.
+ * two checkpoints of nine float64 arrays each. Water cells are counted once, for the answer: a remedy that is tried needs none.
  */
-export function costOf(setup: Setup, layout: GridLayout, land: LandRows, context: PreflightContext): Cost {
+export function costOf(setup: Setup, layout: GridLayout, context: PreflightContext): Omit<Cost, 'wetCells'> {
   const { nx, ny } = layout;
   const { output } = setup;
   const cells = nx * ny;
@@ -40,7 +39,6 @@ export function costOf(setup: Setup, layout: GridLayout, land: LandRows, context
   const cellStepsPerSecond = context.cellStepsPerSecond ?? ASSUMED_CELL_STEPS_PER_SECOND;
   return {
     cells,
-    wetCells: land.wetCells(),
     steps,
     seconds: (cells * steps * workOf(setup)) / cellStepsPerSecond,
     diskBytes: Math.ceil(FILE_OVERHEAD * (frames * points * 4 + seriesValues * 8) + checkpoints),

@@ -14,7 +14,7 @@ export interface Case {
   /** The grid of the coast where that is not the run's own, and what it does to the run's. */
   coast: GridLayout | null;
   coastNotes: string[];
-  cost: Cost;
+  cost: Omit<Cost, 'wetCells'>;
   wind: WindEstimate;
   /** Largest |η|/H that the start brings with it; null where not known. */
   startThinning: number | null;

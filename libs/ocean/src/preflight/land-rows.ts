@@ -39,8 +39,9 @@ export class LandRows {
   /** Of a setup, with the grid of its coast. */
   static of(setup: Pick<Setup, 'basin' | 'numerics'>, layout: GridLayout): LandRows {
     const coast = coastLayout(setup);
-    // One beyond the hard limit is refused by a row of its own; until then the run's grid stands for it.
-    return new LandRows(setup.basin, layout, coast && coast.nx * coast.ny <= LIMITS.cells.max ? coast : null);
+    // Grids beyond the hard limit are refused by rows of their own; until then the run's grid stands for the coast's.
+    const built = (grid: GridLayout) => grid.nx * grid.ny <= LIMITS.cells.max;
+    return new LandRows(setup.basin, layout, coast && built(coast) && built(layout) ? coast : null);
   }
 
   /** `coast`: the grid on which coast and islands become land, where that is another. */
@@ -85,6 +86,14 @@ export class LandRows {
       this.#wet = every === 1 ? wet : Math.round((wet * ny) / rows);
     }
     return this.#wet;
+  }
+
+  /** True when any cell is water; looks only as far as the first row that has some. */
+  hasWater(): boolean {
+    const { nx, ny } = this.#layout;
+    if (!this.hasLand || (this.#wet ?? 0) > 0) return true;
+    for (let j = 0; j < ny; j++) if (this.#landOf(j).reduce((sum, [from, to]) => sum + to - from, 0) < nx) return true;
+    return false;
   }
 
   isWet(i: number, j: number): boolean {

@@ -66,7 +66,7 @@ export function preflight(setup: Setup, context: PreflightContext = {}): Preflig
     verdict: worst(checks),
     derived: derivedNumbers(given),
     checks: checks.sort((a, b) => RANK[a.verdict] - RANK[b.verdict] || b.ratio - a.ratio),
-    cost,
+    cost: { ...cost, wetCells: given.land.wetCells() },
     grid: { nx: layout.nx, ny: layout.ny, dxM: scales.dx, dyM: scales.dy, dtS: scales.dt },
     notes: [...layout.notes, ...given.coastNotes],
     proposedStepsPerDay: proposedSteps(scales.rates),
@@ -88,7 +88,7 @@ function caseOf(setup: Setup, context: PreflightContext, like?: Case): Case {
     land,
     coast,
     coastNotes: coast ? coastNotes(scales.layout, coast) : [],
-    cost: costOf(setup, scales.layout, land, context),
+    cost: costOf(setup, scales.layout, context),
     wind: scales.wind,
     startThinning: startThinning(setup),
   };

@@ -94,7 +94,8 @@ export function scalesOf(setup: Setup, known?: WindEstimate): Scales {
   const northExact = equatorRow === null ? northDeg : (layout.ny - equatorRow) * meridional.spacing;
   const at = (latitudeDeg: number): Place => {
     const dx = zonal.spacing * metresPerDegreeLatitude * shrink(latitudeDeg);
-    return { latitudeDeg, f: coriolis(latitudeDeg), beta: betaHere(latitudeDeg), dx, Lx: layout.nx * dx };
+    const [f, beta] = [coriolis(latitudeDeg), betaHere(latitudeDeg)].map(numberOrNone);
+    return { latitudeDeg, f, beta, dx, Lx: layout.nx * dx };
   };
   const [south, north] = [at(southDeg), at(northExact)];
   const nearest = at(Math.min(Math.max(0, southDeg), northExact));
@@ -111,7 +112,7 @@ export function scalesOf(setup: Setup, known?: WindEstimate): Scales {
   const scales: ScalesBeforeWind = {
     layout,
     c,
-    f0: plane.f0,
+    f0: numberOrNone(plane.f0),
     beta,
     fSouth: south.f,
     fNorth: north.f,
@@ -148,6 +149,11 @@ export function scalesOf(setup: Setup, known?: WindEstimate): Scales {
       froude: setup.numerics.equations === 'nonlinear' ? Math.max(wind().froude, startFroude(setup)) : 0,
     },
   };
+}
+
+/** A rotation so slow that quotients by it leave the range of numbers counts as none. */
+function numberOrNone(rotation: number): number {
+  return Math.abs(rotation) < 1e-60 ? 0 : rotation;
 }
 
 /** A start from an anomaly lets waves go whose speed over c is |η|/H. */

@@ -32,6 +32,16 @@ export interface WindEstimate {
  * estimated there but the stress that they leave.
  */
 export function windEstimate(setup: Setup, scales: ScalesBeforeWind): WindEstimate {
+  const { wind, basin, layer, constants, numerics } = setup;
+  const makings = JSON.stringify([wind, basin, layer, constants, numerics.spacingLongitudeDeg, numerics.spacingLatitudeDeg]); // prettier-ignore
+  if (last.makings !== makings) last = { makings, estimate: estimateOf(setup, scales) };
+  return last.estimate;
+}
+
+/** A remedy that is tried is looked at several times in a row. */
+let last: { makings: string; estimate: WindEstimate } = { makings: '', estimate: { thinning: null, stress: 0, froude: 0 } }; // prettier-ignore
+
+function estimateOf(setup: Setup, scales: ScalesBeforeWind): WindEstimate {
   const { trapping, layout, c } = scales;
   const { basin, constants } = setup;
   const profiles = setup.wind.components.map((component) => profileOf(component, setup, scales));

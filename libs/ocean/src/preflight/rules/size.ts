@@ -70,8 +70,8 @@ export const coastGridSize: Rule = ({ coast }) => {
 };
 
 /** Some water must be left; shown only where there is land. */
-export const water: Rule = ({ land, cost }) => {
-  if (!land.hasLand || cost.wetCells > 0) return null;
+export const water: Rule = ({ land }) => {
+  if (land.hasWater()) return null;
   return {
     id: 'water',
     label: 'Water cells',

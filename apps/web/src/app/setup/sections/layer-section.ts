@@ -52,7 +52,7 @@ export class LayerSection {
   private readonly draft = inject(SetupDraft);
   protected readonly switches: Choice[] = [
     { value: 'off', label: 'none' },
-    { value: 'on', label: 'where the layer is thin' },
+    { value: 'on', label: 'where thin' },
   ];
   protected readonly detrainments: Choice[] = [
     { value: 'none', label: 'nothing' },
