@@ -1,10 +1,16 @@
 // What leaves the product to be computed elsewhere: setups, bundles with their start state, last states.
-import { unlink } from 'node:fs/promises';
+import { spawn } from 'node:child_process';
+import { once } from 'node:events';
+import { mkdtemp, readdir, rm, unlink, writeFile } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
+import { dirname, join } from 'node:path';
+import { setTimeout as sleep } from 'node:timers/promises';
 import { type Experiment, type Problem, readBundle, type Run, setupSchema } from '@halfdeep/contracts';
 import { Integration } from '@halfdeep/ocean';
 import { runPaths, sha256Of } from '@halfdeep/store';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import {
+  bundled,
   bytesOf,
   endlessSetup,
   newExperiment,
@@ -53,6 +59,67 @@ describe('an exported setup', () => {
     direct.advance(direct.totalSteps - direct.step);
     expect(direct.fingerprint()).toEqual(child.fingerprint);
   });
+});
+
+describe('the headless command', () => {
+  let folder: string;
+  let main: string;
+  beforeAll(async () => {
+    folder = await mkdtemp(join(tmpdir(), 'halfdeep-integrate-'));
+    main = await bundled('worker/src/integrate/main.ts');
+  });
+  afterAll(async () => {
+    await rm(folder, { recursive: true });
+    await rm(dirname(main), { recursive: true });
+  });
+
+  /** Runs the command in its own process, without any of this server's settings. */
+  async function headless(...argv: string[]): Promise<{ code: number; last: Record<string, unknown>; told: string }> {
+    const child = spawn(process.execPath, [main, ...argv, '--json'], {
+      cwd: folder,
+      env: { PATH: process.env['PATH'] },
+    });
+    let [out, told] = ['', ''];
+    child.stdout.on('data', (data: Buffer) => (out += data.toString()));
+    child.stderr.on('data', (data: Buffer) => (told += data.toString()));
+    const [code] = (await once(child, 'close')) as [number];
+    return { code, last: JSON.parse(out.trimEnd().split('\n').at(-1) ?? '{}') as Record<string, unknown>, told };
+  }
+
+  it('comes to the fingerprint of the product from an exported setup, and from a bundle', async () => {
+    await writeFile(join(folder, 'setup.json'), await bytesOf(hand.get(`/api/runs/${parent.id}/setup`)));
+    await writeFile(join(folder, 'longer.halfdeep.zip'), await bytesOf(hand.get(`/api/runs/${child.id}/setup`)));
+    const first = await headless('setup.json', 'first.nc');
+    expect(first).toMatchObject({ code: 0, last: { fingerprint: parent.fingerprint } });
+    const longer = await headless('longer.halfdeep.zip', 'longer.nc');
+    expect(longer).toMatchObject({ code: 0, last: { fingerprint: child.fingerprint } });
+    expect((await readdir(folder)).sort()).toEqual(['first.nc', 'longer.halfdeep.zip', 'longer.nc', 'setup.json']);
+  }, 120_000);
+
+  it('refuses in the sentences of the API, at the same places', async () => {
+    const setup = smallSetup(3, ({ layer, numerics }) => {
+      layer.restThicknessM = 9000;
+      numerics.stepsPerDay = 5;
+    });
+    const label = 'x';
+    await writeFile(join(folder, 'wrong.json'), JSON.stringify({ label, setup }));
+    const answer = await hand.post(`/api/experiments/${experiment.id}/runs`, { label, setup }).expect(422);
+    const { code, last, told } = await headless('wrong.json', 'wrong.nc');
+    expect(code).toBe(2);
+    expect((last['refused'] as Problem).errors).toEqual((answer.body as Problem).errors);
+    for (const { pointer, detail } of (answer.body as Problem).errors!) expect(told).toContain(`${pointer}: ${detail}`);
+  }, 120_000);
+
+  it('stops on Ctrl-C with exit code 130 and leaves nothing half-written', async () => {
+    await writeFile(join(folder, 'endless.json'), JSON.stringify(endlessSetup()));
+    const child = spawn(process.execPath, [main, 'endless.json', 'endless.nc'], { cwd: folder });
+    // The file is begun under another name before the first step; on a busy machine it takes a while to get there.
+    while (child.exitCode === null && !(await readdir(folder)).some((name) => name.endsWith('.part'))) await sleep(50);
+    child.kill('SIGINT');
+    const [code] = (await once(child, 'close')) as [number];
+    expect(code).toBe(130);
+    expect((await readdir(folder)).filter((name) => /endless\.nc|part/.test(name))).toEqual([]);
+  }, 120_000);
 });
 
 describe('a last state', () => {

@@ -45,7 +45,7 @@ export interface RunApi {
 /** The whole API with the real queue and real workers on a database of its own; answers are held against their schemas. */
 export async function startRunApi(): Promise<RunApi> {
   const varFolder = await mkdtemp(join(tmpdir(), 'halfdeep-api-'));
-  const worker = await bundledWorker();
+  const worker = await bundled('tests/faults/slow-worker.ts'); // slow where `slowly` says so
   const settings = readSettings({ HALFDEEP_VAR: varFolder, HALFDEEP_DEMO: 'off', HALFDEEP_LOG: 'error' }, varFolder);
   const services = await composeServices(settings, {
     hasher: new PasswordHasher(4),
@@ -72,13 +72,13 @@ export async function startRunApi(): Promise<RunApi> {
   };
 }
 
-/** The worker as the build bundles it: it starts in a fraction of the time of its sources; slow where `slowly` says so. */
-async function bundledWorker(): Promise<string> {
+/** A programme as the build bundles it: it starts in a fraction of the time of its sources. Its folder is its own. */
+export async function bundled(entry: string): Promise<string> {
   const folder = join(root, 'var', `api-tests-${randomUUID()}`); // inside the workspace, so that packages are found
   await mkdir(folder, { recursive: true });
-  const outfile = join(folder, 'worker.mjs');
+  const outfile = join(folder, 'bundle.mjs');
   await build({
-    entryPoints: [join(root, 'tests/faults/slow-worker.ts')],
+    entryPoints: [join(root, entry)],
     outfile,
     bundle: true,
     platform: 'node',

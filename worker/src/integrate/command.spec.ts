@@ -159,6 +159,33 @@ describe('npm run integrate', () => {
     file.close();
   });
 
+  it('comes to the same bits by every kernel and any number of threads', async () => {
+    await write('setup.json', smallSetup(6));
+    const prints: unknown[] = [];
+    for (const how of [
+      ['--kernel', 'reference'],
+      ['--kernel', 'simd'],
+      ['--threads', '2'],
+    ]) {
+      expect(await integrate('setup.json', 'out.nc', '--json', ...how)).toBe(EXIT.done);
+      prints.push(lastLine()['fingerprint']);
+    }
+    expect(prints[1]).toEqual(prints[0]);
+    expect(prints[2]).toEqual(prints[0]);
+  });
+
+  it('writes the budgets of every term where the setup asks for them', async () => {
+    const setup = smallSetup(3, ({ output }) => Object.assign(output, { momentumBudget: true, vorticityBudget: true }));
+    await write('setup.json', setup);
+    expect(await integrate('setup.json', 'out.nc')).toBe(EXIT.done);
+    const file = await openCf(join(folder, 'out.nc'));
+    const budgets = [...file.variables.keys()].filter((name) => name.startsWith('budget_') && !/time/.test(name));
+    expect(budgets).toHaveLength(Integration.start(setup).budgetColumns().length);
+    expect(budgets.length).toBeGreaterThan(Integration.start(smallSetup(3)).budgetColumns().length);
+    expect(cfViolations(file)).toEqual([]);
+    file.close();
+  });
+
   it('works without sections and moorings', async () => {
     await write(
       'setup.json',

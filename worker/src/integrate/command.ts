@@ -1,6 +1,7 @@
 import { open, readFile, rename, rm, stat, statfs } from 'node:fs/promises';
 import { basename, dirname, join, resolve } from 'node:path';
-import { Integration, type Setup } from '@halfdeep/ocean';
+import { Integration, type Setup, type StepperOptions } from '@halfdeep/ocean';
+import { WorkerThreadTeam } from '../team/thread-team';
 import { type IntegrateArguments, readArguments, USAGE } from './arguments';
 import { integrate, type IntegrationOutcome, type IntegrationSummary } from './integrate';
 import { duration, ProgressLine, type ProgressTarget } from './progress-line';
@@ -45,7 +46,8 @@ async function run(given: IntegrateArguments, io: CommandIo): Promise<number> {
   const bytes = await readSetupFile(resolve(io.cwd, given.setupFile), given.setupFile);
   const input = readSetup(bytes, { freeDiskBytes });
   for (const caution of input.cautions) io.stderr.write(`Caution: ${caution}\n`);
-  const integration = begin(input);
+  const { kernel, threads } = given;
+  const integration = begin(input, { kernel, ...(threads > 1 && { team: new WorkerThreadTeam(threads) }) });
   const temporary = join(dirname(outputFile), `.${basename(outputFile)}.${process.pid}.part`);
   let outcome: IntegrationOutcome;
   try {
@@ -53,8 +55,8 @@ async function run(given: IntegrateArguments, io: CommandIo): Promise<number> {
     try {
       outcome = await integrate({
         run: integration,
-        anew: () => begin(input),
-        restore: (checkpoint) => Integration.restore(input.setup, checkpoint),
+        anew: () => begin(input, { kernel }),
+        restore: (checkpoint) => Integration.restore(input.setup, checkpoint, { kernel }),
         file,
         progress: new ProgressLine(io.stderr),
         stopped: () => io.stop.aborted,
@@ -70,9 +72,9 @@ async function run(given: IntegrateArguments, io: CommandIo): Promise<number> {
 }
 
 /** The run at its first step. What the core refuses beyond schema and preflight is bad input too. */
-function begin({ setup, state }: SetupInput): Integration {
+function begin({ setup, state }: SetupInput, options: StepperOptions): Integration {
   try {
-    return Integration.start(setup, state ?? undefined);
+    return Integration.start(setup, state ?? undefined, options);
   } catch (error) {
     if (!(error instanceof RangeError)) throw error;
     throw new Refusal(error.message, [{ pointer: pointerOf(setup), detail: error.message }]);

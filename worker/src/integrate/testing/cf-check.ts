@@ -53,7 +53,7 @@ const HDF5_OWN = new Set(['CLASS', 'NAME', 'DIMENSION_LIST', 'REFERENCE_LIST', '
 
 // What UDUNITS reads: an optional factor, then unit names with whole exponents. The names are those that a run can need.
 const BASE =
-  '(?:degrees?(?:_east|_north)?|1|s|m|km|kg|K|N|J|kJ|MJ|GJ|TJ|PJ|EJ|W|kW|MW|GW|TW|PW|Pa|days?|seconds?|hours?|percent)';
+  '(?:degrees?(?:_east|_north)?|1|s|m|km|kg|K|N|kN|MN|GN|TN|J|kJ|MJ|GJ|TJ|PJ|EJ|W|kW|MW|GW|TW|PW|Pa|days?|seconds?|hours?|percent)';
 const UNITS = new RegExp(`^(?:\\d+(?:\\.\\d+)?(?:e\\d+)? )?${BASE}(?:-?\\d+)?(?: ${BASE}(?:-?\\d+)?)*$`);
 const SINCE = /^(?:days|hours|minutes|seconds) since \d{4}-\d{2}-\d{2}(?: \d{2}:\d{2}:\d{2})?$/;
 const CALENDARS = ['standard', 'proleptic_gregorian', 'julian', 'noleap', '365_day', 'all_leap', '366_day', '360_day'];
