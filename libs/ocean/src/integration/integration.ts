@@ -224,6 +224,11 @@ export class Integration {
     this.#cautious = true;
   }
 
+  /** Lets the helper threads of its stepper go, if it has any; what is stepped afterwards, the caller steps alone. */
+  dismissThreads(): void {
+    this.#stepper.dismiss();
+  }
+
   /** Times at which a nonlinear run came near the limit of its step, S(1 + 2Fr) > 0.8: the first twenty. */
   cautions(): Caution[] {
     return this.#cautions.map((caution) => ({ ...caution }));

@@ -69,6 +69,12 @@ describe('a nonlinear run', () => {
     arrays['h'].forEach((h, k) => expect(h).toBe(run.grid.mask[k] ? run.fields().eta[k] + 60 : 0));
   });
 
+  it('keeps its bits: a change that alters them raises CORE_VERSION with this value', () => {
+    // Computed by this core; it guards against a change of bits by accident.
+    const { coreVersion, sha256 } = spunUp(setup, 240).fingerprint();
+    expect([coreVersion, sha256]).toEqual(['2', 'b205e97897a8dd4e4608d596def8f4df3b8557a2f876023547e1bcbec92c2ed6']);
+  });
+
   it('goes on from a checkpoint to the same bits and records, however it is cut', () => {
     const whole = spunUp(setup, 140);
     const first = spunUp(setup, 53);
