@@ -1,6 +1,6 @@
 import { addTo, SUM_SLOTS, sumAt } from '../exact/running-sum';
 import type { Column } from '../integration-types';
-import { valueAt } from '../stepper/fields';
+import { fieldOf, valueAt } from '../stepper/fields';
 import { forRuns, type Model } from '../stepper/model';
 import { WEST } from '../stepper/layout';
 import { NONE } from '../stepper/statics';
@@ -20,10 +20,13 @@ export class MomentumBudget {
   readonly #model: Model;
   readonly #sums: TermSums<ZonalForce>;
   readonly #row: RowTerms;
+  /** Mean thickness of the step in the cells −1 … nx − 1 of a row. */
+  readonly #thickness: Float64Array;
 
   constructor(model: Model) {
     this.#model = model;
     this.#row = createRowTerms(model.grid.nx);
+    this.#thickness = new Float64Array(model.grid.nx + 1);
     this.#sums = new TermSums(
       { prefix: 'momentum', what: 'zonal momentum', unit: 'GN', perUnit: NEWTONS_PER_GN, dt: model.dt },
       forcesOf(model),
@@ -57,10 +60,14 @@ export class MomentumBudget {
   #linearRow(j: number): Forces {
     const sums: Forces = { ...NO_FORCE };
     const { restThickness, spans } = this.#model;
-    forRuns(spans.uPoints, j, (first, end) => {
-      for (let i = first; i < end; i++)
-        for (const force of DIRECT_FORCES) sums[force] += restThickness * this.#row[force][i];
-    });
+    for (const force of DIRECT_FORCES) {
+      const values = this.#row[force];
+      let sum = 0;
+      forRuns(spans.uPoints, j, (first, end) => {
+        for (let i = first; i < end; i++) sum += values[i];
+      });
+      sums[force] = restThickness * sum;
+    }
     return sums;
   }
 
@@ -71,23 +78,37 @@ export class MomentumBudget {
   #nonlinearRow(fields: NonlinearFields, j: number): Forces {
     const sums: Forces = { ...NO_FORCE };
     const row = this.#row;
-    const { spans } = this.#model;
-    const mean = (variable: 'h' | 'u', i: number) =>
-      0.5 * (valueAt(this.#model, variable, i, j) + valueAt(this.#model, variable, i, j, 'previous'));
+    const { spans, data } = this.#model;
+    const [h1, h0, u1, u0] = (['h', 'u'] as const).flatMap((variable) =>
+      (['now', 'previous'] as const).map((role) => {
+        const { offset, rowStride } = fieldOf(this.#model, variable, role);
+        return offset + j * rowStride;
+      }),
+    );
+    const thickness = this.#thickness;
+    for (let i = -1; i < this.#model.grid.nx; i++) thickness[i + 1] = 0.5 * (data[h1 + i] + data[h0 + i]);
+    for (const force of DIRECT_FORCES) {
+      const values = row[force];
+      let sum = 0;
+      forRuns(spans.uPoints, j, (first, end) => {
+        for (let i = first; i < end; i++) sum += 0.5 * (thickness[i] + thickness[i + 1]) * values[i];
+      });
+      sums[force] = sum;
+    }
+    let [advection, damping, entrainment] = [0, 0, 0];
     forRuns(spans.uPoints, j, (first, end) => {
       for (let i = first; i < end; i++) {
-        const h = 0.5 * (mean('h', i - 1) + mean('h', i));
-        const u = mean('u', i);
-        for (const force of DIRECT_FORCES) sums[force] += h * row[force][i];
-        const outflow = 0.5 * (fields.outflow(this.#cell(i - 1), j) + fields.outflow(i, j));
-        sums.advection += h * (row.vorticity[i] + row.kinetic[i]) - u * outflow;
-        sums.damping -=
-          u * 0.5 * (this.#damped(mean('h', i - 1), this.#cell(i - 1), j) + this.#damped(mean('h', i), i, j));
+        const west = this.#cell(i - 1);
+        const h = 0.5 * (thickness[i] + thickness[i + 1]);
+        const u = 0.5 * (data[u1 + i] + data[u0 + i]);
+        const outflow = 0.5 * (fields.outflow(west, j) + fields.outflow(i, j));
+        advection += h * (row.vorticity[i] + row.kinetic[i]) - u * outflow;
+        damping -= u * 0.5 * (this.#damped(thickness[i], west, j) + this.#damped(thickness[i + 1], i, j));
         const entrained = 0.5 * (fields.entrainedAt(i - 1, j) + fields.entrainedAt(i, j)) - fields.detrained;
-        sums.entrainment += h * row.entrainment[i] + u * entrained;
+        entrainment += h * row.entrainment[i] + u * entrained;
       }
     });
-    return sums;
+    return { ...sums, advection, damping, entrainment };
   }
 
   /** The cell at column i, or that on the other side of the seam. */

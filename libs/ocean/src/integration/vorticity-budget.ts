@@ -63,20 +63,22 @@ export class VorticityBudget {
     const row = this.#row;
     const total: Record<Torque, number> = { ...NO_TORQUE };
     const addRow = (weights: Float64Array, points: Model['spans']['uPoints'], j: number) => {
-      const sums: Record<Torque, number> = { ...NO_TORQUE };
-      forRuns(points, j, (first, end) => {
-        for (let i = first; i < end; i++) {
-          const weight = weights[i];
-          if (weight === 0) continue;
-          for (const torque of TORQUES) sums[torque] += weight * row[torque][i];
-        }
-      });
-      for (const torque of TORQUES) total[torque] += sums[torque];
+      for (const torque of TORQUES) {
+        const values = row[torque];
+        let sum = 0;
+        forRuns(points, j, (first, end) => {
+          for (let i = first; i < end; i++) sum += weights[i] * values[i];
+        });
+        total[torque] += sum;
+      }
     };
     for (let j = 0; j <= grid.ny; j++) {
-      meridionalTerms(last, j, row);
-      addRow(this.#weightV[j], spans.vPoints, j);
-      if (j === grid.ny) break;
+      // Away from the coasts neighbouring corners take away from each other all that a velocity gives.
+      if (this.#weightV[j].some((weight) => weight !== 0)) {
+        meridionalTerms(last, j, row);
+        addRow(this.#weightV[j], spans.vPoints, j);
+      }
+      if (j === grid.ny || this.#weightU[j].every((weight) => weight === 0)) continue;
       zonalTerms(last, j, row);
       addRow(this.#weightU[j], spans.uPoints, j);
     }
