@@ -58,7 +58,10 @@ try {
   const modes: Partial<Record<Equations, StepperRow[]>> = {};
   for (const equations of ['linear', 'nonlinear'] as const) {
     const rows: StepperRow[] = (modes[equations] = []);
-    for (const grid of GRIDS) rows.push(await benchGrid(equations, grid, programs, bandwidth));
+    for (const grid of GRIDS) {
+      process.stderr.write(`Measuring the ${equations} steppers on ${grid.join(' × ')} cells …\n`);
+      rows.push(await benchGrid(equations, grid, programs, bandwidth));
+    }
     printMode(equations, rows);
   }
   print('\nAll steppers left the same bits as the reference on every grid before they were timed.');
