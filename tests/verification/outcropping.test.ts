@@ -2,12 +2,18 @@ import { describe, expect, it } from 'vitest';
 import {
   etaAt,
   forcingFromFunctions,
+  Integration,
+  IntegrationFailure,
   planeGrid,
+  preflight,
   setState,
   valueAt,
   type Model,
   type ModelOptions,
+  type Setup,
+  type WindComponent,
 } from '@halfdeep/ocean';
+import { smallSetup } from '../../libs/ocean/src/testing/setups';
 import { advance, DAY, nonlinearModel, rho0 } from './common';
 import { profilePlate } from './plates';
 import { proveCase } from './record';
@@ -19,6 +25,7 @@ const DX = 4e4;
 const N = SIDE / DX;
 const REST = 200;
 const YEARS = 3;
+const NEVER = { amplitude: 0, peakDay: 0 };
 
 interface Outcome {
   /** Day on which the state was first found not finite, or null. */
@@ -141,6 +148,81 @@ describe('a layer that outcrops', () => {
       obtained: thinnest,
       kind: 'atLeast',
       resolution: 'dx = 40 km, hmin = 20 m',
+    });
+  });
+});
+
+/** Much the same basin and wind as a setup: three belts in place of the cosine. */
+function gyreSetup(change: Partial<Setup['layer']>, stressFloorM: number): Setup {
+  const base = smallSetup();
+  const steady = { mean: 1, switchOnDays: 0, annual: NEVER, semiannual: NEVER };
+  const belt = (name: string, amplitudeNM2: number, latitudeDeg: number): WindComponent => ({
+    name,
+    pattern: { kind: 'zonalBelt', direction: 'eastward', amplitudeNM2, latitudeDeg, widthDeg: 3.5 },
+    season: steady,
+  });
+  return {
+    ...base,
+    basin: {
+      ...base.basin,
+      geometry: 'midlatitude',
+      referenceLatitudeDeg: 30,
+      eastDeg: 20,
+      southDeg: 21,
+      northDeg: 39,
+      islands: [],
+    },
+    layer: { ...base.layer, minimumThicknessM: 5, entrainment: null, ...change },
+    wind: {
+      components: [belt('south', -0.1, 21), belt('middle', 0.1, 30), belt('north', -0.1, 39)],
+      seasonalStrength: 1,
+      stressFloorM,
+    },
+    friction: { ...base.friction, rayleighPerS: 0, viscosityM2S: 1000 },
+    numerics: { equations: 'nonlinear', spacingLongitudeDeg: 0.4, spacingLatitudeDeg: 0.36, stepsPerDay: 24 },
+    length: { days: YEARS * 365 },
+    output: { ...base.output, sections: [], moorings: [] },
+  };
+}
+
+describe('a setup whose layer would outcrop', () => {
+  const unprotected = gyreSetup({}, 0);
+
+  it('is refused by preflight, by name, and not when entrainment protects it', (context) => {
+    const thinning = (setup: Setup) => preflight(setup).checks.find(({ id }) => id === 'thinning');
+    expect(thinning(unprotected)?.verdict).toBe('refuse');
+    const entrains = { onsetThicknessM: 60, timescaleDays: 10, detrainment: 'none' } as const;
+    const refusals = [unprotected, gyreSetup({ minimumThicknessM: 20, entrainment: entrains }, 0)].map((setup) =>
+      thinning(setup)?.verdict === 'refuse' ? 1 : 0,
+    );
+    proveCase(context, 'r2', {
+      id: 'refused',
+      quantity: 'refusals of preflight for thinning, unprotected less protected by entrainment',
+      expected: 1,
+      obtained: refusals[0] - refusals[1],
+      kind: 'absolute',
+      tolerance: 0,
+      resolution: 'setup of the same basin',
+    });
+  });
+  it('is stopped with a reason when it is run all the same', (context) => {
+    const run = Integration.start(unprotected);
+    let failure: IntegrationFailure | null = null;
+    try {
+      run.advance(run.totalSteps);
+    } catch (error) {
+      if (!(error instanceof IntegrationFailure)) throw error;
+      failure = error;
+    }
+    expect(failure).not.toBeNull();
+    expect(failure!.message).toMatch(/thins it.*entrainment/);
+    proveCase(context, 'r2', {
+      id: 'stopped',
+      quantity: 'day on which the unprotected setup is stopped with a reason, at most',
+      expected: YEARS * 365,
+      obtained: failure?.report.day ?? Infinity,
+      kind: 'atMost',
+      resolution: '0.4° × 0.36°, hmin = 5 m',
     });
   });
 });

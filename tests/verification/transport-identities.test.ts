@@ -1,7 +1,12 @@
 import { describe, it } from 'vitest';
 import { forcingFromFunctions, planeGrid, setState, type Model, type ModelOptions } from '@halfdeep/ocean';
 import { LastStep } from '../../libs/ocean/src/terms/last-step';
-import { BALANCE_TERMS, equatorValidBalance, latitudeBalance } from '../../libs/ocean/src/transport/latitude-balance';
+import {
+  BALANCE_TERMS,
+  type BalanceTerms,
+  equatorValidBalance,
+  latitudeBalance,
+} from '../../libs/ocean/src/transport/latitude-balance';
 import { meridianBalance } from '../../libs/ocean/src/transport/meridian-balance';
 import { advance, beta, commonModel, commonStep, DAY } from './common';
 import { profilePlate } from './plates';
@@ -53,7 +58,7 @@ describe.each([
   last.update();
 
   /** |left − Σ parts| over the largest of them, the largest of many lines. */
-  const worst = (lines: readonly { left: number; residual: number; terms: Record<string, number> }[]) =>
+  const worst = (lines: readonly { left: number; residual: number; terms: BalanceTerms }[]) =>
     lines.reduce((most, { left, residual, terms }) => {
       const size = Math.max(Math.abs(left), ...BALANCE_TERMS.map((term) => Math.abs(terms[term])));
       return Math.max(most, Math.abs(residual) / size);
