@@ -4,7 +4,8 @@ import { ConvergenceRun, Run as RunRow } from '@halfdeep/store';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { newExperiment, newRun, reach, smallSetup, startRunApi, until, type Hand, type RunApi } from './run-harness';
 
-describe('the same setup at half and at twice the resolution', () => {
+// Many workers are started one after the other; on a busy machine each takes seconds to begin.
+describe('the same setup at half and at twice the resolution', { timeout: 180_000 }, () => {
   let api: RunApi;
   let hand: Hand;
   let reader: Hand;
