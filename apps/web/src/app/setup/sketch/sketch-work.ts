@@ -22,6 +22,8 @@ export type SketchReport =
 
 /** Work between two looks at what the form wants, ms. */
 const SLICE_MS = 50;
+/** Between two reports of rows, ms: a picture needs a moment to be drawn before the next one. */
+const REPORT_MS = 400;
 
 /** Plans a sketch, integrates it slice by slice and reports rows of the line that is asked for. */
 export class SketchWork {
@@ -30,6 +32,8 @@ export class SketchWork {
   private sent = 0;
   private seconds = 0;
   private going = false;
+  /** When rows were reported last, ms of the page's clock. */
+  private reported = -Infinity;
 
   /** `later` calls back once other messages had their turn. */
   constructor(
@@ -82,8 +86,9 @@ export class SketchWork {
       this.report({ kind: 'failed', reason: error.message });
       return;
     }
-    this.seconds += (performance.now() - began) / 1000;
-    this.sendRows();
+    const now = performance.now();
+    this.seconds += (now - began) / 1000;
+    if (run.ended || now - this.reported >= REPORT_MS) this.sendRows();
     if (run.ended) {
       this.going = false;
       this.report({ kind: 'ended', fingerprint: run.fingerprint() });
@@ -94,6 +99,7 @@ export class SketchWork {
     const { run, line } = this;
     if (!run || !line) return;
     const { step, totalSteps, day } = run;
+    this.reported = performance.now();
     const rows = run.rowsOf(line, this.sent);
     this.sent = run.rows;
     this.report({ kind: 'rows', line, rows, progress: { step, totalSteps, day, seconds: this.seconds } });
