@@ -1,6 +1,6 @@
 import { stat } from 'node:fs/promises';
 import { setImmediate as breathe } from 'node:timers/promises';
-import { Integration, IntegrationFailure } from '@halfdeep/ocean';
+import { Integration, IntegrationFailure, type StepperOptions } from '@halfdeep/ocean';
 import { type Progress } from '@halfdeep/contracts';
 import type { WorkerJob, WorkerMessage, WorkerOutcome } from '@halfdeep/queue';
 import {
@@ -18,6 +18,7 @@ import { describeFailure, replayFailure } from './replay';
 import { RunLock } from './run-lock';
 import { metaOf } from './run-meta';
 import { Speedometer } from './speedometer';
+import { WorkerThreadTeam } from './team/thread-team';
 
 /** Orders are looked at, and the event loop turns, about this often. */
 const SLICE_MS = 25;
@@ -37,6 +38,7 @@ export interface RunJobOptions {
  */
 export class RunJob {
   private readonly paths: RunPaths;
+  private readonly stepping: StepperOptions;
   private saveOrdered = false;
   private integration!: Integration;
   private writer!: RunFileWriter;
@@ -55,6 +57,7 @@ export class RunJob {
     private readonly options: RunJobOptions = {},
   ) {
     this.paths = runPaths(job.varDir, job.runId);
+    this.stepping = job.threads > 1 ? { team: new WorkerThreadTeam(job.threads) } : {};
   }
 
   /** Save and end, as soon as the step that is being computed is complete. */
@@ -75,6 +78,7 @@ export class RunJob {
       throw error;
     } finally {
       await this.writing;
+      this.integration?.dismissThreads();
       await this.writer?.close();
       await lock.release();
     }
@@ -115,7 +119,7 @@ export class RunJob {
     for (const entry of await this.writer.checkpoints()) {
       try {
         const bytes = await readVerified(entry.path, entry.sha256, `checkpoint of step ${entry.step}`);
-        return Integration.restore(this.job.setup, bytes);
+        return Integration.restore(this.job.setup, bytes, this.stepping);
       } catch (error) {
         if (!(error instanceof StateFileError || error instanceof RangeError)) throw error;
         process.stderr.write(`Run ${this.job.runId}: checkpoint of step ${entry.step} passed over: ${error.message}\n`);
@@ -126,9 +130,10 @@ export class RunJob {
 
   private async startAnew(): Promise<Integration> {
     const { setup } = this.job;
-    if (setup.start.kind !== 'state') return Integration.start(setup);
+    if (setup.start.kind !== 'state') return Integration.start(setup, undefined, this.stepping);
     const { stateSha256 } = setup.start;
-    return Integration.start(setup, await readVerified(this.paths.start, stateSha256, 'start state of this run'));
+    const state = await readVerified(this.paths.start, stateSha256, 'start state of this run');
+    return Integration.start(setup, state, this.stepping);
   }
 
   /** Steps for about `SLICE_MS`, delivers what falls due, and lets orders, commits and checkpoints have their turn. */

@@ -1,5 +1,6 @@
 export * from './setup';
 export * from './limits';
+export { withLaterFields } from './later-fields';
 export type * from './preflight-types';
 export type * from './integration-types';
 export { buildGrid, planeOf } from './grid/build-grid';
@@ -25,6 +26,7 @@ export {
   type StepperOptions,
 } from './stepper/stepper';
 export { sharedModule } from './kernel/shared-module';
+export { shareSteps } from './kernel/share-steps';
 export type { ThreadTeam } from './kernel/thread-team';
 export type { StepRecorder, StepSums } from './stepper/sums';
 export type { EntrainmentOptions, ModelOptions, SpongeRates, ViscosityMap } from './stepper/model-options';

@@ -1,5 +1,5 @@
 import { Worker } from 'node:worker_threads';
-import { sharedModule, type ThreadTeam } from '@halfdeep/ocean';
+import { sharedModule, shareSteps, type ThreadTeam } from '@halfdeep/ocean';
 
 /**
  * What a helper thread does: it lends the compiled stepper its processor until the team is dismissed. Kept as text,
@@ -9,7 +9,8 @@ import { sharedModule, type ThreadTeam } from '@halfdeep/ocean';
 const HELPER = `
   const { workerData } = require('node:worker_threads');
   const { module, memory, header, thread } = workerData;
-  new WebAssembly.Instance(module, { env: { memory } }).exports.serve(header, thread);
+  const kernel = new WebAssembly.Instance(module, { env: { memory } }).exports;
+  (${shareSteps.toString()})(kernel, new Int32Array(memory.buffer), header, thread, true);
 `;
 
 /** Threads of this process that step one model together. They end when the stepper dismisses them, or with the process. */
@@ -26,7 +27,12 @@ export class WorkerThreadTeam implements ThreadTeam {
 
   enlist(job: { module: WebAssembly.Module; memory: WebAssembly.Memory; header: number }): void {
     for (let thread = 1; thread < this.threads; thread++) {
-      const helper = new Worker(HELPER, { eval: true, workerData: { ...job, thread } });
+      const helper = new Worker(HELPER, {
+        eval: true,
+        workerData: { ...job, thread },
+        // What the process itself was started with (a compiler of TypeScript, say) is of no use here.
+        execArgv: [],
+      });
       // A helper that fails leaves the others waiting for it: the process must not go on.
       helper.on('error', (error) => {
         throw new Error(`Helper thread ${thread} of the stepper failed.`, { cause: error });

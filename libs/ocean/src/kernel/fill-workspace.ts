@@ -41,9 +41,8 @@ const HEADER = {
   nonlinear: 136,
   entrains: 140,
   limits: 144,
+  dismissed: 148,
 } as const;
-export const READY = 704;
-export const COMMAND = 640;
 
 const CONSTANTS = 256;
 const SOURCES = 472;

@@ -113,12 +113,6 @@ export const E2: f64 = 0.281105;
 export const BLOCK: usize = 124;
 export const THREADS: usize = 128;
 export const BANDS: usize = 132;
-// Each on a cache line of its own: threads meet here.
-export const GENERATION: usize = 512;
-export const ARRIVED: usize = 576;
-export const COMMAND: usize = 640;
-export const READY: usize = 704;
-
 // Planes of the nonlinear ring.
 export const N_UT: usize = 0;
 export const N_VT: usize = PLANE;

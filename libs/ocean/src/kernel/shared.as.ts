@@ -1,3 +1,3 @@
 // Entry of the module for memory that threads share.
 export { advance } from './sweep.as';
-export { band, call, serve } from './threads.as';
+export { bandCells, bandStep } from './threads.as';

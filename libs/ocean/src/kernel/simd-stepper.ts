@@ -3,22 +3,23 @@ import type { Model } from '../stepper/model';
 import { uniformDetrainment } from '../stepper/nonlinear/half-level';
 import type { Stepper } from '../stepper/stepper';
 import { sumsAt, type StepRecorder, type StepSums } from '../stepper/sums';
-import { COMMAND, KernelHeader, READY } from './fill-workspace';
+import { KernelHeader } from './fill-workspace';
 import { privateModule } from './modules';
+import { awaitHelpers, callHelpers, shareSteps, type BandKernel } from './share-steps';
 import type { ThreadTeam } from './thread-team';
 import { STEPS_A_CALL, STEPS_IN_FLIGHT, type Workspace } from './workspace';
 
-interface KernelExports {
+interface KernelExports extends BandKernel {
   advance(header: number): void;
-  band(header: number, thread: number): void;
-  call(header: number): void;
 }
 
 /** Levels larger than this, bytes, do not stay in the caches: several steps are then made in one sweep. */
 const CACHED_BYTES = 6e6;
 /** Below so many water cells a step is shorter than two threads take to meet. */
 const LEAST_CELLS_A_THREAD = 1500;
-const HELPERS_START_MS = 20_000;
+/** Each makes up to four rows of its neighbours too. */
+const LEAST_ROWS_A_THREAD = 8;
+const HELPERS_START_MS = 60_000;
 
 /** The compiled stepper of a model in kernel memory; null where none suits the model or this machine. */
 export function simdStepper(model: Model, team?: ThreadTeam): Stepper | null {
@@ -34,18 +35,20 @@ export function simdStepper(model: Model, team?: ThreadTeam): Stepper | null {
 
 class SimdStepper implements Stepper {
   readonly kernel = 'simd';
-  readonly threads: number;
+  threads: number;
   private readonly header: KernelHeader;
   private readonly block: number;
   private readonly sums: StepSums[];
+  private readonly ints: Int32Array;
+  private enlisted = false;
 
   constructor(
     private readonly model: Model,
     private readonly workspace: Workspace,
-    memory: WebAssembly.Memory,
-    module: WebAssembly.Module,
-    private readonly kernel_: KernelExports,
-    team: ThreadTeam | undefined,
+    private readonly memory: WebAssembly.Memory,
+    private readonly module: WebAssembly.Module,
+    private readonly exports: KernelExports,
+    private readonly team: ThreadTeam | undefined,
   ) {
     const { layout, data, sumsPlace, grid } = model;
     this.header = new KernelHeader(model, workspace);
@@ -54,11 +57,13 @@ class SimdStepper implements Stepper {
     this.sums = Array.from({ length: workspace.sumSteps }, (_, k) =>
       sumsAt(data, { ...sumsPlace, offset: workspace.sums + k * workspace.sumStride }, grid.ny),
     );
-    this.threads = this.enlist(memory, module, team);
+    this.ints = new Int32Array(memory.buffer);
+    this.threads = this.affordable();
   }
 
   advance(steps: number, recorder?: StepRecorder): void {
-    const { model, workspace, header, kernel_ } = this;
+    const { model, workspace, header, exports } = this;
+    if (this.threads > 1 && !this.enlisted) this.enlist();
     const { forcing, data } = model;
     const bases = forcing.bases.length;
     // What is given back is a mean over the basin, to be known before a step begins: one step a call.
@@ -73,9 +78,9 @@ class SimdStepper implements Stepper {
       header.ask(some, recorder !== undefined, this.block);
       if (detrains) header.detrain(uniformDetrainment(model));
       if (this.threads > 1) {
-        kernel_.call(header.address);
-        kernel_.band(header.address, 0);
-      } else kernel_.advance(header.address);
+        callHelpers(this.ints, header.address);
+        shareSteps(exports, this.ints, header.address, 0, false);
+      } else exports.advance(header.address);
       model.phase = (model.phase + some) & 3;
       model.step += some;
       left -= some;
@@ -83,34 +88,32 @@ class SimdStepper implements Stepper {
     }
   }
 
-  /** Splits the rows over the threads of a team and starts its helpers; answers how many step. */
-  private enlist(memory: WebAssembly.Memory, module: WebAssembly.Module, team: ThreadTeam | undefined): number {
-    const { model, workspace, header } = this;
-    const cells = waterOfRows(model);
-    const water = cells.reduce((sum, count) => sum + count, 0);
-    const affordable = Math.min(Math.floor(water / LEAST_CELLS_A_THREAD), Math.floor(model.grid.ny / 2));
-    if (!team || team.threads < 2 || affordable < team.threads || memory.buffer instanceof ArrayBuffer) return 1;
-    const ints = new Int32Array(memory.buffer);
-    ints.set(bandsOf(cells, team.threads), (model.data.byteOffset + 8 * workspace.bands) / 4);
-    header.set('threads', team.threads);
-    team.enlist({ module, memory, header: header.address });
-    const ready = (header.address + READY) / 4;
-    const until = performance.now() + HELPERS_START_MS;
-    for (let there = 0; there < team.threads - 1; there = Atomics.load(ints, ready)) {
-      const wait = until - performance.now();
-      if (wait <= 0) throw new Error(`${team.threads - 1 - there} helper threads did not start within 20 s.`);
-      Atomics.wait(ints, ready, there, wait);
-    }
-    return team.threads;
+  /** Threads of the team that have enough to do; all of them or none beside the caller. */
+  private affordable(): number {
+    const { model, team, memory } = this;
+    if (!team || team.threads < 2 || memory.buffer instanceof ArrayBuffer) return 1;
+    const water = waterOfRows(model).reduce((sum, count) => sum + count, 0);
+    const most = Math.min(Math.floor(water / LEAST_CELLS_A_THREAD), Math.floor(model.grid.ny / LEAST_ROWS_A_THREAD));
+    return most < team.threads ? 1 : team.threads;
   }
 
-  /** Lets the helpers go; the stepper steps no more. */
+  /** Splits the rows over the threads and starts the helpers: not before the first step, for many a run takes none. */
+  private enlist(): void {
+    const { model, workspace, header, threads, memory, module, team, ints } = this;
+    ints.set(bandsOf(waterOfRows(model), threads), (model.data.byteOffset + 8 * workspace.bands) / 4);
+    header.set('threads', threads);
+    team?.enlist({ module, memory, header: header.address });
+    this.enlisted = true;
+    if (!awaitHelpers(ints, header.address, threads - 1, HELPERS_START_MS))
+      throw new Error('The helper threads of the stepper did not start within 60 s.');
+  }
+
+  /** Lets the helpers go; what is stepped afterwards, the caller steps alone. */
   dismiss(): void {
-    if (this.threads < 2) return;
-    this.header.ask(0, false, 1);
-    const ints = new Int32Array(this.model.data.buffer);
-    Atomics.add(ints, (this.header.address + COMMAND) / 4, 1);
-    Atomics.notify(ints, (this.header.address + COMMAND) / 4);
+    this.threads = 1;
+    if (!this.enlisted) return;
+    this.header.set('dismissed', 1);
+    callHelpers(this.ints, this.header.address);
   }
 }
 

@@ -7,8 +7,8 @@ export interface ThreadTeam {
   /** The compiled stepper for shared memory, by pitch; null where there is none. */
   module(pitch: number): WebAssembly.Module | null;
   /**
-   * Starts the helpers: helper k (1 … threads − 1) is to instantiate `module` on `memory` and to call its export
-   * `serve(header, k)`, which returns when the team is dismissed.
+   * Starts the helpers: helper k (1 … threads − 1) is to instantiate `module` on `memory` and to call `shareSteps` with its
+   * exports, the memory as Int32Array, `header`, k and true, which returns when the team is dismissed.
    */
   enlist(job: { module: WebAssembly.Module; memory: WebAssembly.Memory; header: number }): void;
 }

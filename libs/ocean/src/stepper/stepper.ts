@@ -17,7 +17,7 @@ export interface Stepper {
   readonly threads: number;
   /** Makes `steps` steps; `recorder` gets the row sums of each, in order. */
   advance(steps: number, recorder?: StepRecorder): void;
-  /** Lets helper threads go; afterwards it steps no more. */
+  /** Lets helper threads go; what is stepped afterwards, the caller steps alone. */
   dismiss(): void;
 }
 
@@ -25,7 +25,7 @@ export interface Stepper {
 export interface StepperOptions {
   /** 'auto' (default): the fastest that this machine has and the model suits. */
   kernel?: 'auto' | Kernel;
-  /** Threads that share the work of the compiled kernel; the caller dismisses them. */
+  /** Threads that share the work of the compiled kernel; `dismiss` lets them go. */
   team?: ThreadTeam;
 }
 
