@@ -236,27 +236,6 @@ export function defaultMinimumThickness(restThicknessM: number): number {
   return Math.min(LIMITS.minimumThickness.default, rounded(restThicknessM / 10));
 }
 
-/**
- * A setup with the fields that came after it was saved: each has its default, nothing else is touched. Drafts kept on
- * this machine and setups of earlier runs may lack them.
- */
-export function withLaterFields(setup: Setup): Setup {
-  const { basin, layer, wind, friction, output } = setup;
-  const blank = blankSetup();
-  return {
-    ...setup,
-    basin: { ...pick(blank.basin, 'sponges', 'coastSpacing'), ...basin },
-    layer: { ...pick(blank.layer, 'minimumThicknessM', 'entrainment'), ...layer },
-    wind: { ...pick(blank.wind, 'stressFloorM'), ...wind },
-    friction: { ...pick(blank.friction, 'viscosityPatches'), ...friction },
-    output: { ...pick(blank.output, 'momentumBudget', 'vorticityBudget'), ...output },
-  };
-}
-
-function pick<T, K extends keyof T>(from: T, ...keys: K[]): Pick<T, K> {
-  return Object.fromEntries(keys.map((key) => [key, from[key]])) as Pick<T, K>;
-}
-
 export function newMooring(setup: Setup): Mooring {
   return { name: freshName('Mooring', setup.output.moorings), ...middle(setup) };
 }

@@ -1,7 +1,15 @@
 import { computed, Injectable, linkedSignal, signal } from '@angular/core';
 import { setupSchema } from '@halfdeep/contracts';
-import { diffSetups, type Check, type Preflight, type Remedy, type Setup, type SetupChange } from '@halfdeep/ocean';
-import { blankSetup, withLaterFields } from './blank-setup';
+import {
+  diffSetups,
+  withLaterFields,
+  type Check,
+  type Preflight,
+  type Remedy,
+  type Setup,
+  type SetupChange,
+} from '@halfdeep/ocean';
+import { blankSetup } from './blank-setup';
 import { sameValue, toPointer, valueAt, withValueAt } from './setup-pointer';
 
 /** The run that a sensitivity run is made from. */

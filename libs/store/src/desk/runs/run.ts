@@ -1,5 +1,5 @@
 import type { Progress, QueuedReason, RunFailure, RunState } from '@halfdeep/contracts';
-import type { Fingerprint, Preflight, Setup, SetupChange } from '@halfdeep/ocean';
+import { withLaterFields, type Fingerprint, type Preflight, type Setup, type SetupChange } from '@halfdeep/ocean';
 import { DataTypes, Model, type InferAttributes, type InferCreationAttributes, type Sequelize } from 'sequelize';
 
 export type Descent = 'control' | 'sensitivity' | 'extension';
@@ -52,7 +52,14 @@ export class Run extends Model<InferAttributes<Run>, InferCreationAttributes<Run
         experimentId: { type: DataTypes.UUID, allowNull: false },
         ownerId: { type: DataTypes.UUID, allowNull: false },
         label: { ...text },
-        setup: { ...json },
+        setup: {
+          ...json,
+          // Rows of earlier releases lack the fields that came since; a row is never rewritten.
+          get(this: Run): Setup {
+            const kept = this.getDataValue('setup') as Setup | undefined;
+            return (kept && withLaterFields(kept)) as Setup;
+          },
+        },
         preflight: { ...json },
         nx: { ...whole },
         ny: { ...whole },

@@ -113,7 +113,13 @@ export class WindDiagramPlate {
   protected readonly blank = computed(() => {
     const within = this.diagram().blankWithinDeg;
     const { geometry, southDeg, northDeg } = this.setup().basin;
-    if (within === null || geometry !== 'equatorial' || southDeg > within || northDeg < -within) return null;
+    if (
+      within === null ||
+      (geometry !== 'equatorial' && geometry !== 'spherical') ||
+      southDeg > within ||
+      northDeg < -within
+    )
+      return null;
     const height = this.plot().heights[2] ?? 92;
     const y = (latitude: number) => height * Math.min(1, Math.max(0, (northDeg - latitude) / (northDeg - southDeg)));
     return { y: y(within), height: y(-within) - y(within), text: `${formatNumber(within, { decimals: 1 })}°` };
