@@ -5,6 +5,8 @@ const SPECIAL: Readonly<Record<string, string>> = {
   Gt: '1e12 kg',
   '°': 'degree',
   d: 'day',
+  // A number of things has no unit.
+  cells: '1',
 };
 const DIGITS: Readonly<Record<string, string>> = { '¹': '1', '²': '2', '³': '3', '⁴': '4', '⁵': '5', '⁶': '6' };
 

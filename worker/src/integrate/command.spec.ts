@@ -186,6 +186,21 @@ describe('npm run integrate', () => {
     file.close();
   });
 
+  it('integrates the nonlinear equations, with h in the fingerprint', async () => {
+    const setup = smallSetup(3, ({ numerics }) => Object.assign(numerics, { equations: 'nonlinear', stepsPerDay: 20 }));
+    await write('setup.json', setup);
+    expect(await integrate('setup.json', 'out.nc', '--json')).toBe(EXIT.done);
+    const direct = Integration.start(setup);
+    direct.advance(direct.totalSteps);
+    expect(lastLine()).toMatchObject({ fingerprint: direct.fingerprint(), cautions: direct.cautions() });
+    const file = await openCf(join(folder, 'out.nc'));
+    const frame = direct.frame();
+    const eta = [...(file.variables.get('eta')!.read() as Float32Array)].slice(-frame.eta.length);
+    expect(eta).toEqual([...frame.eta].map((value) => (Number.isNaN(value) ? FILL : value)));
+    expect(cfViolations(file)).toEqual([]);
+    file.close();
+  });
+
   it('works without sections and moorings', async () => {
     await write(
       'setup.json',

@@ -66,6 +66,7 @@ async function run(given: IntegrateArguments, io: CommandIo): Promise<number> {
     }
     if (outcome.kind === 'finished') await putInPlace(temporary, outputFile);
   } finally {
+    integration.dismissThreads();
     await rm(temporary, { force: true });
   }
   return report(outcome, given, io);
@@ -148,6 +149,7 @@ function report(outcome: IntegrationOutcome, given: IntegrateArguments, io: Comm
       return EXIT.failed;
     }
     case 'finished':
+      for (const { message } of outcome.summary.cautions) io.stderr.write(`Caution: ${message}\n`);
       if (given.json) answer(io, { ...outcome.summary, outputFile: basename(given.outputFile) });
       else io.stdout.write(words(outcome.summary, given.outputFile));
       return EXIT.done;

@@ -1,6 +1,7 @@
 import { setImmediate as breathe } from 'node:timers/promises';
 import type { RunFailure } from '@halfdeep/contracts';
 import {
+  type Caution,
   CORE_VERSION,
   type FailureReport,
   type Fingerprint,
@@ -33,6 +34,8 @@ export interface IntegrationSummary {
   seconds: number;
   cellStepsPerSecond: number;
   grid: { nx: number; ny: number; wetCells: number };
+  /** Times at which a nonlinear run came near the limit of its step. */
+  cautions: Caution[];
   budgets: Record<string, ColumnSummary>;
   sections: {
     name: string;
@@ -151,6 +154,7 @@ function summaryOf(
     seconds,
     cellStepsPerSecond: (steps * grid.nx * grid.ny) / seconds,
     grid: { nx: grid.nx, ny: grid.ny, wetCells: grid.wetCells },
+    cautions: run.cautions(),
     budgets: budgets.get(),
     sections: setup.output.sections.map((section, k) => ({
       name: section.name,

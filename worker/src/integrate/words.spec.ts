@@ -23,6 +23,7 @@ describe('units in CF notation', () => {
     ['', '1'],
     ['°', 'degree'],
     ['d', 'day'],
+    ['cells', '1'],
   ])('%s is %s', (unit, cf) => expect(cfUnit(unit)).toBe(cf));
 
   it.each(['a/b/c', '% of it', 'm^2', '10 m'])('refuses “%s”, which nobody could parse', (unit) =>
