@@ -39,9 +39,9 @@ export interface Basin {
   northDeg: number;
   /** Mid-latitude and f-plane: latitude φ0 at which the plane touches, degrees; null: the middle of the basin. */
   referenceLatitudeDeg: number | null;
-  /** Coriolis parameter at φ0 set by hand, 1/s; null: 2Ω sin φ0. Not used on the equatorial plane. */
+  /** Coriolis parameter at φ0 set by hand, 1/s; null: 2Ω sin φ0. Not used on the equatorial plane and on a sphere. */
   f0PerS: number | null;
-  /** β set by hand, 1/(m s); null: from the constants. Not used on an f-plane. */
+  /** β set by hand, 1/(m s); null: from the constants. Not used on an f-plane and on a sphere. */
   betaPerMS: number | null;
   zonallyPeriodic: boolean;
   westernCoast: WesternCoast;
