@@ -75,6 +75,7 @@ async function thing(state: RunState): Promise<{ experimentId: string; runId: st
     secondsLeft: null,
     records: { frames: 0, sections: 0, moorings: 0, budget: 0 },
     savedStep: null,
+    cautions: [],
   };
   const shape: [number, number, number, number, number, number] = [1, 1, 1, 1, 1, 1];
   const finished = { fingerprint: { sha256: '0'.repeat(64), coreVersion: '1', shape }, lastStep: 100 };

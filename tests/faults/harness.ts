@@ -108,6 +108,7 @@ export async function newDesk(varDir: string): Promise<{ desk: DeskDatabase; add
             secondsLeft: null,
             records: { frames: 0, sections: 0, moorings: 0, budget: 0 },
             savedStep: null,
+            cautions: [],
           },
           fingerprint: null,
           stateSha256: null,

@@ -274,6 +274,7 @@ export class RunJob {
       secondsLeft: rate ? (totalSteps - step) / rate : null,
       records: this.writer.committed,
       savedStep: this.savedStep,
+      cautions: this.integration.cautions().map((caution) => caution.message),
     };
   }
 

@@ -34,6 +34,8 @@ export const progressSchema = z
     }),
     /** Step of the last checkpoint that has landed; null before the first. */
     savedStep: z.number().int().nullable(),
+    /** What the running model is watched for and came near to, in sentences; runs from before it was kept have none. */
+    cautions: z.array(z.string()).default([]),
   })
   .meta({ id: 'Progress' });
 export type Progress = z.infer<typeof progressSchema>;

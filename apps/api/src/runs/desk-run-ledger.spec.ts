@@ -18,6 +18,7 @@ const PROGRESS = {
   secondsLeft: null,
   records: { frames: 0, sections: 0, moorings: 0, budget: 0 },
   savedStep: null,
+  cautions: [],
 };
 const FINISHED = {
   fingerprint: {

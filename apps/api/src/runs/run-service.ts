@@ -281,5 +281,6 @@ export function firstProgress(setup: Setup): Progress {
     secondsLeft: null,
     records: { frames: 0, sections: 0, moorings: 0, budget: 0 },
     savedStep: null,
+    cautions: [],
   };
 }

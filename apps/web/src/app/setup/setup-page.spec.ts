@@ -57,6 +57,7 @@ const run = (setup: Setup) => ({
     secondsLeft: null,
     records: { frames: 1, sections: 1, moorings: 1, budget: 1 },
     savedStep: null,
+    cautions: [],
   },
   fingerprint: null,
   grid: { nx: 240, ny: 140 },

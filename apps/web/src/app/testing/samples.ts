@@ -29,6 +29,7 @@ export function aRun(over: Partial<RunSummary> = {}): RunSummary {
       secondsLeft: null,
       records: { frames: 0, sections: 0, moorings: 0, budget: 0 },
       savedStep: null,
+      cautions: [],
     },
     fingerprint: null,
     grid: { nx: 300, ny: 175 },

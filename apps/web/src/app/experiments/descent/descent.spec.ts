@@ -16,6 +16,7 @@ const progress = {
   secondsLeft: null,
   records: { frames: 0, sections: 0, moorings: 0, budget: 0 },
   savedStep: null,
+  cautions: [],
 };
 
 describe('descentOf', () => {
