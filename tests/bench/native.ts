@@ -64,6 +64,7 @@ export function streamBandwidth({ stream }: NativePrograms, doubles: number): nu
   return bandwidth;
 }
 
+const KEEP_MEMORY = { MALLOC_TRIM_THRESHOLD_: '1000000000', MALLOC_MMAP_THRESHOLD_: '1000000000' };
 const LOAD = 1n;
 const RUN = 2n;
 const READ = 3n;
@@ -89,10 +90,10 @@ export class NativeStepper {
   private constructor(command: readonly string[], model: Model) {
     this.#model = model;
     this.#step = model.step;
-    // PYTHONDONTWRITEBYTECODE: no files beside the sources.
+    // No files beside the sources; and memory that NumPy frees stays with it, or it would spend its time on page faults.
     this.#child = spawn(command[0], command.slice(1), {
       stdio: 'pipe',
-      env: { ...process.env, PYTHONDONTWRITEBYTECODE: '1', OMP_NUM_THREADS: '1' },
+      env: { ...process.env, PYTHONDONTWRITEBYTECODE: '1', OMP_NUM_THREADS: '1', ...KEEP_MEMORY },
     });
     this.#child.stderr.on('data', (text: Buffer) => (this.#complaint += text.toString()));
     this.#child.stdout.on('data', (bytes: Buffer) => this.#take(bytes));

@@ -200,8 +200,8 @@ const CHUNK: Record<StepperName | 'simd2', number> = {
   reference: 1e7,
   native: 2.4e7,
   sse2: 2.4e7,
-  numpy: 4e6,
-  numpyPlain: 4e6,
+  numpy: 3e6,
+  numpyPlain: 2e6,
 };
 /** Whole numbers of this many steps: the compiled kernel makes four steps a sweep out of cache. */
 const STEPS_OF = 4;
@@ -235,7 +235,7 @@ export async function benchGrid(
       if (command) runners.push(await inChild(name, command, setup));
     }
     // First the proof that all of them compute the same, which also warms them up.
-    const warm = Math.max(8, 4 * Math.round(4e5 / cells));
+    const warm = Math.max(8, 4 * Math.round(1e5 / cells));
     for (const runner of runners) await runner.run(warm);
     for (const runner of runners) {
       const difference = await runner.difference(model);
