@@ -27,9 +27,9 @@ export function reportHtml(report: VerificationReport): string {
 <header>
 <h1>Verification of the ocean core</h1>
 <p class="statement">${verdict}</p>
-<p>Core version ${escapeHtml(coreVersion)}. Every number and plate on this page was computed by the run of the tests that wrote it; none was typed
-in. Expected values come from closed forms, quadrature or spectral solutions that share no code with the core. Sources are quoted from memory and
-were derived anew; figures in them have not been checked against the printed page.</p>
+<p>Core version ${escapeHtml(coreVersion)}. Every obtained number and every plate on this page was computed by the run of the tests that wrote it.
+Expected values come from closed forms, quadrature or spectral solutions that share no code with the core, or from an independent code where the
+source says so. Published sources are named from memory and their results were derived anew; they have not been held against the printed page.</p>
 </header>
 <main>
 <section aria-labelledby="sum">
