@@ -1,4 +1,13 @@
-import { ChangeDetectionStrategy, Component, computed, inject, linkedSignal, signal, viewChild } from '@angular/core';
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  DestroyRef,
+  inject,
+  linkedSignal,
+  signal,
+  viewChild,
+} from '@angular/core';
 import { MatButton } from '@angular/material/button';
 import { buildGrid, type NativeVariable, type SketchLine } from '@halfdeep/ocean';
 import { formatDuration, formatLatitude, formatLongitude, formatModelTime, formatNumber, formatQuantity } from '../../core/format'; // prettier-ignore
@@ -9,6 +18,7 @@ import { type ColourLimits, fittedLimits, grownLimits, isolineWords, typicalSpan
 import { type Growth } from '../../shared/plate/overlay';
 import { Plate, type PlateSource } from '../../shared/plate/plate';
 import { PlotLink } from '../../shared/plate/plot-link';
+import { PlotlyLoader } from '../../shared/plate/plotly';
 import { VARIABLE_VIEWS } from '../../shared/plate/variables';
 import { VerdictSign } from '../../shared/verdict/verdict';
 import { unbroken } from '../preflight/check-words';
@@ -17,6 +27,8 @@ import { SetupDraft } from '../setup-draft';
 import { lineChoices } from './sketch-lines';
 import { SketchRunner } from './sketch-runner';
 
+/** Once the form stands, ms. */
+const PREPARE_AFTER_MS = 2000;
 const NATIVES: readonly NativeVariable[] = ['eta', 'u', 'v'];
 
 /** A coarse version of the setup being written, drawn as it is integrated, before anything is queued. */
@@ -161,6 +173,13 @@ export class SketchSection {
     table: (notes) =>
       this.plot()?.table([...notes, `Values in ${this.bar().unit}.`]) ?? { columns: [], rows: 0, row: () => [], notes },
   };
+
+  constructor() {
+    const loader = inject(PlotlyLoader);
+    // A sketch takes a few seconds: the plotting library is not to be waited for then. If it cannot be had, the plot says so.
+    const wait = setTimeout(() => void loader.load().catch(() => undefined), PREPARE_AFTER_MS);
+    inject(DestroyRef).onDestroy(() => clearTimeout(wait));
+  }
 
   /** Also for the button beside the form. */
   start(): void {
