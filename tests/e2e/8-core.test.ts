@@ -81,7 +81,9 @@ test('a modeller sketches a nonlinear setup, exports it, queues it, repeats it a
   await page.getByRole('button', { name: 'Repeat and verify' }).click();
   await expect(page).not.toHaveURL(new RegExp(id), { timeout: 20_000 });
   await finished(page, page.url().split('/').at(-1)!);
-  await expect(page.getByText(/same to the last bit as Currents with momentum/).first()).toBeVisible({ timeout: 20_000 });
+  await expect(page.getByText(/same to the last bit as Currents with momentum/).first()).toBeVisible({
+    timeout: 20_000,
+  });
 });
 
 test('help shows what the core was held against, in words and numbers', async ({ page }) => {

@@ -81,7 +81,7 @@ export async function writeBundle(
     else pieces.push(piece);
   });
   const flush = async () => {
-    if (failed) throw failed as Error;
+    if (failed) throw failed;
     const ready = pieces;
     pieces = [];
     for (const piece of ready) await write(piece);

@@ -12,7 +12,7 @@ export function parseInput<S extends z.ZodType>(
   part: 'body' | 'query' | 'path',
 ): z.infer<S> {
   const { data, errors } = readFields(schema, input);
-  if (!errors) return data as z.infer<S>;
+  if (!errors) return data;
   const [first] = errors;
   const where = first?.pointer ? ` (at ${first.pointer})` : '';
   const others = errors.length - 1;
