@@ -9,8 +9,8 @@ export interface BandKernel {
  * `helper`: goes on from one call to the next until the team is dismissed.
  *
  * Helpers start from the text of this function, so it uses nothing but its arguments and has no function inside. Threads
- * meet here and not in the compiled kernel: the engine's first compiler leaves threads asleep in WebAssembly's own
- * waits (seen with Node.js 20). A step takes tens of microseconds, so a thread looks 3000 times before it lies down; one
+ * meet here and not in the compiled kernel, because with WebAssembly's own waits some were seen to stay asleep under
+ * Node.js 20, for a reason not found. A step takes tens of microseconds, so a thread looks 3000 times before it lies down; one
  * that meets nobody for ten minutes has lost another, and an error is better than waiting for ever.
  */
 export function shareSteps(
