@@ -101,7 +101,7 @@ describe('preflight of any setup that the schema accepts', () => {
           expect(diffSetups(setup, cured).length).toBeGreaterThan(0);
         }
       }),
-      { numRuns: 120 },
+      { numRuns: 40 },
     );
     expect(applied).toBeGreaterThan(100);
   });

@@ -35,7 +35,7 @@ it('makes of any setup a sketch that passes schema and preflight and fits the wo
       expect(sketch.setup.length.days).toBeLessThanOrEqual(setup.length.days);
       for (const note of sketch.notes) expect(note).not.toMatch(/NaN|undefined|null|Infinity|infinite|no number/);
     }),
-    { numRuns: 300 },
+    { numRuns: 120 },
   );
   expect(made).toBeGreaterThan(30);
 });
@@ -49,6 +49,6 @@ it('can be integrated whenever it is made', () => {
       expect(run.totalSteps).toBe(Math.round(sketch.setup.length.days * sketch.setup.numerics.stepsPerDay));
       run.advance(Math.min(2, run.totalSteps));
     }),
-    { numRuns: 60 },
+    { numRuns: 25 },
   );
 });
