@@ -1,7 +1,7 @@
 import { mkdtemp, rm } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { type Preflight, type Setup } from '@halfdeep/ocean';
+import { corvaneSetup, type Preflight, type Setup } from '@halfdeep/ocean';
 import { Experiment, openDesk, Person, Run, type DeskDatabase } from '@halfdeep/store';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { DeskRunLedger } from './desk-run-ledger';
@@ -30,6 +30,13 @@ const FINISHED = {
   lastStep: 10,
   progress: { ...PROGRESS, step: 10, day: 1 },
 };
+
+/** A setup that is told from others by the name of its water. */
+function setupCalled(name: string): Setup {
+  const setup = corvaneSetup();
+  setup.basin.name = name;
+  return setup;
+}
 
 describe('the run ledger on the desk database', () => {
   let folder: string;
@@ -80,7 +87,7 @@ describe('the run ledger on the desk database', () => {
           experimentId: EXPERIMENT,
           ownerId,
           label,
-          setup: { label } as unknown as Setup,
+          setup: setupCalled(label),
           preflight: {} as unknown as Preflight,
           nx: 4,
           ny: 4,
@@ -109,7 +116,7 @@ describe('the run ledger on the desk database', () => {
     );
     return id;
   }
-  const label = (run: { setup: Setup } | null) => run && (run.setup as unknown as { label: string }).label;
+  const label = (run: { setup: Setup } | null) => run && run.setup.basin.name;
   const waiting = async () => (await ledger.waiting()).map(label).join(' ');
 
   it('hands out runs in fair order and says when nothing waits', async () => {
@@ -233,7 +240,7 @@ describe('the run ledger on the desk database', () => {
     const id = await queue('a1');
     const change = (values: Partial<Run>) =>
       desk.write((transaction) => Run.update(values, { where: { id }, transaction }));
-    await expect(change({ setup: { other: 1 } as unknown as Setup })).rejects.toMatchObject({
+    await expect(change({ setup: setupCalled('Other') })).rejects.toMatchObject({
       parent: { message: expect.stringMatching(/never changes once it is queued/) as unknown },
     });
     await expect(change({ nx: 5 })).rejects.toThrow();
