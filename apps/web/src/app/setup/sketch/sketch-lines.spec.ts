@@ -9,7 +9,7 @@ describe('lines of a sketch', () => {
       { name: 'North', along: 'latitude', atDeg: 10 },
       { name: '', along: 'longitude', atDeg: 30 },
     ];
-    expect(lineChoices(setup).map(({ label }) => label)).toEqual(['the equator', 'North, 10° N', '30° E']);
+    expect(lineChoices(setup).map(({ label }) => label)).toEqual(['the equator', 'North, 10°\u00a0N', '30°\u00a0E']);
   });
 
   it('begin with the middle latitude where the basin does not hold the equator', () => {
