@@ -6,6 +6,7 @@ import { LIMITS, type LimitName } from '@halfdeep/ocean';
 /** What arrived, as a person reads it; an empty field arrives as null. */
 export function arrived(input: unknown): string {
   if (input === undefined || input === null) return 'nothing';
+  if (Number.isNaN(input)) return 'no number';
   if (typeof input === 'number') return spoken(input);
   const text = JSON.stringify(input) ?? typeof input;
   return text.length > 60 ? `${text.slice(0, 60)}…` : text;

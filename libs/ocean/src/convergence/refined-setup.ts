@@ -1,3 +1,4 @@
+import { readableLatitude, readableLongitude } from '../describe/numbers';
 import { buildGrid, gridLayout, type GridLayout } from '../grid/build-grid';
 import type { Grid } from '../grid/grid';
 import { coastLongitude } from '../grid/land';
@@ -189,7 +190,7 @@ function keptMoorings(setup: Setup, refined: Setup): { moorings: Setup['output']
 function placeOf(grid: Grid, mooring: Setup['output']['moorings'][number]): string | null {
   try {
     const { longitudeDeg, latitudeDeg } = snapMooring(grid, mooring);
-    return `${degrees(longitudeDeg)} E, ${degrees(latitudeDeg)} N`;
+    return `${readableLongitude(longitudeDeg)}, ${readableLatitude(latitudeDeg)}`;
   } catch (error) {
     if (error instanceof RangeError) return null;
     throw error;

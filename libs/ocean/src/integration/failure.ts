@@ -1,3 +1,4 @@
+import { readableLatitude, readableLongitude } from '../describe/numbers';
 import type { Caution, FailureReport } from '../integration-types';
 import { valueAt } from '../stepper/fields';
 import { levelOffset } from '../stepper/layout';
@@ -127,7 +128,7 @@ export function flowCaution(model: Model, stepsPerDay: number, watch: Watch): Ca
 }
 
 function placeOf({ longitudeDeg, latitudeDeg }: { longitudeDeg: number; latitudeDeg: number }): string {
-  return `${round(longitudeDeg)}° E, ${round(latitudeDeg)}° N`.replaceAll('-', '−');
+  return `${readableLongitude(longitudeDeg)}, ${readableLatitude(latitudeDeg)}`;
 }
 
 function likelyCause(model: Model): string {

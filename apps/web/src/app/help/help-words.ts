@@ -20,6 +20,14 @@ export const HELP_WORDS: readonly { word: string; meaning: string }[] = [
     word: 'sketch',
     meaning: 'A coarse version of a setup, integrated in the browser while the form is open, and kept nowhere.',
   },
+  {
+    word: 'sponge',
+    meaning: 'A layer along an edge in which currents and interface are damped alike, so that waves do not come back.',
+  },
+  {
+    word: 'entrainment',
+    meaning: 'Water that a thin layer takes up from below, so that it does not run dry; what it adds is accounted for.',
+  },
   { word: 'run', meaning: 'One integration of one setup.' },
   {
     word: 'resume',

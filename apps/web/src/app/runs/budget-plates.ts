@@ -14,6 +14,34 @@ const SECONDS_PER_DAY = 86_400;
 const GW_PER_PJ_A_SECOND = 1e6;
 const KT_PER_GT = 1e6;
 
+/** Work that only some runs have, drawn together with friction. */
+const OTHER_WORK = [
+  { name: 'damping', columns: ['dampingWork'] },
+  { name: 'sponges', columns: ['spongeWork'] },
+  { name: 'entrainment', columns: ['entrainmentWork', 'detrainmentWork'] },
+];
+
+interface MassTerm {
+  name: string;
+  columns: string[];
+  series: CurveSpec['series'];
+}
+const MASS_SOURCES: (MassTerm & { words: string })[] = [
+  { name: 'damping', columns: ['massDamping'], series: 3, words: 'interface damping' },
+  { name: 'sponges', columns: ['massSponge'], series: 2, words: 'sponges' },
+  {
+    name: 'entrainment',
+    columns: ['massEntrainment', 'massDetrainment'],
+    series: 5,
+    words: 'water taken up from below and given back',
+  },
+];
+
+/** "a", "a and b", "a, b and c". */
+function listed(words: string[]): string {
+  return words.join(', ').replace(/, ([^,]*)$/, ' and $1');
+}
+
 /** Energy and mass of the basin: what goes in, what comes out, and what is not accounted for. */
 @Component({
   selector: 'app-budget-plates',
@@ -45,7 +73,7 @@ const KT_PER_GT = 1e6;
       [specs]="mass()"
       [link]="links()(1)"
       emptyHeading="From the first interval"
-      emptyAbout="Change of mass, what damping adds, and what is left over."
+      emptyAbout="Change of mass, what adds or takes it, and what is left over."
     >
       @if (hasRows()) {
         <app-verdict
@@ -81,8 +109,9 @@ export class BudgetPlates {
     const slice = this.slice();
     slice.head();
     const factor = GW_PER_PJ_A_SECOND / this.seconds();
-    const damped = this.setup().layer.dampingPerS > 0;
-    const sinks = ['rayleighWork', 'viscousWork', ...(damped ? ['dampingWork'] : [])];
+    const kept = (columns: string[]) => columns.filter((column) => columnIndex(slice, column) >= 0);
+    const others = OTHER_WORK.filter(({ columns }) => kept(columns).length > 0);
+    const sinks = ['rayleighWork', 'viscousWork', ...others.flatMap(({ columns }) => kept(columns))];
     const spec = (name: string, columns: string[], series: CurveSpec['series']): CurveSpec => ({
       name,
       columns: columns.map((column) => columnIndex(slice, column)),
@@ -91,7 +120,7 @@ export class BudgetPlates {
     });
     return [
       spec('wind', ['windWork'], 1),
-      spec(damped ? 'friction, damping' : 'friction', sinks, 3),
+      spec(['friction', ...others.map(({ name }) => name)].join(', '), sinks, 3),
       spec('stored', ['energyChange'], 2),
       spec('numerical', ['numericalWork'], 5),
       spec('residual', ['energyResidual'], 4),
@@ -108,25 +137,35 @@ export class BudgetPlates {
   private readonly restMass = computed(() => restMassGt(this.setup()));
   private readonly massResidual = computed(() => largestMassResidual(this.slice()));
   protected readonly massCloses = computed(() => this.massResidual() / this.restMass() < CLOSES_BELOW);
+  /** What adds or takes mass in this run: the terms that its budget keeps. */
+  private readonly massSources = computed(() => {
+    const slice = this.slice();
+    slice.head();
+    return MASS_SOURCES.filter(({ columns }) => columns.some((column) => columnIndex(slice, column) >= 0));
+  });
   protected readonly mass = computed<CurveSpec[]>(() => {
     const slice = this.slice();
     slice.head();
     const factor = KT_PER_GT / this.seconds();
-    const spec = (name: string, column: string, series: CurveSpec['series']): CurveSpec => ({
+    const spec = ({ name, columns, series }: MassTerm): CurveSpec => ({
       name,
-      columns: [columnIndex(slice, column)],
+      columns: columns.map((column) => columnIndex(slice, column)).filter((index) => index >= 0),
       factor,
       series,
     });
-    const damping = this.setup().layer.dampingPerS > 0 ? [spec('damping', 'massDamping', 3)] : [];
-    return [spec('change', 'massChange', 1), ...damping, spec('residual', 'massResidual', 4)];
+    return [
+      spec({ name: 'change', columns: ['massChange'], series: 1 }),
+      ...this.massSources().map(spec),
+      spec({ name: 'residual', columns: ['massResidual'], series: 4 }),
+    ];
   });
   protected readonly massCaption = computed(() => {
     const residual = this.massResidual();
+    const sources = this.massSources().map(({ words }) => words);
     const rule =
-      this.setup().layer.dampingPerS > 0
-        ? 'Change of mass is what interface damping adds.'
-        : 'Without damping no mass is gained or lost: what is drawn is round-off.';
+      sources.length > 0
+        ? `Change of mass is what ${listed(sources)} together add.`
+        : 'Nothing adds or takes mass: what is drawn is round-off.';
     if (Number.isNaN(residual)) return rule;
     return `${rule} Largest residual ${formatQuantity(residual, 'Gt', { significant: 2 })} an interval.`;
   });

@@ -51,7 +51,7 @@ export abstract class PlotSurface {
   private readonly hairs = viewChild.required<ElementRef<SVGSVGElement>>('hairs');
 
   protected readonly width = signal(0);
-  private readonly seen = signal(false);
+  protected readonly seen = signal(false);
   protected readonly box = computed(() => (this.width() > 0 ? this.makeBox(this.width()) : null));
   protected readonly height = computed(() => this.box()?.height ?? this.emptyHeight());
   protected readonly inside = signal(false);
