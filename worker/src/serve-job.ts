@@ -26,7 +26,7 @@ export function serveJob(options: Pick<RunJobOptions, 'pause'> = {}): void {
     void computeAndExit(job);
   });
   // The server and its pages go before the arithmetic.
-  setPriority(5);
+  setPriority(10);
   process.on('disconnect', save);
   process.on('SIGTERM', save);
   // Ctrl-C reaches the whole group of processes; the server then orders its workers to save.
