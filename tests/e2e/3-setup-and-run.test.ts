@@ -5,7 +5,7 @@ test('a modeller asks, sets up with the preflight at hand, queues, watches, stop
   page,
   browser,
 }) => {
-  test.setTimeout(300_000);
+  test.setTimeout(480_000);
   await openPlaces(browser);
   await signIn(page, 'modeller');
   await page.getByRole('tab', { name: 'Experiments' }).click();

@@ -15,7 +15,7 @@ test('a modeller sketches a nonlinear setup, exports it, queues it, repeats it a
   page,
   browser,
 }) => {
-  test.setTimeout(420_000);
+  test.setTimeout(560_000);
   await openPlaces(browser);
   await signIn(page, 'modeller');
   const experiment = await experimentByScript(page, 'Does the small basin repeat when its currents carry momentum?');
