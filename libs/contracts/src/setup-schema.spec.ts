@@ -70,7 +70,7 @@ describe('the setup schema', () => {
     [
       'NaN',
       (s) => (s.layer.restThicknessM = NaN),
-      '/layer/restThicknessM Thickness at rest must be between 10 and 5000 m; NaN arrived.',
+      '/layer/restThicknessM Thickness at rest must be between 10 and 5000 m; no number arrived.',
     ],
     [
       'a text',

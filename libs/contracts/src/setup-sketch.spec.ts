@@ -37,7 +37,7 @@ it('makes of any setup a sketch that passes schema and preflight and fits the wo
     }),
     { numRuns: 120 },
   );
-  expect(made).toBeGreaterThan(30);
+  expect(made).toBeGreaterThan(12);
 });
 
 it('can be integrated whenever it is made', () => {
