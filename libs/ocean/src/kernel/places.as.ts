@@ -133,7 +133,6 @@ export const NONLINEAR_RING: usize = 13 * PLANE;
 export const NONLINEAR: usize = 136;
 export const ENTRAINS: usize = 140;
 export const LIMITS: usize = 144;
-export const KEEP_THICKNESS: usize = 400;
 export const PUSH_THICKNESS: usize = 408;
 export const MINIMUM: usize = 416;
 export const PER_DT: usize = 424;
@@ -143,7 +142,6 @@ export const STRESS_FLOOR: usize = 448;
 export const GRAVITY: usize = 456;
 export const REST: usize = 464;
 export const DETRAINED: usize = 472;
-export const SOURCE: usize = 480;
 export const F: usize = 168;
 export const PER_WET: usize = 176;
 /** 1 where row j of the ring has cells that give less than their outflow; four of them. */
